@@ -1,0 +1,3 @@
+module github.com/qofs/qofs
+
+go 1.25.0
