@@ -12,6 +12,7 @@ import (
 	"errors"
 	"fmt"
 	"math/big"
+	"slices"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
@@ -37,18 +38,21 @@ type Number struct {
 	_ [0]func()
 
 	factor *factor
-	// center is a point with no other root than this one in the disc of
-	// radius separation around it, and this one within radius; 4·n·radius is
-	// at most separation, n the degree of the factor. The center of a real
-	// number is real. For a number below the real axis the three describe
-	// its mirror image above.
-	center     point
+	// The center, (re + i·im)·2^k or wide if that is not nil, has no other
+	// root than this one in the disc of radius separation around it, and this
+	// one within radius; 4·n·radius is at most separation, n the degree of the
+	// factor. The center of a real number is real. For a number below the real
+	// axis the three describe its mirror image above.
+	re, im     double
+	k          int
+	wide       *point
 	radius     scaled
 	separation scaled
 
 	real      bool // proved real
 	imaginary bool // proved to have the real part 0
 	below     bool // has a negative imaginary part
+	open      bool // not rounded yet
 	value     complex128
 }
 
@@ -92,30 +96,68 @@ func Roots(p intpoly.Poly) ([]Root, error) {
 		return nil, fmt.Errorf("roots: degree times bits of a coefficient is %d, at most %d: %w",
 			n*p.MaxBitLen(), MaxBits, fault.ErrLimit)
 	}
-	w := &work{left: maxWork}
-	var roots []Root
+	return find(p, &work{left: maxWork})
+}
+
+// find is Roots within the limits, on an account of its own.
+func find(p intpoly.Poly, w *work) ([]Root, error) {
+	n := p.Degree()
+	roots := make([]Root, 0, n)
 	if v := p.Valuation(); v > 0 {
 		roots = append(roots, Root{zero(), v})
 		p = p.QuoPower(v)
 	}
-	for _, f := range p.SquareFree() {
-		numbers, err := isolate(&factor{poly: f.Poly, degree: f.Poly.Degree()}, w)
-		if err != nil {
+	var err error
+	if p.Degree() > 0 {
+		if roots, err = appendNonzero(roots, p, w); err != nil {
 			return nil, err
-		}
-		for _, x := range numbers {
-			roots = append(roots, Root{x, f.Multiplicity})
 		}
 	}
 	for _, r := range roots {
-		if err := r.Number.settle(w); err != nil {
-			return nil, err
+		if r.Number.open {
+			if err := r.Number.settle(w); err != nil {
+				return nil, err
+			}
 		}
 	}
 	if err := sortRoots(roots, w); err != nil {
 		return nil, err
 	}
 	return withConjugates(roots), nil
+}
+
+// appendNonzero appends the roots on and above the real axis of p, p(0) ≠ 0, in
+// stages: float64 and double-double for the whole polynomial, which prove that
+// it has no multiple root where they succeed; then the same for its square-free
+// factors; then fixed point of growing precision.
+func appendNonzero(roots []Root, p intpoly.Poly, w *work) ([]Root, error) {
+	if numbers, ok := triage(p, w); ok {
+		return appendNumbers(roots, numbers, 1), nil
+	}
+	w.decomposed++
+	factors := p.SquareFree()
+	for _, f := range factors {
+		numbers, ok := []Number(nil), false
+		if f.Poly.Degree() < p.Degree() {
+			numbers, ok = triage(f.Poly, w)
+		}
+		if !ok {
+			w.isolated++
+			var err error
+			if numbers, err = isolate(&factor{poly: f.Poly, degree: f.Poly.Degree()}, w); err != nil {
+				return nil, err
+			}
+		}
+		roots = appendNumbers(roots, numbers, f.Multiplicity)
+	}
+	return roots, nil
+}
+
+func appendNumbers(roots []Root, numbers []Number, multiplicity int) []Root {
+	for i := range numbers {
+		roots = append(roots, Root{&numbers[i], multiplicity})
+	}
+	return roots
 }
 
 // ErrZero is the error for the polynomial 0.
@@ -130,17 +172,31 @@ func zero() *Number {
 // withConjugates adds the mirror image of every root above the real axis
 // behind it.
 func withConjugates(roots []Root) []Root {
-	out := make([]Root, 0, 2*len(roots))
+	pairs := 0
 	for _, r := range roots {
-		out = append(out, r)
 		if !r.Number.real {
-			c := *r.Number
-			c.below = true
-			c.value = complex(real(c.value), -imag(c.value))
-			out = append(out, Root{&c, r.Multiplicity})
+			pairs++
 		}
 	}
-	return out
+	if pairs == 0 {
+		return roots
+	}
+	mirrored := make([]Number, pairs)
+	to := len(roots) + pairs
+	roots = slices.Grow(roots, pairs)[:to]
+	for i := to - pairs - 1; i >= 0; i-- {
+		r := roots[i]
+		if !r.Number.real {
+			pairs--
+			mirrored[pairs] = *r.Number
+			mirrored[pairs].mirror()
+			to--
+			roots[to] = Root{&mirrored[pairs], r.Multiplicity}
+		}
+		to--
+		roots[to] = r
+	}
+	return roots
 }
 
 // Value is the number, each component correctly rounded to nearest, ties to
@@ -156,8 +212,13 @@ func (x *Number) IsImaginary() bool { return x.imaginary }
 // IsZero reports whether the number is 0.
 func (x *Number) IsZero() bool { return x.real && x.imaginary }
 
-// Factor is a square-free integer polynomial of which the number is a root.
-func (x *Number) Factor() intpoly.Poly { return x.factor.poly }
+// Factor is a square-free integer polynomial of which the number is a root:
+// primitive, with a positive leading coefficient, and without the root 0 unless
+// the number is 0.
+func (x *Number) Factor() intpoly.Poly {
+	_, p := x.factor.poly.Primitive()
+	return p
+}
 
 // Conjugate is the mirror image in the real axis; a real number is its own.
 func (x *Number) Conjugate() *Number {
@@ -165,9 +226,13 @@ func (x *Number) Conjugate() *Number {
 		return x
 	}
 	c := *x
-	c.below = !x.below
-	c.value = complex(real(c.value), -imag(c.value))
+	c.mirror()
 	return &c
+}
+
+func (x *Number) mirror() {
+	x.below = !x.below
+	x.value = complex(real(x.value), -imag(x.value))
 }
 
 // Rat returns the number and true when it is rational, and nil and false
@@ -186,7 +251,7 @@ func (x *Number) Rat() (*big.Rat, bool) {
 	if f.Degree() == 1 {
 		return new(big.Rat).SetFrac(new(big.Int).Neg(f.Coefficient(0)), lc), true
 	}
-	bits := lc.BitLen() + 4 + max(0, x.center.exponentOfLargest())
+	bits := lc.BitLen() + 4 + max(0, x.exponent())
 	d, err := x.disc(uint(bits), &work{left: maxWork})
 	if err != nil {
 		return nil, false
@@ -198,8 +263,36 @@ func (x *Number) Rat() (*big.Rat, bool) {
 	return new(big.Rat).SetFrac(num, lc), true
 }
 
-// work counts what is left of the allowed effort of one call.
-type work struct{ left int64 }
+// center returns the center of the isolating disc.
+func (x *Number) center() *point {
+	if x.wide != nil {
+		return x.wide
+	}
+	z := new(point)
+	z.setDoubles(x.re, x.im, x.k)
+	return z
+}
+
+// exponent returns k with |re|, |im| < 2^k at the center, at most one too large.
+func (x *Number) exponent() int { return x.center().exponentOfLargest() }
+
+// work is the account of one call: what is left of the allowed effort, and how
+// often the stages were needed.
+type work struct {
+	left       int64
+	triaged    int // numbers from float64 and double-double
+	decomposed int // polynomials decomposed into square-free factors
+	isolated   int // factors isolated in fixed point
+	refined    int // components that needed more than double-double
+	decided    int // exact decisions of a component
+}
+
+func (w *work) count(x *Number) {
+	w.triaged++
+	if x.open {
+		w.refined++
+	}
+}
 
 // spend takes n multiplications of words of the given number of bits.
 func (w *work) spend(n int, bits uint) error {

@@ -47,7 +47,8 @@ func (x *Number) Equal(y *Number) bool {
 	if err != nil {
 		return false
 	}
-	for _, u := range numbers {
+	for i := range numbers {
+		u := &numbers[i]
 		at := func(bits uint) (disc, error) { return u.disc(bits, w) }
 		if same, err := x.isAt(w, at); err != nil || !same {
 			continue

@@ -24,6 +24,7 @@ type exactCache struct {
 // their own; x is one of them when its isolating disc holds the candidate.
 func (x *Number) componentIs(imaginary bool, c *big.Rat, w *work) (bool, error) {
 	p := x.factor.poly
+	w.decided++
 	if x.real {
 		return p.AtRat(c.Num(), c.Denom()).Sign() == 0, nil
 	}
@@ -36,7 +37,7 @@ func (x *Number) componentIs(imaginary bool, c *big.Rat, w *work) (bool, error) 
 			if same, err := x.isAt(w, func(bits uint) (disc, error) {
 				d, err := u.disc(bits, w)
 				if err == nil {
-					d.rescale(min(d.e, x.center.exponentOfLargest()-int(bits)))
+					d.rescale(min(d.e, x.exponent()-int(bits)))
 					d.im.Set(roundRat(c, d.e))
 					d.radius = d.radius.add(scaled{0.5, d.e + 1}).up()
 				}
@@ -60,7 +61,7 @@ func (x *Number) componentIs(imaginary bool, c *big.Rat, w *work) (bool, error) 
 		return false, err
 	}
 	for _, s := range squares {
-		if s.center.re.Sign() > 0 {
+		if s.center().re.Sign() > 0 {
 			continue
 		}
 		if same, err := x.isAt(w, func(bits uint) (disc, error) { return vertical(s, c, bits, w) }); same || err != nil {
@@ -86,9 +87,9 @@ func commonRoots(p, q intpoly.Poly) func(*work) ([]*Number, error) {
 			}
 		}
 		numbers, err := isolate(&factor{poly: g, degree: g.Degree()}, w)
-		for _, u := range numbers {
-			if u.real {
-				out = append(out, u)
+		for i := range numbers {
+			if numbers[i].real {
+				out = append(out, &numbers[i])
 			}
 		}
 		return out, err
@@ -169,7 +170,7 @@ func (x *Number) isAt(w *work, candidate func(bits uint) (disc, error)) (bool, e
 		if err != nil {
 			return false, err
 		}
-		distance := difference(&d.point, &x.center).abs()
+		distance := difference(&d.point, x.center()).abs()
 		if distance.up().add(d.radius).up().less(x.separation.down()) {
 			return true, nil
 		}

@@ -1,6 +1,7 @@
 package algebraic
 
 import (
+	"math"
 	"math/big"
 
 	"github.com/qofs/qofs/internal/intpoly"
@@ -21,6 +22,34 @@ func (z *point) set(w *point) {
 // exponentOfLargest returns k with |re|, |im| < 2^k for the smallest such k.
 func (z *point) exponentOfLargest() int {
 	return max(z.re.BitLen(), z.im.BitLen()) + z.e
+}
+
+// setDoubles sets z to (re + i·im)·2^k, exactly.
+func (z *point) setDoubles(re, im double, k int) {
+	low := math.MaxInt
+	parts := [4]float64{re.hi, re.lo, im.hi, im.lo}
+	var m [4]int64
+	var e [4]int
+	for i, v := range parts {
+		if v != 0 {
+			f, x := math.Frexp(v)
+			m[i], e[i] = int64(f*0x1p53), x-53
+			low = min(low, e[i])
+		}
+	}
+	var t big.Int
+	sum := func(z *big.Int, i int) {
+		z.SetInt64(0)
+		for ; m[i] != 0; i++ {
+			z.Add(z, t.Lsh(t.SetInt64(m[i]), uint(e[i]-low)))
+			if i%2 == 1 {
+				break
+			}
+		}
+	}
+	sum(&z.re, 0)
+	sum(&z.im, 2)
+	z.e = low + k
 }
 
 // rescale changes the exponent to e, dropping bits below it.

@@ -19,7 +19,7 @@ type approximation struct {
 
 // isolate returns the numbers on and above the real axis of a square-free
 // factor that has not the root 0.
-func isolate(f *factor, w *work) ([]*Number, error) {
+func isolate(f *factor, w *work) ([]Number, error) {
 	starts := startingPoints(f.poly)
 	roots := make([]approximation, len(starts))
 	for i, s := range starts {
@@ -162,7 +162,7 @@ func (a *approximation) move(c pair) {
 // holds exactly one root. n disjoint discs that hold at least one of n roots
 // each hold exactly one. A disc that meets the real axis, enlarged threefold,
 // still holds one root and the mirror image of that root: the root is real.
-func certify(f *factor, roots []approximation) ([]*Number, bool) {
+func certify(f *factor, roots []approximation) ([]Number, bool) {
 	n := len(roots)
 	separations := make([]scaled, n)
 	for i := range roots {
@@ -187,23 +187,24 @@ func certify(f *factor, roots []approximation) ([]*Number, bool) {
 		}
 		separations[i] = sep
 	}
-	var out []*Number
+	var out []Number
 	for i := range roots {
 		a := &roots[i]
-		x := &Number{factor: f, radius: a.radius, separation: separations[i]}
-		x.center.set(&a.point)
 		im := fromBig(&a.im, a.e)
 		height := newScaled(math.Abs(im.m), im.e).up()
-		switch {
-		case height.sub(a.radius).m <= 0:
-			x.real = true
-			x.center.im.SetInt64(0)
-			x.radius = a.radius.add(height).up()
-			x.separation = x.separation.sub(height).down()
-		case im.m < 0:
+		flat := height.sub(a.radius).m <= 0
+		if !flat && im.m < 0 {
 			continue
 		}
-		out = append(out, x)
+		out = append(out, Number{factor: f, wide: new(point), radius: a.radius, separation: separations[i], open: true})
+		x := &out[len(out)-1]
+		x.wide.set(&a.point)
+		if flat {
+			x.real = true
+			x.wide.im.SetInt64(0)
+			x.radius = a.radius.add(height).up()
+			x.separation = x.separation.sub(height).down()
+		}
 	}
 	return out, true
 }

@@ -1,28 +1,31 @@
 package algebraic
 
-import "sort"
+import "slices"
 
 // sortRoots puts the roots on and above the real axis into the order that
 // Roots documents: by the components rounded to 53 bits, then to 106, 212, …
 // bits. Distinct roots differ in one component from some precision on.
 func sortRoots(roots []Root, w *work) error {
 	var failed error
-	sort.Slice(roots, func(i, j int) bool {
-		a, b := roots[i].Number, roots[j].Number
-		if real(a.value) != real(b.value) {
-			return real(a.value) < real(b.value)
-		}
-		if imag(a.value) != imag(b.value) {
-			return imag(a.value) < imag(b.value)
-		}
-		if a == b {
-			return false
+	slices.SortFunc(roots, func(r, s Root) int {
+		a, b := r.Number, s.Number
+		switch {
+		case real(a.value) < real(b.value):
+			return -1
+		case real(a.value) > real(b.value):
+			return 1
+		case imag(a.value) < imag(b.value):
+			return -1
+		case imag(a.value) > imag(b.value):
+			return 1
+		case a == b:
+			return 0
 		}
 		c, err := compare(a, b, w)
 		if err != nil {
 			failed = err
 		}
-		return c < 0
+		return c
 	})
 	return failed
 }

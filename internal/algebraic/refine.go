@@ -23,12 +23,11 @@ type disc struct {
 // off by at most |N|²B/(1 − |N|B), and it converges quadratically from the
 // center, because the separation is at least 4·n radii.
 func (x *Number) disc(bits uint, w *work) (disc, error) {
-	d := disc{radius: x.radius}
-	d.set(&x.center)
 	if x.IsZero() {
-		d.radius = scaled{}
-		return d, nil
+		return disc{}, nil
 	}
+	d := disc{radius: x.radius}
+	d.set(x.center())
 	n := x.factor.degree
 	bound := scaled{}
 	if n > 1 {

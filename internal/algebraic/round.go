@@ -21,7 +21,7 @@ func (x *Number) settle(w *work) error {
 	if err != nil {
 		return err
 	}
-	x.value = complex(re, im)
+	x.value, x.open = complex(re, im), false
 	return nil
 }
 

@@ -1,0 +1,220 @@
+package algebraic
+
+import (
+	"math"
+	"math/big"
+
+	"github.com/qofs/qofs/internal/intpoly"
+)
+
+// floats is an integer polynomial p in double-double: p(2^k·y) = 2^m·Σ
+// (hi_i + lo_i)·y^i·(1 + ε_i) with |ε_i| ≤ 2^-105. size is at least |hi + lo|,
+// and so much larger than 0 that a multiple of it covers every underflow.
+type floats struct {
+	hi, lo, size []float64
+	k            int
+	logs         []float64 // about log2|hi_i|, −Inf for 0
+	exact        bool      // every lo is 0
+}
+
+// tiny exceeds every rounding error of an operation that underflows, 2^-1075,
+// by more than all factors 2^-106 and n² that a bound multiplies it with.
+const tiny = 0x1p-900
+
+// mostLog bounds log2 of the terms of a polynomial in float64, so that values
+// can be squared.
+const mostLog = 450
+
+// newFloats scales p so that the first and the last coefficient have about the
+// same size. It reports false when the coefficients or the terms at the roots
+// span too many decades for float64.
+func newFloats(p intpoly.Poly, buffer []float64) (*floats, bool) {
+	n := p.Degree()
+	for len(buffer) < 4*(n+1) {
+		buffer = make([]float64, 4*(n+1))
+	}
+	f := &floats{
+		hi: buffer[0 : n+1 : n+1], lo: buffer[n+1 : 2*n+2 : 2*n+2],
+		size: buffer[2*n+2 : 3*n+3 : 3*n+3], logs: buffer[3*n+3 : 4*n+4], exact: true,
+	}
+	span := p.BitLen(0) - p.BitLen(n)
+	f.k = span / n
+	m := (p.BitLen(0) + p.BitLen(n) + n*f.k) / 2
+	for i := range n + 1 {
+		f.logs[i] = math.Inf(-1)
+		f.hi[i], f.lo[i], f.size[i] = 0, 0, tiny
+		if p.Sign(i) == 0 {
+			continue
+		}
+		e := i*f.k - m
+		if b := p.BitLen(i) + e; b > mostLog || b < -mostLog {
+			return nil, false
+		}
+		hi, lo := doubleDouble(p.Coefficient(i), e)
+		f.hi[i], f.lo[i] = hi, lo
+		f.exact = f.exact && lo == 0
+		f.size[i] = math.Abs(hi)*(1+0x1p-50) + tiny
+		f.logs[i] = roughLog2(math.Abs(hi))
+	}
+	return f, true
+}
+
+// doubleDouble returns hi + lo = c·2^e, truncated to 106 bits.
+func doubleDouble(c *big.Int, e int) (hi, lo float64) {
+	if c.IsInt64() {
+		if v := c.Int64(); -1<<53 <= v && v <= 1<<53 {
+			return math.Ldexp(float64(v), e), 0
+		}
+	}
+	var t big.Int
+	drop := c.BitLen() - 53
+	if drop <= 0 {
+		return math.Ldexp(float64(c.Int64()), e), 0
+	}
+	// Quo truncates towards 0: the parts have the sign of c.
+	t.Quo(c, new(big.Int).Lsh(big.NewInt(1), uint(drop)))
+	hi = math.Ldexp(float64(t.Int64()), e+drop)
+	t.Sub(c, t.Lsh(&t, uint(drop)))
+	if more := drop - 53; more > 0 {
+		t.Quo(&t, new(big.Int).Lsh(big.NewInt(1), uint(more)))
+		return hi, math.Ldexp(float64(t.Int64()), e+more)
+	}
+	return hi, math.Ldexp(float64(t.Int64()), e)
+}
+
+// roughLog2 is within 0.09 of log2 x for a positive normal x: the exponent and
+// the mantissa read as one number.
+func roughLog2(x float64) float64 { return float64(math.Float64bits(x))*0x1p-52 - 1023 }
+
+// roughExp2 is the inverse of roughLog2.
+func roughExp2(x float64) float64 { return math.Float64frombits(uint64((x + 1023) * 0x1p52)) }
+
+// place writes the starting points, or reports false where the terms at the
+// roots would leave the range of float64.
+func (f *floats) place(re, im []float64) bool {
+	n := len(f.hi) - 1
+	var buffer [65]int
+	hull := convexHull(f.logs, buffer[:0])
+	// No root is larger than twice 2^most (Fujiwara 1916); the last edge is
+	// the steepest.
+	last := len(hull) - 1
+	most := (f.logs[hull[last-1]]-f.logs[n])/float64(n-hull[last-1]) + 1
+	least := (f.logs[0]-f.logs[hull[1]])/float64(hull[1]) - 1
+	if most > mostLog || least < -mostLog {
+		return false
+	}
+	for _, i := range hull {
+		if f.logs[i]+float64(i)*max(0, most) > mostLog {
+			return false
+		}
+	}
+	at := 0
+	for h := 1; h < len(hull); h++ {
+		a, b := hull[h-1], hull[h]
+		r := roughExp2((f.logs[a] - f.logs[b]) / float64(b-a))
+		sin, cos := math.Sincos(2*math.Pi*float64(h)/float64(n) + 0.7)
+		stepSin, stepCos := 0.0, -1.0
+		if b-a != 2 {
+			stepSin, stepCos = math.Sincos(2 * math.Pi / float64(b-a))
+		}
+		for range b - a {
+			re[at], im[at] = r*cos, r*sin
+			at++
+			sin, cos = sin*stepCos+cos*stepSin, cos*stepCos-sin*stepSin
+		}
+	}
+	return true
+}
+
+// convexHull returns the indices of the upper convex hull of the points
+// (i, logs[i]).
+func convexHull(logs []float64, hull []int) []int {
+	for i, y := range logs {
+		if math.IsInf(y, -1) {
+			continue
+		}
+		for len(hull) > 1 {
+			a, b := hull[len(hull)-2], hull[len(hull)-1]
+			if (logs[b]-logs[a])*float64(i-a) > (y-logs[a])*float64(b-a) {
+				break
+			}
+			hull = hull[:len(hull)-1]
+		}
+		hull = append(hull, i)
+	}
+	return hull
+}
+
+// settled is the square of the relative correction below which the next one,
+// by the third order of the iteration, would be lost in the last place.
+const settled = 0x1p-60
+
+// approximate runs the simultaneous iteration in float64; it reports false when
+// the approximations leave the numbers. Nothing that it computes is relied on
+// for more than a good guess, so its rounding does not matter.
+func (f *floats) approximate(re, im []float64, sweeps int) bool {
+	n := len(re)
+	var buffer [64]bool
+	done := buffer[:]
+	if n > len(done) {
+		done = make([]bool, n)
+	}
+	left := n
+	c := f.hi
+	for range sweeps {
+		for i := range re {
+			if done[i] {
+				continue
+			}
+			x, y := re[i], im[i]
+			// The quotient by the quadratic with the roots x ± iy; see
+			// evaluation.at.
+			t, m := 2*x, x*x+y*y
+			b1, b2, d1, d2 := c[n], 0.0, 0.0, 0.0
+			for k := n - 1; k >= 2; k-- {
+				d1, d2 = (b1-m*d2)+t*d1, d1 // d_{k+1}
+				b1, b2 = (c[k]-m*b2)+t*b1, b1
+			}
+			if n >= 2 {
+				b1, b2 = (c[1]-m*b2)+t*b1, b1
+			}
+			pr, pi := c[0]+x*b1-m*b2, y*b1
+			dr, di := b1-2*y*(y*d1), 2*y*(b2+x*d1-m*d2)
+			sr, si := sumOfInverses(re, im, i)
+			dr, di = dr-(pr*sr-pi*si), di-(pr*si+pi*sr)
+			q := 1 / (dr*dr + di*di)
+			cr, ci := (pr*dr+pi*di)*q, (pi*dr-pr*di)*q
+			re[i], im[i] = x-cr, y-ci
+			if size := cr*cr + ci*ci; !(size > settled*m) {
+				if size != size {
+					return false
+				}
+				done[i] = true
+				left--
+			}
+		}
+		if left == 0 {
+			break
+		}
+	}
+	return true
+}
+
+// sumOfInverses returns Σ 1/(z_i − z_k) over k ≠ i.
+func sumOfInverses(re, im []float64, i int) (sr, si float64) {
+	x, y := re[i], im[i]
+	im = im[:len(re)]
+	for k, u := range re[:i] {
+		dx, dy := x-u, y-im[k]
+		q := 1 / (dx*dx + dy*dy)
+		sr += dx * q
+		si -= dy * q
+	}
+	for k := i + 1; k < len(re); k++ {
+		dx, dy := x-re[k], y-im[k]
+		q := 1 / (dx*dx + dy*dy)
+		sr += dx * q
+		si -= dy * q
+	}
+	return sr, si
+}
