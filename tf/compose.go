@@ -1,0 +1,174 @@
+package tf
+
+import (
+	"math/big"
+	"strconv"
+
+	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/intpoly"
+	"github.com/qofs/qofs/internal/ratfun"
+	"github.com/qofs/qofs/units"
+)
+
+// unity is the function 1.
+var unity, _ = ratfun.New(intpoly.FromInt64s(1), intpoly.FromInt64s(1))
+
+// Series returns the chain of blocks in the order in which a signal passes
+// them: first's input to the last one's output. Dead times add up, nothing is
+// cancelled. The errors are *JunctionError where an output does not fit the
+// next input and *PeriodError where sampling periods differ.
+//
+// Series is associative; where the signals allow both orders it is commutative
+// up to Equivalent.
+func Series[G Block[G]](first G, rest ...G) (G, error) {
+	c := first.core()
+	for i := range rest {
+		r := rest[i].core()
+		if !fits(&c.output, &r.input) {
+			return junction[G]("Series", i+1, c.output, "output of block "+strconv.Itoa(i),
+				r.input, "input of block "+strconv.Itoa(i+1))
+		}
+		if err := checkPeriod("Series", i+1, &c, &r); err != nil {
+			return first.with(core{}), err
+		}
+		c.f = c.f.Mul(r.f)
+		c.output = r.output
+		if r.delay != nil {
+			if c.delay == nil {
+				c.delay = r.delay
+			} else {
+				c.delay = new(big.Rat).Add(c.delay, r.delay)
+			}
+		}
+	}
+	return first.with(c), nil
+}
+
+// Parallel returns the sum of blocks that share input and output. The errors
+// are *JunctionError where signals do not fit, *PeriodError where sampling
+// periods differ and *DeadTimeError where dead times differ.
+//
+// Denominators multiply even where they are equal, because two blocks with the
+// same pole hold it twice; LowestTerms reduces the sum. Parallel is associative
+// and commutative, and Series distributes over it, up to Equivalent.
+func Parallel[G Block[G]](first G, rest ...G) (G, error) {
+	c := first.core()
+	for i := range rest {
+		r := rest[i].core()
+		if !fits(&c.input, &r.input) {
+			return junction[G]("Parallel", i+1, c.input, "input of the blocks before",
+				r.input, "input of block "+strconv.Itoa(i+1))
+		}
+		if !fits(&c.output, &r.output) {
+			return junction[G]("Parallel", i+1, c.output, "output of the blocks before",
+				r.output, "output of block "+strconv.Itoa(i+1))
+		}
+		if err := checkPeriod("Parallel", i+1, &c, &r); err != nil {
+			return first.with(core{}), err
+		}
+		if !sameTime(c.delay, r.delay) {
+			return first.with(core{}), &DeadTimeError{Operation: "Parallel", Index: i + 1,
+				Earlier: c.delaySeconds(), Later: r.delaySeconds()}
+		}
+		c.f = c.f.Add(r.f)
+		c.input, c.output = merge(c.input, r.input), merge(c.output, r.output)
+	}
+	return first.with(c), nil
+}
+
+// Feedback returns the closed loop forward/(1 + forward·back) with negative
+// feedback: what back makes of the output is subtracted from the input. It
+// goes from forward's input to forward's output. Nothing is cancelled: the
+// zeros are those of forward and the poles of back.
+//
+// The errors are *JunctionError where forward's output does not fit back's
+// input, or back's output forward's input; *PeriodError where sampling periods
+// differ; *DeadTimeError where one of the blocks has a dead time; and
+// ErrAlgebraicLoop where 1 + forward·back is identically 0.
+func Feedback[G Block[G]](forward, back G) (G, error) {
+	return feedback("Feedback", forward, back, 1)
+}
+
+// PositiveFeedback returns forward/(1 − forward·back): what back makes of the
+// output is added to the input. In all else it is like Feedback.
+func PositiveFeedback[G Block[G]](forward, back G) (G, error) {
+	return feedback("PositiveFeedback", forward, back, -1)
+}
+
+func feedback[G Block[G]](operation string, forward, back G, sign int) (G, error) {
+	f, b := forward.core(), back.core()
+	if !fits(&f.output, &b.input) {
+		return junction[G](operation, 1, f.output, "output of block 0 (forward)", b.input, "input of block 1 (back)")
+	}
+	if !fits(&f.input, &b.output) {
+		return junction[G](operation, 1, f.input, "input of block 0 (forward)", b.output, "output of block 1 (back)")
+	}
+	if err := checkPeriod(operation, 1, &f, &b); err != nil {
+		return forward.with(core{}), err
+	}
+	if f.delay != nil || b.delay != nil {
+		return forward.with(core{}), &DeadTimeError{Operation: operation, Index: 1,
+			Earlier: f.delaySeconds(), Later: b.delaySeconds()}
+	}
+	loop, ok := f.f.Feedback(b.f, sign)
+	if !ok {
+		return forward.with(core{}), ErrAlgebraicLoop
+	}
+	f.f = loop
+	f.input, f.output = merge(f.input, b.output), merge(f.output, b.input)
+	return forward.with(f), nil
+}
+
+// UnityFeedback returns forward/(1 + forward): the output itself is subtracted
+// from the input. The two must have the same unit; their names may differ, as
+// a setpoint and the level that follows it do. The errors are those of
+// Feedback.
+func UnityFeedback[G Block[G]](forward G) (G, error) {
+	f := forward.core()
+	if !f.output.Unit.Equal(f.input.Unit) {
+		return junction[G]("UnityFeedback", 0, f.input, "input of block 0 (forward)", f.output, "output of block 0 (forward)")
+	}
+	if f.delay != nil {
+		return forward.with(core{}), &DeadTimeError{Operation: "UnityFeedback",
+			Earlier: f.delaySeconds(), Later: new(big.Rat)}
+	}
+	loop, ok := f.f.Feedback(unity, 1)
+	if !ok {
+		return forward.with(core{}), ErrAlgebraicLoop
+	}
+	f.f = loop
+	return forward.with(f), nil
+}
+
+// Inverse returns 1/g, from g's output to g's input. It is improper where g is
+// strictly proper. The errors are ErrDivisionByZero for g = 0 and
+// *DeadTimeError where g has a dead time. Inverse undoes itself up to Equal.
+func Inverse[G Block[G]](g G) (G, error) {
+	c := g.core()
+	if c.delay != nil {
+		return g.with(core{}), &DeadTimeError{Operation: "Inverse", Earlier: new(big.Rat), Later: c.delaySeconds()}
+	}
+	f, ok := c.f.Inverse()
+	if !ok {
+		return g.with(core{}), fault.ErrDivisionByZero
+	}
+	c.f = f
+	c.input, c.output = c.output, c.input
+	return g.with(c), nil
+}
+
+// Scale returns k·g for a pure number k; nil reads as 0. Signals stay. For a
+// factor with a unit put a Gain in Series.
+func Scale[G Block[G]](g G, k *big.Rat) G {
+	c := g.core()
+	if k == nil {
+		k = new(big.Rat)
+	}
+	c.f = c.f.Scale(k)
+	return g.with(c)
+}
+
+func junction[G any](operation string, index int, earlier units.Signal, earlierEnd string, later units.Signal, laterEnd string) (g G, err error) {
+	return g, &JunctionError{Operation: operation, Index: index,
+		Earlier: earlier, EarlierEnd: earlierEnd, Later: later, LaterEnd: laterEnd}
+}
