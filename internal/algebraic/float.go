@@ -14,7 +14,6 @@ type floats struct {
 	hi, lo, size []float64
 	k            int
 	logs         []float64 // about log2|hi_i|, −Inf for 0
-	exact        bool      // every lo is 0
 }
 
 // tiny exceeds every rounding error of an operation that underflows, 2^-1075,
@@ -27,19 +26,19 @@ const mostLog = 450
 
 // newFloats scales p so that the first and the last coefficient have about the
 // same size. It reports false when the coefficients or the terms at the roots
-// span too many decades for float64.
-func newFloats(p intpoly.Poly, buffer []float64) (*floats, bool) {
+// span too many decades for float64. The buffer has room for 4·(n+1) numbers.
+func newFloats(p intpoly.Poly, buffer []float64) (f floats, ok bool) {
 	n := p.Degree()
-	for len(buffer) < 4*(n+1) {
-		buffer = make([]float64, 4*(n+1))
-	}
-	f := &floats{
+	f = floats{
 		hi: buffer[0 : n+1 : n+1], lo: buffer[n+1 : 2*n+2 : 2*n+2],
-		size: buffer[2*n+2 : 3*n+3 : 3*n+3], logs: buffer[3*n+3 : 4*n+4], exact: true,
+		size: buffer[2*n+2 : 3*n+3 : 3*n+3], logs: buffer[3*n+3 : 4*n+4],
 	}
-	span := p.BitLen(0) - p.BitLen(n)
-	f.k = span / n
-	m := (p.BitLen(0) + p.BitLen(n) + n*f.k) / 2
+	first, last := p.BitLen(0), p.BitLen(n)
+	f.k = (first - last) / n
+	m := 0
+	if f.k != 0 || p.MaxBitLen() > 64 {
+		m = (first + last + n*f.k) / 2
+	}
 	for i := range n + 1 {
 		f.logs[i] = math.Inf(-1)
 		f.hi[i], f.lo[i], f.size[i] = 0, 0, tiny
@@ -48,11 +47,17 @@ func newFloats(p intpoly.Poly, buffer []float64) (*floats, bool) {
 		}
 		e := i*f.k - m
 		if b := p.BitLen(i) + e; b > mostLog || b < -mostLog {
-			return nil, false
+			return f, false
 		}
-		hi, lo := doubleDouble(p.Coefficient(i), e)
+		var hi, lo float64
+		if v, ok := p.Int64(i); ok && -1<<53 <= v && v <= 1<<53 {
+			if hi = float64(v); e != 0 {
+				hi = math.Ldexp(hi, e)
+			}
+		} else {
+			hi, lo = doubleDouble(p.Coefficient(i), e)
+		}
 		f.hi[i], f.lo[i] = hi, lo
-		f.exact = f.exact && lo == 0
 		f.size[i] = math.Abs(hi)*(1+0x1p-50) + tiny
 		f.logs[i] = roughLog2(math.Abs(hi))
 	}
@@ -61,11 +66,6 @@ func newFloats(p intpoly.Poly, buffer []float64) (*floats, bool) {
 
 // doubleDouble returns hi + lo = c·2^e, truncated to 106 bits.
 func doubleDouble(c *big.Int, e int) (hi, lo float64) {
-	if c.IsInt64() {
-		if v := c.Int64(); -1<<53 <= v && v <= 1<<53 {
-			return math.Ldexp(float64(v), e), 0
-		}
-	}
 	var t big.Int
 	drop := c.BitLen() - 53
 	if drop <= 0 {
@@ -147,7 +147,7 @@ func convexHull(logs []float64, hull []int) []int {
 
 // settled is the square of the relative correction below which the next one,
 // by the third order of the iteration, would be lost in the last place.
-const settled = 0x1p-60
+const settled = 0x1p-36
 
 // approximate runs the simultaneous iteration in float64; it reports false when
 // the approximations leave the numbers. Nothing that it computes is relied on

@@ -11,33 +11,32 @@ import (
 // decomposition.
 const maxSweeps = 32
 
+// smallDegree is the largest degree for which the workspace is on the stack.
+const smallDegree = 16
+
 // triage finds the roots on and above the real axis in float64 and
 // double-double. It reports false unless disjoint discs prove that every root
 // is simple and isolated; where a component is not determined to the last bit,
 // the number says so.
 func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 	n := p.Degree()
-	var coefficients [256]float64
-	f, ok := newFloats(p, coefficients[:])
-	if !ok {
-		return nil, false
-	}
-	var points [128]float64
-	buffer := points[:]
-	if 2*n > len(buffer) {
-		buffer = make([]float64, 2*n)
+	var small [6 * (smallDegree + 1)]float64
+	buffer := small[:]
+	if n > smallDegree {
+		buffer = make([]float64, 6*(n+1))
 	}
 	re, im := buffer[:n:n], buffer[n:2*n:2*n]
-	if !f.place(re, im) || !f.approximate(re, im, maxSweeps) {
+	f, ok := newFloats(p, buffer[2*n:])
+	if !ok || !f.place(re, im) || !f.approximate(re, im, maxSweeps) {
 		return nil, false
 	}
 	m, ok := foldConjugates(re, im)
 	if !ok {
 		return nil, false
 	}
-	var room [64]candidate
+	var room [smallDegree]candidate
 	found := room[:]
-	if m > len(found) {
+	if m > smallDegree {
 		found = make([]candidate, m)
 	}
 	found = found[:m]
