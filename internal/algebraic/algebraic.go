@@ -52,7 +52,8 @@ type Number struct {
 	real      bool // proved real
 	imaginary bool // proved to have the real part 0
 	below     bool // has a negative imaginary part
-	open      bool // not rounded yet
+	openRe    bool // components of value that are not rounded yet
+	openIm    bool
 	value     complex128
 }
 
@@ -114,7 +115,7 @@ func find(p intpoly.Poly, w *work) ([]Root, error) {
 		}
 	}
 	for _, r := range roots {
-		if r.Number.open {
+		if r.Number.openRe || r.Number.openIm {
 			if err := r.Number.settle(w); err != nil {
 				return nil, err
 			}
@@ -135,22 +136,27 @@ func appendNonzero(roots []Root, p intpoly.Poly, w *work) ([]Root, error) {
 		return appendNumbers(roots, numbers, 1), nil
 	}
 	w.decomposed++
-	factors := p.SquareFree()
-	for _, f := range factors {
-		numbers, ok := []Number(nil), false
-		if f.Poly.Degree() < p.Degree() {
-			numbers, ok = triage(f.Poly, w)
+	for _, f := range p.SquareFree() {
+		find := simpleRoots
+		if f.Poly.Degree() == p.Degree() {
+			find = isolate // float64 has failed already
 		}
-		if !ok {
-			w.isolated++
-			var err error
-			if numbers, err = isolate(&factor{poly: f.Poly, degree: f.Poly.Degree()}, w); err != nil {
-				return nil, err
-			}
+		numbers, err := find(f.Poly, w)
+		if err != nil {
+			return nil, err
 		}
 		roots = appendNumbers(roots, numbers, f.Multiplicity)
 	}
 	return roots, nil
+}
+
+// simpleRoots returns the roots on and above the real axis of a square-free
+// polynomial without the root 0.
+func simpleRoots(p intpoly.Poly, w *work) ([]Number, error) {
+	if numbers, ok := triage(p, w); ok {
+		return numbers, nil
+	}
+	return isolate(p, w)
 }
 
 func appendNumbers(roots []Root, numbers []Number, multiplicity int) []Root {
@@ -289,7 +295,10 @@ type work struct {
 
 func (w *work) count(x *Number) {
 	w.triaged++
-	if x.open {
+	if x.openRe {
+		w.refined++
+	}
+	if x.openIm {
 		w.refined++
 	}
 }

@@ -43,7 +43,7 @@ func (x *Number) Equal(y *Number) bool {
 		return false
 	}
 	w := &work{left: maxWork}
-	numbers, err := isolate(&factor{poly: common, degree: common.Degree()}, w)
+	numbers, err := simpleRoots(common, w)
 	if err != nil {
 		return false
 	}

@@ -86,7 +86,7 @@ func commonRoots(p, q intpoly.Poly) func(*work) ([]*Number, error) {
 				return out, nil
 			}
 		}
-		numbers, err := isolate(&factor{poly: g, degree: g.Degree()}, w)
+		numbers, err := simpleRoots(g, w)
 		for i := range numbers {
 			if numbers[i].real {
 				out = append(out, &numbers[i])
@@ -165,7 +165,7 @@ func roundRat(c *big.Rat, e int) *big.Int {
 // precision, is x: it is when it lies in the isolating disc, which holds no
 // other root.
 func (x *Number) isAt(w *work, candidate func(bits uint) (disc, error)) (bool, error) {
-	for bits := uint(64); ; bits *= 2 {
+	for bits := uint(16); ; bits *= 2 {
 		d, err := candidate(bits)
 		if err != nil {
 			return false, err

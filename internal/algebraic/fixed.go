@@ -52,6 +52,17 @@ func (z *point) setDoubles(re, im double, k int) {
 	z.e = low + k
 }
 
+// order returns e with |z| ≤ 2^e(1 − 2^-40), the smallest but for borderline
+// cases. Too large an exponent would cost a bit for every degree in fixed.
+func (z *point) order() int {
+	k := z.exponentOfLargest()
+	re, im := fromBig(&z.re, z.e-k), fromBig(&z.im, z.e-k)
+	if math.Hypot(math.Ldexp(re.m, max(re.e, -2000)), math.Ldexp(im.m, max(im.e, -2000))) > 1-0x1p-39 {
+		k++
+	}
+	return k
+}
+
 // rescale changes the exponent to e, dropping bits below it.
 func (z *point) rescale(e int) {
 	if e == z.e {

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/intpoly"
 )
 
 // unbounded is the exponent of a radius that is not known yet.
@@ -14,12 +15,14 @@ const unbounded = 1 << 28
 type approximation struct {
 	point
 	radius scaled // bound on the distance to the nearest root, absolute
-	done   bool   // no better at this precision
+	done   bool   // isolated, or no better at this precision
+	lone   bool   // seemed to be isolated when it was last looked at
 }
 
-// isolate returns the numbers on and above the real axis of a square-free
-// factor that has not the root 0.
-func isolate(f *factor, w *work) ([]Number, error) {
+// isolate is simpleRoots in fixed point of growing precision.
+func isolate(p intpoly.Poly, w *work) ([]Number, error) {
+	w.isolated++
+	f := &factor{poly: p, degree: p.Degree()}
 	starts := startingPoints(f.poly)
 	roots := make([]approximation, len(starts))
 	for i, s := range starts {
@@ -29,12 +32,14 @@ func isolate(f *factor, w *work) ([]Number, error) {
 	// largest (Mahler 1964), and an evaluation loses no more than that.
 	n := float64(f.degree)
 	limit := 8 * (n*(float64(f.poly.MaxBitLen())+2*math.Log2(n+1)) + 256)
-	for bits := uint(128); float64(bits) <= limit; bits *= 2 {
+	// Float64 has failed already: about a bit for every degree is lost.
+	for bits := uint(128 + f.degree); float64(bits) <= limit; bits += bits / 2 {
 		if err := improve(f, roots, bits, w); err != nil {
 			return nil, err
 		}
-		if numbers, ok := certify(f, roots); ok {
-			return numbers, nil
+		separations, ok := separations(roots)
+		if ok {
+			return numbers(f, roots, separations), nil
 		}
 	}
 	return nil, fmt.Errorf("roots: no isolating discs at %v bits: %w", limit, fault.ErrLimit)
@@ -50,26 +55,10 @@ func (a *approximation) place(s start) {
 	a.e = int(e) - 53
 }
 
-// fit returns the exponent e with |z| ≤ 2^e and writes z in units of
-// 2^(e−bits). It keeps an exponent that is at most two too large, so that
-// the scaled polynomials can be shared.
-func (a *approximation) fit(e int, bits uint) int {
-	if k := a.exponentOfLargest() + 1; k > e || k < e-2 {
-		e = k
-	}
-	a.rescale(e - int(bits))
-	return e
-}
-
 // improve runs the iteration z_i −= N/(1 − N·Σ 1/(z_i − z_k)), N = p/p', until
 // no value can be told from 0 at this precision.
 func improve(f *factor, roots []approximation, bits uint, w *work) error {
 	polys := map[int]*fixed{}
-	exponents := make([]int, len(roots))
-	for i := range roots {
-		roots[i].done = false
-		exponents[i] = math.MinInt32
-	}
 	var ev evaluation
 	for sweep := 0; sweep < 40+4*len(roots); sweep++ {
 		active := false
@@ -79,8 +68,8 @@ func improve(f *factor, roots []approximation, bits uint, w *work) error {
 				continue
 			}
 			active = true
-			e := a.fit(exponents[i], bits)
-			exponents[i] = e
+			e := a.order()
+			a.rescale(e - int(bits))
 			p := polys[e]
 			if p == nil {
 				p = newFixed(f.poly, e, bits)
@@ -124,13 +113,26 @@ func (a *approximation) step(roots []approximation, i, e int, ev *evaluation) {
 	newton := value.div(d)
 	newton.e += e
 	var sum pair
+	nearest, neighbour := scaled{0.5, a.exponentOfLargest() - 1}, i
 	for k := range roots {
 		if k == i {
 			continue
 		}
 		if diff := difference(&a.point, &roots[k].point); !diff.isZero() {
 			sum = sum.add(pair{1, 0, 0}.div(diff))
+			if d := newScaled(max(math.Abs(diff.re), math.Abs(diff.im)), diff.e); d.less(nearest) {
+				nearest, neighbour = d, k
+			}
 		}
+	}
+	const margin = 0x1p20
+	a.lone = a.radius.times(float64(n) * margin).less(nearest)
+	if b := &roots[neighbour]; b.lone && b.done && !b.radius.times(float64(n)*margin).less(nearest) {
+		b.done, b.lone = false, false // no longer, with this one so near
+	}
+	if a.lone {
+		a.done = true
+		return
 	}
 	q := pair{1, 0, 0}.add(newton.mul(sum).neg())
 	if !q.isZero() {
@@ -158,35 +160,37 @@ func (a *approximation) move(c pair) {
 	a.im.Sub(&a.im, &d.im)
 }
 
-// certify turns approximations into numbers when their discs prove that each
-// holds exactly one root. n disjoint discs that hold at least one of n roots
-// each hold exactly one. A disc that meets the real axis, enlarged threefold,
-// still holds one root and the mirror image of that root: the root is real.
-func certify(f *factor, roots []approximation) ([]Number, bool) {
+// separations returns for each disc how far other roots are from its center at
+// least, and whether the discs prove that each holds exactly one root: n
+// disjoint discs that hold at least one of n roots each hold exactly one.
+// Approximations that are not isolated are set to go on.
+func separations(roots []approximation) ([]scaled, bool) {
 	n := len(roots)
-	separations := make([]scaled, n)
+	out := make([]scaled, n)
+	proved := true
 	for i := range roots {
-		sep := scaled{0.5, unbounded}
+		a := &roots[i]
+		sep := scaled{0.5, a.exponentOfLargest() + 64}
 		for k := range roots {
 			if k != i {
-				d := difference(&roots[i].point, &roots[k].point).abs().down().sub(roots[k].radius)
+				d := difference(&a.point, &roots[k].point).abs().down().sub(roots[k].radius)
 				if d.less(sep) {
 					sep = d
 				}
 			}
 		}
-		if n == 1 {
-			sep = scaled{0.5, roots[i].radius.e + 64}
-		}
-		sep = sep.down()
-		if sep.m <= 0 || !roots[i].radius.times(float64(16*n)).less(sep) {
-			return nil, false
-		}
-		if size := roots[i].radius.times(16); !size.less(scaled{0.5, roots[i].exponentOfLargest()}) {
-			return nil, false
-		}
-		separations[i] = sep
+		out[i] = sep.down()
+		a.done = out[i].m > 0 && a.radius.times(float64(16*n)).less(out[i]) &&
+			a.radius.times(16).less(scaled{0.5, a.exponentOfLargest()})
+		proved = proved && a.done
 	}
+	return out, proved
+}
+
+// numbers returns the roots on and above the real axis. A disc that meets the
+// axis, enlarged threefold, still holds one root and the mirror image of that
+// root: the root is real.
+func numbers(f *factor, roots []approximation, separations []scaled) []Number {
 	var out []Number
 	for i := range roots {
 		a := &roots[i]
@@ -196,7 +200,7 @@ func certify(f *factor, roots []approximation) ([]Number, bool) {
 		if !flat && im.m < 0 {
 			continue
 		}
-		out = append(out, Number{factor: f, wide: new(point), radius: a.radius, separation: separations[i], open: true})
+		out = append(out, Number{factor: f, wide: new(point), radius: a.radius, separation: separations[i], openRe: true, openIm: !flat})
 		x := &out[len(out)-1]
 		x.wide.set(&a.point)
 		if flat {
@@ -206,5 +210,5 @@ func certify(f *factor, roots []approximation) ([]Number, bool) {
 			x.separation = x.separation.sub(height).down()
 		}
 	}
-	return out, true
+	return out
 }

@@ -33,10 +33,10 @@ func (x *Number) disc(bits uint, w *work) (disc, error) {
 	if n > 1 {
 		bound = newScaled(float64(n-1), 0).div(x.separation.sub(x.radius.times(4)).down()).up()
 	}
-	e := d.exponentOfLargest() + 1
+	e := d.order()
 	target := e - int(bits)
 	// A point rounded to the working precision stays within two radii.
-	working := uint(max(128, e-d.radius.e+16))
+	working := uint(max(128, e-d.radius.e+18))
 	var ev evaluation
 	for d.radius.m != 0 && d.radius.e > target {
 		if working > 16*(MaxPrecision+MaxBits) {
@@ -46,7 +46,7 @@ func (x *Number) disc(bits uint, w *work) (disc, error) {
 			return disc{}, err
 		}
 		before := d.radius.e
-		if next, ok := d.newton(x, e, working, bound, &ev); ok && next.radius.less(d.radius) {
+		if next, ok := d.newton(x, working, bound, &ev); ok && next.radius.less(d.radius) {
 			d = next
 		}
 		if before-d.radius.e < 8 { // held up by the rounding errors
@@ -59,9 +59,10 @@ func (x *Number) disc(bits uint, w *work) (disc, error) {
 }
 
 // newton returns the disc after one step at the given precision.
-func (d *disc) newton(x *Number, e int, bits uint, bound scaled, ev *evaluation) (disc, bool) {
-	z := *new(disc)
+func (d *disc) newton(x *Number, bits uint, bound scaled, ev *evaluation) (disc, bool) {
+	var z disc
 	z.set(&d.point)
+	e := z.order()
 	z.rescale(e - int(bits))
 	f := newFixed(x.factor.poly, e, bits)
 	ev.at(f, &z.point)

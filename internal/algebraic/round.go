@@ -13,15 +13,19 @@ func (x *Number) settle(w *work) error {
 	if x.IsZero() {
 		return nil
 	}
-	re, err := x.component(false, w)
-	if err != nil {
-		return err
+	re, im := real(x.value), imag(x.value)
+	var err error
+	if x.openRe {
+		if re, err = x.component(false, w); err != nil {
+			return err
+		}
 	}
-	im, err := x.component(true, w)
-	if err != nil {
-		return err
+	if x.openIm {
+		if im, err = x.component(true, w); err != nil {
+			return err
+		}
 	}
-	x.value, x.open = complex(re, im), false
+	x.value, x.openRe, x.openIm = complex(re, im), false, false
 	return nil
 }
 
@@ -39,7 +43,8 @@ func (x *Number) component(imaginary bool, w *work) (float64, error) {
 }
 
 // exactly is the precision in bits from which on the exact decision is cheaper
-// than more digits.
+// than more digits, except for the question whether a component is 0, which
+// comes first.
 const exactly = 160
 
 // rounded returns a component rounded to the given number of bits, and for 0
@@ -50,7 +55,7 @@ func (x *Number) rounded(imaginary bool, bits uint, w *work) (*big.Float, error)
 		return new(big.Float), nil
 	}
 	decided := (*big.Rat)(nil)
-	for precision := max(100, bits+32); ; precision *= 2 {
+	for precision := max(80, bits+32); ; precision *= 2 {
 		d, err := x.disc(precision, w)
 		if err != nil {
 			return nil, err
@@ -60,11 +65,8 @@ func (x *Number) rounded(imaginary bool, bits uint, w *work) (*big.Float, error)
 		if lo.Sign() == hi.Sign() && a.Cmp(b) == 0 {
 			return a, nil
 		}
-		if precision < exactly {
-			continue
-		}
 		c := boundary(lo, hi, bits)
-		if c == nil || decided != nil && decided.Cmp(c) == 0 {
+		if c == nil || c.Sign() != 0 && precision < exactly || decided != nil && decided.Cmp(c) == 0 {
 			continue
 		}
 		equal, err := x.componentIs(imaginary, c, w)

@@ -192,7 +192,7 @@ func (a *candidate) number(x *Number, f *factor, k int) {
 		im, imOK = x.im.rounded(radius, k)
 	}
 	x.value = complex(re, im)
-	x.open = !reOK || !imOK
+	x.openRe, x.openIm = !reOK, !imOK
 }
 
 // double is an unevaluated sum hi + lo with |lo| at most half a unit in the
