@@ -1,0 +1,99 @@
+package units
+
+import (
+	"strconv"
+	"strings"
+)
+
+// Dimension is a product of powers of the base dimensions: the seven of the
+// SI, the plane angle (tracked here), and the numbers that must not vanish
+// silently: count, LSB and %. It is comparable; the zero value is the
+// dimension of a pure number.
+type Dimension struct {
+	exponents [len(baseSymbols)]int32
+}
+
+// The base dimensions, by index, and the symbols of their coherent units.
+const (
+	metre = iota
+	kilogram
+	second
+	ampere
+	kelvin
+	mole
+	candela
+	radian
+	count
+	lsb
+	percent
+)
+
+var baseSymbols = [...]string{"m", "kg", "s", "A", "K", "mol", "cd", "rad", "count", "LSB", "%"}
+
+// IsZero reports whether d is the dimension of a pure number.
+func (d Dimension) IsZero() bool { return d == Dimension{} }
+
+// Mul returns the dimension of a product.
+func (d Dimension) Mul(e Dimension) Dimension {
+	for i := range d.exponents {
+		d.exponents[i] += e.exponents[i]
+	}
+	return d
+}
+
+// Div returns the dimension of a quotient.
+func (d Dimension) Div(e Dimension) Dimension {
+	for i := range d.exponents {
+		d.exponents[i] -= e.exponents[i]
+	}
+	return d
+}
+
+// WithoutAngle returns d with the radian taken as 1, as the SI does.
+func (d Dimension) WithoutAngle() Dimension {
+	d.exponents[radian] = 0
+	return d
+}
+
+// Unit returns the coherent unit of d, spelled in base units.
+func (d Dimension) Unit() Unit {
+	var fs []factor
+	for i, e := range d.exponents {
+		if e != 0 {
+			f := symbolFactor(baseSymbols[i])
+			f.exponent = int(e)
+			fs = append(fs, f)
+		}
+	}
+	return fromFactors(fs)
+}
+
+// String spells the coherent unit of d: "m*kg/s^2", or "1".
+func (d Dimension) String() string { return d.Unit().String() }
+
+// spell writes factors as text that parses back: a product over one solidus.
+func spell(fs []factor) string {
+	var above, below []string
+	for _, f := range fs {
+		s := f.text
+		if e := max(f.exponent, -f.exponent); e != 1 {
+			s += "^" + strconv.Itoa(e)
+		}
+		if f.exponent > 0 {
+			above = append(above, s)
+		} else {
+			below = append(below, s)
+		}
+	}
+	s := strings.Join(above, "*")
+	switch {
+	case len(below) == 0:
+		return s
+	case s == "":
+		s = "1"
+	}
+	if len(below) == 1 {
+		return s + "/" + below[0]
+	}
+	return s + "/(" + strings.Join(below, "*") + ")"
+}
