@@ -30,8 +30,8 @@ type JunctionError struct {
 
 // Error names both sides and what mends the junction.
 func (e *JunctionError) Error() string {
-	s := fmt.Sprintf("%s: the %s [%s] does not fit the %s [%s]", e.Operation,
-		e.LaterEnd, signalText(e.Later), e.EarlierEnd, signalText(e.Earlier))
+	s := fmt.Sprintf("%s: the %s [%v] does not fit the %s [%v]", e.Operation,
+		e.LaterEnd, e.Later, e.EarlierEnd, e.Earlier)
 	if !e.Later.Unit.Equal(e.Earlier.Unit) {
 		return s + ": " + unitAdvice(e.Later.Unit, e.Earlier.Unit)
 	}
@@ -58,31 +58,32 @@ func (e *DeadTimeError) Error() string {
 	case "Inverse":
 		return fmt.Sprintf("Inverse: a block with a dead time of %s s has no inverse, which would foresee its input; take WithoutDeadTime first to invert the rest", ratText(e.Later))
 	}
+	if e.Operation == "AtRat" {
+		return fmt.Sprintf("AtRat: with a dead time of %s s the value is irrational; At rounds it, WithoutDeadTime gives the rational part", ratText(e.Later))
+	}
 	return fmt.Sprintf("%s: a dead time inside a loop (forward %s s, back %s s) leaves the rational functions"+serves,
 		e.Operation, ratText(e.Earlier), ratText(e.Later))
 }
 
-// PeriodError tells that a sampling period does not serve: it is no positive
-// time, or two blocks of a composition have different ones.
+// ErrPeriod is the error for a sampling period that is not above 0.
+var ErrPeriod = errors.New("a sampling period must be above 0")
+
+// PeriodError tells that two blocks of a composition have different sampling
+// periods.
 type PeriodError struct {
 	Operation      string
 	Index          int      // the argument at which the fault was seen
-	Earlier, Later *big.Rat // periods in seconds of the first argument and the one at Index; Earlier is nil where a single period is at fault
+	Earlier, Later *big.Rat // periods in seconds of the first argument and of the one at Index
 }
 
 // Error names the periods.
 func (e *PeriodError) Error() string {
-	if e.Earlier == nil {
-		return fmt.Sprintf("%s: a sampling period must be above 0 s, found %s s", e.Operation, ratText(e.Later))
-	}
 	return fmt.Sprintf("%s: block %d is sampled every %s s and block 0 every %s s; resample one of them so that the periods agree",
 		e.Operation, e.Index, ratText(e.Later), ratText(e.Earlier))
 }
 
 // fits reports whether two signals connect.
-func fits(a, b *units.Signal) bool {
-	return a.Unit.Equal(b.Unit) && (a.Name == b.Name || a.Name == "" || b.Name == "")
-}
+func fits(a, b *units.Signal) bool { return a.Connects(*b) }
 
 // merge returns a with the name of b where it has none of its own.
 func merge(a, b units.Signal) units.Signal {

@@ -21,6 +21,7 @@
 package tf
 
 import (
+	"fmt"
 	"math/big"
 
 	"github.com/qofs/qofs/internal/fault"
@@ -80,6 +81,27 @@ func (Discrete) with(c core) Discrete     { return Discrete{c: c} }
 func New(numerator, denominator poly.Poly) (Continuous, error) {
 	f, err := quotient(numerator, denominator)
 	return Continuous{c: core{f: f}}, err
+}
+
+// NewDiscrete returns numerator/denominator in z with dimensionless, unnamed
+// signals and the given sampling period, an exact time above 0. Nothing is
+// cancelled. The errors are ErrDivisionByZero for a zero denominator, a
+// *units.MismatchError for a period that is no time, and ErrPeriod.
+func NewDiscrete(numerator, denominator poly.Poly, period units.Quantity) (Discrete, error) {
+	f, err := quotient(numerator, denominator)
+	if err != nil {
+		return Discrete{}, err
+	}
+	t, err := seconds(period)
+	if err != nil {
+		return Discrete{}, fmt.Errorf("tf: sampling period: %w", err)
+	}
+	if t.Sign() <= 0 {
+		return Discrete{}, fmt.Errorf("tf: sampling period of %v: %w", period, ErrPeriod)
+	}
+	c := core{f: f}
+	c.setPeriod(t)
+	return Discrete{c: c}, nil
 }
 
 func quotient(numerator, denominator poly.Poly) (ratfun.Func, error) {
