@@ -72,7 +72,13 @@ func (u Unit) Equal(v Unit) bool {
 	if u.d == v.d {
 		return true
 	}
-	return u.Dimension() == v.Dimension() && u.scaleRat().Cmp(v.scaleRat()) == 0
+	return u.Dimension() == v.Dimension() && sameRat(u.scaleRat(), v.scaleRat())
+}
+
+// sameRat is a.Cmp(b) == 0 without the products that Cmp allocates: a big.Rat
+// is kept in lowest terms.
+func sameRat(a, b *big.Rat) bool {
+	return a.Num().Cmp(b.Num()) == 0 && (a.IsInt() && b.IsInt() || a.Denom().Cmp(b.Denom()) == 0)
 }
 
 // Cycles returns the spelling of the first symbol in u that counts cycles,
