@@ -1,9 +1,20 @@
 // Package poly computes with polynomials whose coefficients are rational
 // numbers, exactly.
+//
+// A Poly is an immutable value, safe to share between goroutines; its zero
+// value is the polynomial 0. Coefficients ascend: the first one is the constant
+// term. A *big.Rat is copied on the way in and out, and nil reads as 0. There
+// is no tolerance anywhere: two polynomials have a common factor or they have
+// none, a root is double or it is not.
+//
+//	p := poly.MustParse("0.02 s^2 + 0.4 s + 9")
+//	roots, err := p.Roots()
 package poly
 
 import (
+	"math"
 	"math/big"
+	"strconv"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
@@ -11,12 +22,13 @@ import (
 	"github.com/qofs/qofs/internal/ratpoly"
 )
 
-// The errors of this package; tf, units and lti return the same values.
+// The errors of this package that are plain values; units, tf and lti return
+// the same ones.
 var (
-	ErrLimit          = fault.ErrLimit
-	ErrRange          = fault.ErrRange
-	ErrDivisionByZero = fault.ErrDivisionByZero
-	ErrNotFinite      = fault.ErrNotFinite
+	ErrLimit          = fault.ErrLimit          // a documented bound on size or work was reached
+	ErrRange          = fault.ErrRange          // a result does not fit a float64
+	ErrDivisionByZero = fault.ErrDivisionByZero // a division by the number or polynomial 0
+	ErrNotFinite      = fault.ErrNotFinite      // a NaN or an infinity where a number is needed
 )
 
 // SyntaxError tells what is wrong in a text and where.
@@ -35,32 +47,101 @@ func FromInts(ascending ...int64) Poly {
 	return Poly(ratpoly.FromInteger(intpoly.FromInt64s(ascending...)))
 }
 
+// FromFloats returns the polynomial with the given coefficients, ascending,
+// each read as the binary number that it is: 0.1 is
+// 3602879701896397/2^55. The error is ErrNotFinite for a NaN or an infinity.
+func FromFloats(ascending ...float64) (Poly, error) {
+	return fromFloats(ascending, func(x float64) *big.Rat { return new(big.Rat).SetFloat64(x) })
+}
+
+// FromDecimals returns the polynomial with the given coefficients, ascending,
+// each read as the shortest decimal that rounds to it: 0.1 is 1/10, as a data
+// sheet means it. The error is ErrNotFinite for a NaN or an infinity.
+func FromDecimals(ascending ...float64) (Poly, error) {
+	return fromFloats(ascending, func(x float64) *big.Rat {
+		r, _ := new(big.Rat).SetString(strconv.FormatFloat(x, 'g', -1, 64))
+		return r
+	})
+}
+
+func fromFloats(ascending []float64, read func(float64) *big.Rat) (Poly, error) {
+	c := make([]*big.Rat, len(ascending))
+	for i, x := range ascending {
+		if math.IsNaN(x) || math.IsInf(x, 0) {
+			return Poly{}, ErrNotFinite
+		}
+		c[i] = read(x)
+	}
+	return FromRats(c...), nil
+}
+
+// rational and integer reach the representation.
+func (p Poly) rational() ratpoly.Poly { return ratpoly.Poly(p) }
+func (p Poly) integer() intpoly.Poly  { return ratpoly.Poly(p).Integer() }
+
+func fromInteger(p intpoly.Poly) Poly { return Poly(ratpoly.FromInteger(p)) }
+
 // Degree is the degree of p, −1 for the polynomial 0.
-func (p Poly) Degree() int { return ratpoly.Poly(p).Integer().Degree() }
+func (p Poly) Degree() int { return p.integer().Degree() }
 
 // IsZero reports whether p is the polynomial 0.
-func (p Poly) IsZero() bool { return ratpoly.Poly(p).Integer().IsZero() }
+func (p Poly) IsZero() bool { return p.integer().IsZero() }
 
 // Coefficient returns a copy of the coefficient of the power i; it is 0
 // outside the range 0 … Degree.
-func (p Poly) Coefficient(i int) *big.Rat { return ratpoly.Poly(p).Coefficient(i) }
+func (p Poly) Coefficient(i int) *big.Rat { return p.rational().Coefficient(i) }
+
+// Coefficients returns copies of the coefficients, ascending; none for 0.
+func (p Poly) Coefficients() []*big.Rat {
+	c := make([]*big.Rat, p.Degree()+1)
+	for i := range c {
+		c[i] = p.Coefficient(i)
+	}
+	return c
+}
+
+// Equal reports whether p and q are the same polynomial.
+func (p Poly) Equal(q Poly) bool { return p.rational().Equal(q.rational()) }
 
 // Add returns p + q.
-func (p Poly) Add(q Poly) Poly { return Poly(ratpoly.Poly(p).Add(ratpoly.Poly(q))) }
+func (p Poly) Add(q Poly) Poly { return Poly(p.rational().Add(q.rational())) }
 
 // Sub returns p − q.
-func (p Poly) Sub(q Poly) Poly { return Poly(ratpoly.Poly(p).Add(ratpoly.Poly(q).Neg())) }
+func (p Poly) Sub(q Poly) Poly { return p.Add(q.Neg()) }
+
+// Neg returns −p.
+func (p Poly) Neg() Poly { return Poly(p.rational().Neg()) }
 
 // Mul returns p·q.
-func (p Poly) Mul(q Poly) Poly { return Poly(ratpoly.Poly(p).Mul(ratpoly.Poly(q))) }
+func (p Poly) Mul(q Poly) Poly { return Poly(p.rational().Mul(q.rational())) }
 
 // Scale returns k·p; nil reads as 0.
 func (p Poly) Scale(k *big.Rat) Poly {
 	if k == nil {
 		return Poly{}
 	}
-	return Poly(ratpoly.Poly(p).Scale(k))
+	return Poly(p.rational().Scale(k))
 }
 
-// Equal reports whether p and q are the same polynomial.
-func (p Poly) Equal(q Poly) bool { return ratpoly.Poly(p).Equal(ratpoly.Poly(q)) }
+// Derivative returns dp/dx.
+func (p Poly) Derivative() Poly {
+	return Poly(ratpoly.New(p.integer().Derivative(), p.rational().Denominator()))
+}
+
+// Integral returns the integral of p from 0.
+func (p Poly) Integral() Poly {
+	c := make([]*big.Rat, p.Degree()+2)
+	for i := range c[1:] {
+		c[i+1] = p.Coefficient(i)
+		c[i+1].Quo(c[i+1], big.NewRat(int64(i+1), 1))
+	}
+	return FromRats(c...)
+}
+
+// Monic returns p divided by its leading coefficient; the polynomial 0 stays 0.
+func (p Poly) Monic() Poly {
+	if p.IsZero() {
+		return p
+	}
+	return Poly(ratpoly.New(p.integer(), p.integer().Leading()))
+}

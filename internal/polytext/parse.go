@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"math/big"
 	"strconv"
+	"strings"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
@@ -160,6 +161,9 @@ func (p *parser) factor() (ratfun.Func, error) {
 		base, _ = ratfun.New(intpoly.FromBigs(v.Num()), intpoly.FromBigs(v.Denom()))
 		p.next++
 	case t.Kind == lex.Name:
+		if notNumbers[strings.ToLower(t.Text)] {
+			return base, p.fault("a finite number", fault.ErrNotFinite)
+		}
 		if p.variable == "" {
 			p.variable = t.Text
 		}
@@ -185,6 +189,9 @@ func (p *parser) factor() (ratfun.Func, error) {
 	}
 	return p.power(t, base)
 }
+
+// notNumbers are words that stand for no number and are no name either.
+var notNumbers = map[string]bool{"nan": true, "inf": true, "infinity": true}
 
 // power raises base to the exponent that follows, if one does.
 func (p *parser) power(at lex.Token, base ratfun.Func) (ratfun.Func, error) {

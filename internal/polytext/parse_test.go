@@ -48,7 +48,7 @@ func TestRefusals(t *testing.T) {
 		{"s^1000000", fault.ErrLimit, ""}, {"s^99999999999999999999", fault.ErrLimit, ""}, {"(s^100)^100", fault.ErrLimit, ""}, {"1e999999999", fault.ErrLimit, ""},
 		{strings.Repeat("(", 10<<20), fault.ErrLimit, ""}, {"(1e4000 s)^4000", fault.ErrLimit, ""}, {strings.Repeat("(s+1)^4000+", 1000) + "1", nil, ""},
 		{"1/s (s + 1)", nil, "read in two ways"}, {"s + ", nil, "a number"}, {"s + x", nil, `the variable "s"`}, {"(s", nil, "closing"}, {"s)", nil, "the end"},
-		{"2 3", nil, "the end"}, {"s^1.5", nil, "whole"}, {"s^s", nil, "whole"}, {"NaN", nil, "variable"}, {"\xff", nil, "UTF-8"},
+		{"2 3", nil, "the end"}, {"s^1.5", nil, "whole"}, {"s^s", nil, "whole"}, {"NaN", fault.ErrNotFinite, "finite"}, {"s + Inf", fault.ErrNotFinite, "finite"}, {"\xff", nil, "UTF-8"},
 		{strings.Repeat("1/(s+1)^40+", 1000) + "1", fault.ErrLimit, ""},
 	} {
 		if strings.HasPrefix(c.text, "(s+1)^4000") { // a valid text at the bounds: it must only end soon
