@@ -8,7 +8,7 @@ import (
 )
 
 const (
-	defaultDigits = 4
+	defaultDigits = 6
 	maxDigits     = 1000
 )
 
@@ -32,8 +32,8 @@ func (g Discrete) String() string { return g.c.text("z", exact) }
 //	%s %v   exactly, like String
 //	%q      the same in double quotes
 //	%d      exactly, with integer coefficients
-//	%g      every number rounded to 4 significant digits, or to the given
-//	        number of them, as in %.6g
+//	%g      every number rounded to 6 significant digits, or to the given
+//	        number of them, as in %.4g
 //
 // A width pads with spaces, on the right with the flag '-'.
 func (g Continuous) Format(state fmt.State, verb rune) { g.c.format(state, verb, "s", "Continuous") }
@@ -49,8 +49,7 @@ func (c *core) format(state fmt.State, verb rune, variable, name string) {
 	case 'q':
 		text = fmt.Sprintf("%q", c.text(variable, exact))
 	case 'd':
-		ratio, terms := plain.integers(c.f, variable)
-		text = c.decorate(ratio, terms, variable, exact)
+		text = c.scaledText(big.NewRat(1, 1), variable, exact)
 	case 'g':
 		digits := defaultDigits
 		if p, ok := state.Precision(); ok {
@@ -73,20 +72,20 @@ func (c *core) format(state fmt.State, verb rune, variable, name string) {
 
 // text writes the value on one line.
 func (c *core) text(variable string, p precision) string {
-	ratio, terms := plain.shortest(c.f, variable, p)
-	return c.decorate(ratio, terms, variable, p)
+	return c.scaledText(scale(c.f, variable, p), variable, p)
 }
 
-// decorate adds dead time, signals and period to a written quotient.
-func (c *core) decorate(ratio string, terms int, variable string, p precision) string {
+// scaledText writes the value with numerator and denominator multiplied by k.
+func (c *core) scaledText(k *big.Rat, variable string, p precision) string {
 	var b strings.Builder
+	ratio, loose := plainRatio(c.f, k, variable, p)
 	if c.delay != nil {
-		t, ok := p.write(c.delay)
-		if !ok {
-			t = "(" + c.delay.String() + ")"
+		t := p.write(c.delay)
+		if strings.Contains(t, "/") {
+			t = "(" + t + ")"
 		}
 		b.WriteString("exp(-" + t + " " + variable + ") ")
-		if terms > 1 || strings.HasPrefix(ratio, "-") {
+		if loose {
 			ratio = "(" + ratio + ")"
 		}
 	}
@@ -95,14 +94,7 @@ func (c *core) decorate(ratio string, terms int, variable string, p precision) s
 		b.WriteString(" [" + signals + "]")
 	}
 	if variable == "z" {
-		b.WriteString(" every " + periodText(c.periodSeconds(), p) + " s")
+		b.WriteString(" every " + p.write(c.periodSeconds()) + " s")
 	}
 	return b.String()
-}
-
-func periodText(t *big.Rat, p precision) string {
-	if s, ok := p.write(t); ok {
-		return s
-	}
-	return t.String()
 }

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math/big"
 
+	"github.com/qofs/qofs/internal/decimal"
 	"github.com/qofs/qofs/units"
 )
 
@@ -54,15 +55,15 @@ func (e *DeadTimeError) Error() string {
 	switch e.Operation {
 	case "Parallel":
 		return fmt.Sprintf("Parallel: block %d has a dead time of %s s and block 0 one of %s s; a sum of different dead times is no rational function"+serves,
-			e.Index, ratText(e.Later), ratText(e.Earlier))
+			e.Index, decimal.Text(e.Later), decimal.Text(e.Earlier))
 	case "Inverse":
-		return fmt.Sprintf("Inverse: a block with a dead time of %s s has no inverse, which would foresee its input; take WithoutDeadTime first to invert the rest", ratText(e.Later))
+		return fmt.Sprintf("Inverse: a block with a dead time of %s s has no inverse, which would foresee its input; take WithoutDeadTime first to invert the rest", decimal.Text(e.Later))
 	}
 	if e.Operation == "AtRat" {
-		return fmt.Sprintf("AtRat: with a dead time of %s s the value is irrational; At rounds it, WithoutDeadTime gives the rational part", ratText(e.Later))
+		return fmt.Sprintf("AtRat: with a dead time of %s s the value is irrational; At rounds it, WithoutDeadTime gives the rational part", decimal.Text(e.Later))
 	}
 	return fmt.Sprintf("%s: a dead time inside a loop (forward %s s, back %s s) leaves the rational functions"+serves,
-		e.Operation, ratText(e.Earlier), ratText(e.Later))
+		e.Operation, decimal.Text(e.Earlier), decimal.Text(e.Later))
 }
 
 // ErrPeriod is the error for a sampling period that is not above 0.
@@ -79,7 +80,7 @@ type PeriodError struct {
 // Error names the periods.
 func (e *PeriodError) Error() string {
 	return fmt.Sprintf("%s: block %d is sampled every %s s and block 0 every %s s; resample one of them so that the periods agree",
-		e.Operation, e.Index, ratText(e.Later), ratText(e.Earlier))
+		e.Operation, e.Index, decimal.Text(e.Later), decimal.Text(e.Earlier))
 }
 
 // fits reports whether two signals connect.

@@ -13,7 +13,7 @@ func TestMarkup(t *testing.T) {
 			"<math><msup><mi>e</mi><mrow><mo>&#x2212;</mo><mn>180</mn><mo>&#x2062;</mo><mi>s</mi></mrow></msup><mo>&#x2062;</mo>" +
 				"<mfrac><mrow><mn>8</mn></mrow><mrow><mn>15</mn><mo>&#x2062;</mo><mi>s</mi><mo>+</mo><mn>1</mn></mrow></mfrac></math>"},
 		{"exp(-1/3 s) (2 s^12 - 1)", `e^{-\frac{1}{3} \, s} \, \left(2 \, s^{12} - 1\right)`, ""},
-		{"-1e-9 s", `-10^{-9} \, s`, "<math><mo>&#x2212;</mo><msup><mn>10</mn><mn>&#x2212;9</mn></msup><mo>&#x2062;</mo><mi>s</mi></math>"},
+		{"-2.5 s", `-2.5 \, s`, "<math><mrow><mo>&#x2212;</mo><mn>2.5</mn><mo>&#x2062;</mo><mi>s</mi></mrow></math>"},
 		{"1.5e-9", `1.5 \cdot 10^{-9}`, ""},
 	} {
 		g := MustParse(c.text)

@@ -8,6 +8,7 @@ import (
 	"unicode"
 	"unicode/utf8"
 
+	"github.com/qofs/qofs/internal/decimal"
 	"github.com/qofs/qofs/internal/intpoly"
 	"github.com/qofs/qofs/units"
 )
@@ -191,7 +192,7 @@ func unitAdvice(found, wanted units.Unit) string {
 	if err != nil {
 		return err.Error()
 	}
-	return fmt.Sprintf("1 %s is %s %s; ConvertUnits on one of the blocks mends it", wanted, ratText(k), found)
+	return fmt.Sprintf("1 %s is %s %s; ConvertUnits on one of the blocks mends it", wanted, decimal.Text(k), found)
 }
 
 // seconds is a time as an exact number of seconds.

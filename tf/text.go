@@ -2,10 +2,11 @@ package tf
 
 import (
 	"math/big"
-	"strconv"
 	"strings"
 
+	"github.com/qofs/qofs/internal/decimal"
 	"github.com/qofs/qofs/internal/intpoly"
+	"github.com/qofs/qofs/internal/polytext"
 	"github.com/qofs/qofs/internal/ratfun"
 )
 
@@ -14,123 +15,101 @@ type precision int
 
 const exact precision = 0
 
-func (p precision) write(r *big.Rat) (text string, ok bool) {
+// write writes a number.
+func (p precision) write(r *big.Rat) string {
 	if p == exact {
-		return decimal(r)
+		return decimal.Text(r)
 	}
-	return significant(r, int(p)), true
+	return decimal.Significant(r, int(p))
 }
 
-// notation writes a quotient in some language. The functions get finished
-// parts.
-type notation struct {
-	number   func(digits string) string
-	power    func(variable string, n int) string
-	times    string // between a coefficient and a power
-	plus     string
-	minus    string // between terms
-	negative string // before the first term
-	group    func(text string) string
-	fraction func(num, den string, numTerms, denTerms int) string
+// notation is the plain notation with numbers of that precision.
+func (p precision) notation() polytext.Notation {
+	if p == exact {
+		return polytext.Plain
+	}
+	return polytext.Rounded(int(p))
 }
 
-var plain = notation{
-	number: func(digits string) string { return digits },
-	power: func(variable string, n int) string {
-		if n == 1 {
-			return variable
-		}
-		return variable + "^" + strconv.Itoa(n)
-	},
-	times: " ", plus: " + ", minus: " - ", negative: "-",
-	group: func(text string) string { return "(" + text + ")" },
-	fraction: func(num, den string, numTerms, denTerms int) string {
-		if numTerms > 1 {
-			num = "(" + num + ")"
-		}
-		if denTerms > 1 || strings.Contains(den, " ") {
-			den = "(" + den + ")"
-		}
-		return num + "/" + den
-	},
+// scaled is the ascending coefficients of k·p.
+func scaled(p intpoly.Poly, k *big.Rat) []*big.Rat {
+	c := make([]*big.Rat, p.Degree()+1)
+	for i := range c {
+		c[i] = new(big.Rat).SetInt(p.Coefficient(i))
+		c[i].Mul(c[i], k)
+	}
+	return c
 }
 
-// polynomial writes k·p with its number of terms; coefficients are written by
-// digits. ok is false where digits cannot write one.
-func (w *notation) polynomial(p intpoly.Poly, k *big.Rat, variable string, digits precision) (text string, terms int, ok bool) {
-	var b strings.Builder
-	for i := p.Degree(); i >= 0; i-- {
-		if p.Sign(i) == 0 {
+// terms is the number of terms that are written for p.
+func terms(p intpoly.Poly) int {
+	n := 0
+	for i := range p.Degree() + 1 {
+		if p.Sign(i) != 0 {
+			n++
+		}
+	}
+	return max(1, n)
+}
+
+// isFinite reports whether every number is a finite decimal.
+func isFinite(c []*big.Rat) bool {
+	for _, r := range c {
+		if _, ok := decimal.Finite(r); !ok {
+			return false
+		}
+	}
+	return true
+}
+
+// plainRatio writes k·num/(k·den) on one line. loose tells that it needs
+// parentheses to be a factor.
+func plainRatio(f ratfun.Func, k *big.Rat, variable string, p precision) (text string, loose bool) {
+	w := p.notation()
+	num, den := w.Write(scaled(f.Num(), k), variable), w.Write(scaled(f.Den(), k), variable)
+	many := terms(f.Num()) > 1
+	if den == "1" {
+		return num, many || strings.HasPrefix(num, "-")
+	}
+	if many {
+		num = "(" + num + ")"
+	}
+	if strings.Contains(den, " ") {
+		den = "(" + den + ")"
+	}
+	return num + "/" + den, strings.HasPrefix(num, "-")
+}
+
+// scale is the number by which numerator and denominator are multiplied for
+// the text. It makes the leading or the lowest coefficient below 1, or leaves
+// all coefficients integers, where the exact text is the shortest, and of equals
+// takes the first; rounded numbers leave out the integers. A function of z gets
+// the leading coefficient 1 wherever that leaves finite decimals, as is usual in
+// the trade, and so does a polynomial in s.
+func scale(f ratfun.Func, variable string, p precision) *big.Rat {
+	den := f.Den()
+	low := den.Coefficient(den.Valuation())
+	candidates := []*big.Rat{
+		new(big.Rat).SetFrac(big.NewInt(1), den.Leading()),
+		new(big.Rat).SetFrac(big.NewInt(1), low.Abs(low)),
+		big.NewRat(1, 1),
+	}
+	if p != exact {
+		candidates = candidates[:2]
+	}
+	var best *big.Rat
+	length := 0
+	for i, k := range candidates {
+		if p == exact && !(isFinite(scaled(f.Num(), k)) && isFinite(scaled(den, k))) {
 			continue
 		}
-		c := new(big.Rat).SetInt(p.Coefficient(i))
-		c.Mul(c, k)
-		switch {
-		case c.Sign() < 0 && terms == 0:
-			b.WriteString(w.negative)
-		case c.Sign() < 0:
-			b.WriteString(w.minus)
-		case terms > 0:
-			b.WriteString(w.plus)
+		if i == 0 && (variable == "z" || den.Degree() == 0) {
+			return k
 		}
-		terms++
-		d, ok := digits.write(c.Abs(c))
-		if !ok {
-			return "", 0, false
-		}
-		switch {
-		case i == 0:
-			b.WriteString(w.number(d))
-		case d == "1":
-			b.WriteString(w.power(variable, i))
-		default:
-			b.WriteString(w.number(d) + w.times + w.power(variable, i))
+		text, _ := plainRatio(f, k, variable, p)
+		if best == nil || len(text) < length {
+			best, length = k, len(text)
 		}
 	}
-	if terms == 0 {
-		return w.number("0"), 1, true
-	}
-	return b.String(), terms, true
-}
-
-// quotient writes f multiplied above and below by k.
-func (w *notation) quotient(f ratfun.Func, k *big.Rat, variable string, digits precision) (text string, terms int, ok bool) {
-	num, numTerms, ok := w.polynomial(f.Num(), k, variable, digits)
-	if !ok {
-		return "", 0, false
-	}
-	den, denTerms, ok := w.polynomial(f.Den(), k, variable, digits)
-	if !ok {
-		return "", 0, false
-	}
-	if den == w.number("1") {
-		return num, numTerms, true
-	}
-	return w.fraction(num, den, numTerms, denTerms), 1, true
-}
-
-// integers writes f with integer coefficients.
-func (w *notation) integers(f ratfun.Func, variable string) (text string, terms int) {
-	text, terms, _ = w.quotient(f, big.NewRat(1, 1), variable, exact)
-	return text, terms
-}
-
-// shortest writes f with a denominator whose leading or lowest coefficient is
-// 1, or with integers: the shortest of them, and of equals the first. A
-// function of z has the leading coefficient 1 wherever that is possible, as is
-// usual in the trade.
-func (w *notation) shortest(f ratfun.Func, variable string, digits precision) (text string, terms int) {
-	den := f.Den()
-	lead := new(big.Rat).SetFrac(big.NewInt(1), den.Leading())
-	if text, terms, ok := w.quotient(f, lead, variable, digits); ok && variable == "z" {
-		return text, terms
-	}
-	low := den.Coefficient(den.Valuation())
-	for i, k := range []*big.Rat{lead, new(big.Rat).SetFrac(big.NewInt(1), low.Abs(low)), big.NewRat(1, 1)} {
-		t, n, ok := w.quotient(f, k, variable, digits)
-		if ok && (text == "" || len(t) < len(text)) && (i < 2 || digits == exact) {
-			text, terms = t, n
-		}
-	}
-	return text, terms
+	return best
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/big"
 
+	"github.com/qofs/qofs/internal/decimal"
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
 	"github.com/qofs/qofs/internal/ratfun"
@@ -45,7 +46,7 @@ func ratAt(f ratfun.Func, x *big.Rat, operation, variable string) (*big.Rat, err
 	num, den := f.Num(), f.Den()
 	above, below := num.AtRat(x.Num(), x.Denom()), den.AtRat(x.Num(), x.Denom())
 	if below.Sign() == 0 {
-		return nil, &PoleError{Operation: operation, Variable: variable, Point: ratText(x), Shared: above.Sign() == 0}
+		return nil, &PoleError{Operation: operation, Variable: variable, Point: decimal.Text(x), Shared: above.Sign() == 0}
 	}
 	if above.Sign() == 0 {
 		return new(big.Rat), nil

@@ -3,6 +3,7 @@
 package decimal
 
 import (
+	"math"
 	"math/big"
 	"strconv"
 	"strings"
@@ -38,42 +39,42 @@ func Significant(r *big.Rat, digits int) string {
 		return "0"
 	}
 	abs := new(big.Rat).Abs(r)
-	// 10^(e−1) ≤ |r| < 10^e up to one, which the loop corrects
-	e := int(float64(abs.Num().BitLen()-abs.Denom().BitLen()) * 0.30102999566398120)
-	for {
-		n := scaledRound(abs, digits-e)
-		switch length := len(n.String()); {
-		case length > digits+1 || length == digits+1 && !isPowerOfTen(n):
-			e++
-		case length < digits:
-			e--
-		default:
-			if r.Sign() < 0 {
-				n.Neg(n)
-			}
-			return decimalText(n, e-digits)
-		}
+	// e is the exponent with 10^(e−1) ≤ |r| < 10^e: an estimate that is off by
+	// one at most, then corrected.
+	e := int(math.Ceil(float64(abs.Num().BitLen()-abs.Denom().BitLen()) * math.Log10(2)))
+	n, rest, den := scaled(abs, digits-e)
+	for countDigits(n) != digits {
+		e += countDigits(n) - digits
+		n, rest, den = scaled(abs, digits-e)
 	}
+	if c := rest.Lsh(rest, 1).Cmp(den); c > 0 || c == 0 && n.Bit(0) == 1 {
+		n.Add(n, big.NewInt(1))
+	}
+	if r.Sign() < 0 {
+		n.Neg(n)
+	}
+	return decimalText(n, e-digits)
 }
 
-func isPowerOfTen(n *big.Int) bool {
-	return strings.Trim(n.String()[1:], "0") == "" && n.String()[0] == '1'
+// countDigits is the number of decimal digits of n ≥ 0, none for 0.
+func countDigits(n *big.Int) int {
+	if n.Sign() == 0 {
+		return 0
+	}
+	return len(n.String())
 }
 
-// scaledRound is r·10^k, r > 0, rounded to an integer, ties to even.
-func scaledRound(r *big.Rat, k int) *big.Int {
+// scaled is r·10^k, r > 0, as n + rest/den.
+func scaled(r *big.Rat, k int) (n, rest, den *big.Int) {
 	power := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(max(k, -k))), nil)
-	a, b := r.Num(), r.Denom()
+	num, den := r.Num(), r.Denom()
 	if k >= 0 {
-		a = new(big.Int).Mul(a, power)
+		num = new(big.Int).Mul(num, power)
 	} else {
-		b = new(big.Int).Mul(b, power)
+		den = new(big.Int).Mul(den, power)
 	}
-	q, rest := new(big.Int).QuoRem(a, b, new(big.Int))
-	if c := rest.Lsh(rest, 1).Cmp(b); c > 0 || c == 0 && q.Bit(0) == 1 {
-		q.Add(q, big.NewInt(1))
-	}
-	return q
+	n, rest = new(big.Int).QuoRem(num, den, new(big.Int))
+	return n, rest, den
 }
 
 // decimalText writes n·10^e: in plain digits where few zeros are needed, else
