@@ -47,7 +47,7 @@ type Disc struct {
 // Errors: ErrZeroPolynomial for 0; ErrRange when a component of a root is
 // beyond the largest float64; ErrLimit for a degree above 1024, for a degree
 // times bits of the largest integer coefficient above 4194304, and for
-// polynomials below these bounds that would need more than 2^37
+// polynomials below these bounds that would need more than 2^35
 // multiplications of machine words.
 //
 // The method is the simultaneous iteration of Ehrlich (1967) and Aberth (1973)

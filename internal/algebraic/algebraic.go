@@ -29,7 +29,7 @@ const (
 	// MaxPrecision is the largest precision of an enclosure in bits.
 	MaxPrecision = 1 << 20
 	// maxWork bounds the multiplications of machine words in one call.
-	maxWork = 1 << 37
+	maxWork = 1 << 35
 )
 
 // Number is a complex root of an integer polynomial. It is immutable and safe
@@ -134,6 +134,10 @@ func find(p intpoly.Poly, w *work) ([]Root, error) {
 func appendNonzero(roots []Root, p intpoly.Poly, w *work) ([]Root, error) {
 	if numbers, ok := triage(p, w); ok {
 		return appendNumbers(roots, numbers, 1), nil
+	}
+	if provedSquareFree(p) {
+		numbers, err := isolate(p, w)
+		return appendNumbers(roots, numbers, 1), err
 	}
 	w.decomposed++
 	for _, f := range p.SquareFree() {

@@ -95,11 +95,10 @@ func (f *floats) place(re, im []float64) bool {
 	n := len(f.hi) - 1
 	var buffer [65]int
 	hull := convexHull(f.logs, buffer[:0])
-	// No root is larger than twice 2^most (Fujiwara 1916); the last edge is
-	// the steepest.
-	last := len(hull) - 1
-	most := (f.logs[hull[last-1]]-f.logs[n])/float64(n-hull[last-1]) + 1
-	least := (f.logs[0]-f.logs[hull[1]])/float64(hull[1]) - 1
+	// Roots may be twice as large as the radii of the starting points, but
+	// hardly are; if values overflow, no bound holds and nothing is proved.
+	most := (f.logs[hull[len(hull)-2]] - f.logs[n]) / float64(n-hull[len(hull)-2])
+	least := (f.logs[0] - f.logs[hull[1]]) / float64(hull[1])
 	if most > mostLog || least < -mostLog {
 		return false
 	}
