@@ -27,10 +27,13 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 	}
 	re, im := buffer[:n:n], buffer[n:2*n:2*n]
 	f, ok := newFloats(p, buffer[2*n:])
-	if !ok || !f.place(re, im) || !f.approximate(re, im, maxSweeps) {
+	if !ok || !f.place(re, im) {
+		return triageDecades(p, w)
+	}
+	if !f.approximate(re, im, maxSweeps) {
 		return nil, false
 	}
-	m, ok := foldConjugates(re, im)
+	m, ok := foldConjugates(re, im, nil)
 	if !ok {
 		return nil, false
 	}
@@ -41,7 +44,7 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 	}
 	found = found[:m]
 	for i := range found {
-		found[i].x, found[i].y = re[i], im[i]
+		found[i].x, found[i].y, found[i].k = re[i], im[i], f.k
 		if !f.refine(&found[i]) {
 			return nil, false
 		}
@@ -49,18 +52,24 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 	if !separate(found, n) {
 		return nil, false
 	}
-	fac := &factor{poly: p, degree: n}
-	numbers := make([]Number, m)
-	for i := range numbers {
-		found[i].number(&numbers[i], fac, f.k)
-		w.count(&numbers[i])
-	}
-	return numbers, true
+	return certified(found, &factor{poly: p, degree: n}, w), true
 }
 
-// candidate is an approximation x + i·y, y ≥ 0, with Newton's correction there.
+// certified returns the numbers of separated candidates.
+func certified(found []candidate, f *factor, w *work) []Number {
+	numbers := make([]Number, len(found))
+	for i := range numbers {
+		found[i].number(&numbers[i], f)
+		w.count(&numbers[i])
+	}
+	return numbers
+}
+
+// candidate is an approximation x + i·y, y ≥ 0, with Newton's correction there,
+// all in units of 2^k.
 type candidate struct {
 	x, y       float64
+	k          int
 	cr, ci     float64 // N = p/p'
 	size, err  float64 // |N| from above, bound on the error of N
 	inclusion  float64 // n·|p/p'| from above: within this distance is a root
@@ -71,8 +80,8 @@ type candidate struct {
 // foldConjugates keeps the approximations on and above the real axis, and puts
 // those on it that are no half of a pair. It reports false when the number of
 // the dropped ones is not that of the kept pairs. (Only a guess: the discs
-// prove it.)
-func foldConjugates(re, im []float64) (m int, ok bool) {
+// prove it.) The units are 2^exps[i], or the same for all where exps is nil.
+func foldConjugates(re, im []float64, exps []int) (m int, ok bool) {
 	n := len(re)
 	var buffer [64]bool
 	flat := buffer[:]
@@ -87,7 +96,11 @@ func foldConjugates(re, im []float64) (m int, ok bool) {
 		// Real, if nothing is nearer to the mirror image than this one.
 		flat[i] = true
 		for k := range re {
-			dx, dy := re[k]-x, im[k]+y
+			u := 1.0
+			if exps != nil {
+				u = unitRatio(exps[k], exps[i])
+			}
+			dx, dy := u*re[k]-x, u*im[k]+y
 			if k != i && dx*dx+dy*dy < 4*y*y {
 				flat[i] = false
 				break
@@ -96,6 +109,9 @@ func foldConjugates(re, im []float64) (m int, ok bool) {
 	}
 	reals, below := 0, 0
 	for i := range re {
+		if exps != nil {
+			exps[m] = exps[i]
+		}
 		switch {
 		case flat[i]:
 			reals++
@@ -155,7 +171,12 @@ func separate(found []candidate, degree int) bool {
 		}
 		for k := range found {
 			if k != i {
-				dx, dy := a.x-found[k].x, a.y-found[k].y
+				b := &found[k]
+				u := 1.0
+				if a.k != b.k {
+					u = unitRatio(b.k, a.k)
+				}
+				dx, dy := a.x-u*b.x, a.y-u*b.y
 				nearest = min(nearest, dx*dx+dy*dy)
 			}
 		}
@@ -176,7 +197,8 @@ func separate(found []candidate, degree int) bool {
 }
 
 // number writes the certified number.
-func (a *candidate) number(x *Number, f *factor, k int) {
+func (a *candidate) number(x *Number, f *factor) {
+	k := a.k
 	x.factor, x.k = f, k
 	radius := a.radius
 	x.re, radius = add2(a.x, -a.cr, radius)
