@@ -1,0 +1,118 @@
+package tf
+
+import (
+	"math/big"
+
+	"github.com/qofs/qofs/internal/ball"
+	"github.com/qofs/qofs/internal/intpoly"
+	"github.com/qofs/qofs/internal/ratpoly"
+)
+
+// field is the arithmetic in which a function is expanded about a pole: balls
+// of some precision, or the exact numbers ℚ[x]/q.
+type field[T any] interface {
+	add(a, b T) T
+	sub(a, b T) T
+	mul(a, b T) T
+	// inverse fails where a is zero or not known to differ from it.
+	inverse(a T) (T, bool)
+	integer(n *big.Int) T
+}
+
+// expand returns the principal part of num/den at its pole of multiplicity m:
+// c[j] belongs to 1/(s−pole)^(j+1). The method is the division of the two
+// Taylor series about the pole, of which the first m coefficients of den are
+// known to vanish.
+func expand[T any](f field[T], num, den intpoly.Poly, pole T, m int) ([]T, bool) {
+	n := taylor(f, num, pole, m)
+	d := taylor(f, den, pole, 2*m)[m:]
+	inv, ok := f.inverse(d[0])
+	if !ok {
+		return nil, false
+	}
+	c := make([]T, m)
+	for i := range m { // coefficient of (s−pole)^(i−m)
+		v := n[i]
+		for j := 1; j <= i; j++ {
+			v = f.sub(v, f.mul(d[j], c[m-1-(i-j)]))
+		}
+		c[m-1-i] = f.mul(v, inv)
+	}
+	return c, true
+}
+
+// taylor returns the first k Taylor coefficients of p about x, by repeated
+// synthetic division (Horner 1819).
+func taylor[T any](f field[T], p intpoly.Poly, x T, k int) []T {
+	n := p.Degree()
+	c := make([]T, max(n+1, k))
+	for i := range c {
+		c[i] = f.integer(p.Coefficient(i))
+	}
+	for i := 0; i < min(k, n); i++ {
+		for j := n - 1; j >= i; j-- {
+			c[j] = f.add(c[j], f.mul(x, c[j+1]))
+		}
+	}
+	return c[:k]
+}
+
+// balls is the field of complex balls at a working precision.
+type balls struct{ prec uint }
+
+func (f balls) add(a, b ball.Complex) ball.Complex { return a.Add(b, f.prec) }
+func (f balls) sub(a, b ball.Complex) ball.Complex { return a.Sub(b, f.prec) }
+func (f balls) mul(a, b ball.Complex) ball.Complex { return a.Mul(b, f.prec) }
+func (f balls) integer(n *big.Int) ball.Complex {
+	return ball.NewComplex(ball.FromInt(n), ball.FromInt64(0))
+}
+func (f balls) inverse(a ball.Complex) (ball.Complex, bool) {
+	v := f.integer(big.NewInt(1)).Div(a, f.prec)
+	return v, v.Re.IsFinite() && v.Im.IsFinite()
+}
+
+// residues is the ring ℚ[x]/q for a square-free q: what is computed in it
+// holds at every root of q at once.
+type residues struct{ q intpoly.Poly }
+
+func (f residues) add(a, b ratpoly.Poly) ratpoly.Poly { return a.Add(b) }
+func (f residues) sub(a, b ratpoly.Poly) ratpoly.Poly { return a.Add(b.Neg()) }
+func (f residues) mul(a, b ratpoly.Poly) ratpoly.Poly { return f.reduce(a.Mul(b)) }
+func (f residues) integer(n *big.Int) ratpoly.Poly {
+	return ratpoly.FromInteger(intpoly.FromBigs(n))
+}
+
+// variable is the residue of x: the root itself.
+func (f residues) variable() ratpoly.Poly {
+	return f.reduce(ratpoly.FromInteger(intpoly.FromInt64s(0, 1)))
+}
+
+func (f residues) reduce(a ratpoly.Poly) ratpoly.Poly {
+	_, rem, k := a.Integer().PseudoQuoRem(f.q)
+	den := new(big.Int).Exp(f.q.Leading(), big.NewInt(int64(k)), nil)
+	return ratpoly.New(rem, den.Mul(den, a.Denominator()))
+}
+
+// inverse is the extended algorithm of Euclid on primitive remainders; it
+// fails where a shares a factor with q.
+func (f residues) inverse(a ratpoly.Poly) (ratpoly.Poly, bool) {
+	a = f.reduce(a)
+	// Always r ≡ t·a (mod q) for both pairs.
+	r0, t0 := f.q, ratpoly.Poly{}
+	r1, t1 := a.Integer(), ratpoly.FromInteger(intpoly.FromBigs(a.Denominator()))
+	for r1.Degree() > 0 {
+		quo, rem, k := r0.PseudoQuoRem(r1)
+		if rem.IsZero() {
+			return ratpoly.Poly{}, false
+		}
+		lift := new(big.Int).Exp(r1.Leading(), big.NewInt(int64(k)), nil)
+		t := t0.Scale(new(big.Rat).SetInt(lift)).Add(ratpoly.FromInteger(quo).Mul(t1).Neg())
+		content, rem := rem.Primitive()
+		r0, t0 = r1, t1
+		r1, t1 = rem, t.Scale(new(big.Rat).SetFrac(big.NewInt(1), content))
+	}
+	if r1.IsZero() {
+		return ratpoly.Poly{}, false
+	}
+	return f.reduce(t1.Scale(new(big.Rat).SetFrac(big.NewInt(1), r1.Leading()))), true
+}
