@@ -116,3 +116,17 @@ func (f residues) inverse(a ratpoly.Poly) (ratpoly.Poly, bool) {
 	}
 	return f.reduce(t1.Scale(new(big.Rat).SetFrac(big.NewInt(1), r1.Leading()))), true
 }
+
+// rationals is the field ℚ.
+type rationals struct{}
+
+func (rationals) add(a, b *big.Rat) *big.Rat  { return new(big.Rat).Add(a, b) }
+func (rationals) sub(a, b *big.Rat) *big.Rat  { return new(big.Rat).Sub(a, b) }
+func (rationals) mul(a, b *big.Rat) *big.Rat  { return new(big.Rat).Mul(a, b) }
+func (rationals) integer(n *big.Int) *big.Rat { return new(big.Rat).SetInt(n) }
+func (rationals) inverse(a *big.Rat) (*big.Rat, bool) {
+	if a.Sign() == 0 {
+		return nil, false
+	}
+	return new(big.Rat).Inv(a), true
+}

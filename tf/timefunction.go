@@ -1,0 +1,204 @@
+package tf
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"math/big"
+
+	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/intpoly"
+	"github.com/qofs/qofs/internal/ratfun"
+	"github.com/qofs/qofs/units"
+)
+
+var (
+	// ErrImpulseDerivative: the function holds a derivative of an impulse,
+	// because its numerator has a higher degree than its denominator.
+	ErrImpulseDerivative = errors.New("the time function would hold a derivative of an impulse")
+	// ErrNoFinalValue: the function has no limit for t → ∞.
+	ErrNoFinalValue = errors.New("no final value")
+)
+
+// TimeFunction is a function of time t in seconds, closed in form: for t ≥ 0 a
+// sum of terms t^k·e^(σt)·cos(ωt) and t^k·e^(σt)·sin(ωt), and an impulse at
+// t = 0 where the transform it came from is not strictly proper. It is 0 for
+// t < 0; a dead time D moves all of it to the right by D.
+//
+// It keeps the exact transform, so that At, Sample and Terms are values of the
+// exact function, each rounded once to the nearest float64. The numbers are the
+// same bits on every machine. It is immutable, safe to share, and its zero
+// value is the function 0.
+type TimeFunction struct {
+	_       [0]func()
+	e       *expansion // nil is 0
+	impulse *big.Rat   // nil is 0
+	delay   *big.Rat   // nil is 0
+	signal  units.Signal
+}
+
+// InverseLaplace returns the time function whose Laplace transform is g
+// (A&S 1964, section 29.2): the response of g to a unit impulse at t = 0. With
+// an impulse δ(t) in 1/s, a function from volts to millimetres responds in
+// mm/(V·s), and that is the unit of the result; a g whose input has the unit
+// 1/s gives the unit of its output.
+//
+// A constant part of g gives an impulse; a part that grows with s would give
+// derivatives of one and is refused with ErrImpulseDerivative. The error is
+// ErrLimit for a denominator beyond the limits of Poles. Common factors of
+// numerator and denominator cancel here: they cannot be seen from outside.
+func (g Continuous) InverseLaplace() (TimeFunction, error) {
+	signal, err := impulseResponseSignal(g.c.input, g.c.output)
+	if err != nil {
+		return TimeFunction{}, err
+	}
+	return newTimeFunction(g.c.f, g.c.delay, signal)
+}
+
+func newTimeFunction(f ratfun.Func, delay *big.Rat, signal units.Signal) (TimeFunction, error) {
+	f, _ = f.LowestTerms()
+	if f.Num().Degree() > f.Den().Degree() {
+		return TimeFunction{}, fmt.Errorf("tf: inverse transform of a function with numerator of degree %d over degree %d: %w (feedback or a lag of the derivative makes it proper)",
+			f.Num().Degree(), f.Den().Degree(), ErrImpulseDerivative)
+	}
+	h := TimeFunction{signal: signal}
+	if delay != nil && delay.Sign() != 0 {
+		h.delay = new(big.Rat).Set(delay)
+	}
+	num := f.Num()
+	if num.Degree() == f.Den().Degree() {
+		h.impulse = new(big.Rat).SetFrac(num.Leading(), f.Den().Leading())
+		f = f.Add(ratfunConstant(new(big.Rat).Neg(h.impulse)))
+	}
+	if f.IsZero() {
+		return h, nil
+	}
+	var err error
+	h.e, err = newExpansion(f.Num(), f.Den())
+	return h, err
+}
+
+func ratfunConstant(c *big.Rat) ratfun.Func {
+	f, _ := ratfun.New(intpoly.FromBigs(c.Num()), intpoly.FromBigs(c.Denom()))
+	return f
+}
+
+// transform returns the exact Laplace transform without the dead time.
+func (f TimeFunction) transform() ratfun.Func {
+	g := ratfunConstant(f.Impulse())
+	if f.e != nil {
+		h, _ := ratfun.New(f.e.num, f.e.den)
+		g = g.Add(h)
+	}
+	return g
+}
+
+// Impulse returns the weight of the impulse at t = 0, exactly; with a dead
+// time it falls at the end of it. Its unit is that of the function times
+// seconds. At and Sample do not show it.
+func (f TimeFunction) Impulse() *big.Rat {
+	if f.impulse == nil {
+		return new(big.Rat)
+	}
+	return new(big.Rat).Set(f.impulse)
+}
+
+// DeadTime returns the time in seconds before which the function is 0.
+func (f TimeFunction) DeadTime() *big.Rat {
+	if f.delay == nil {
+		return new(big.Rat)
+	}
+	return new(big.Rat).Set(f.delay)
+}
+
+// Unit returns the unit of the values.
+func (f TimeFunction) Unit() units.Unit { return f.signal.Unit }
+
+// Signal returns the name and the unit of the values.
+func (f TimeFunction) Signal() units.Signal { return f.signal }
+
+// At returns the value at the time t in seconds, correctly rounded to nearest
+// (ties to even) for every finite t, and 0 for t < 0. At a jump it is the limit
+// from the right; an impulse is left out.
+//
+// The error is ErrNotFinite for a NaN or an infinity, ErrRange where the value
+// is too large for a float64, and ErrLimit where 65536 bits of working precision
+// do not decide the rounding. No input with that end is known: by the theorem
+// of Lindemann and Weierstrass a value at a rational time is transcendental
+// or an exactly known rational, so that it cannot lie on a boundary.
+func (f TimeFunction) At(t float64) (float64, error) {
+	if math.IsNaN(t) || math.IsInf(t, 0) {
+		return 0, fmt.Errorf("tf: time %v: %w", t, fault.ErrNotFinite)
+	}
+	if t < 0 || f.e == nil {
+		return 0, nil
+	}
+	if f.delay == nil {
+		if v, ok := f.e.quickAt(t); ok {
+			return v, nil
+		}
+	}
+	x := new(big.Rat).SetFloat64(t)
+	if f.delay != nil {
+		x.Sub(x, f.delay)
+	}
+	return f.e.at(x)
+}
+
+// InitialValue returns the value just after t = 0, exactly: the limit of
+// s·F(s) for s → ∞ where F is the transform without its impulse, and 0 where
+// there is a dead time.
+func (f TimeFunction) InitialValue() *big.Rat {
+	if f.e == nil || f.delay != nil || f.e.num.Degree() < f.e.den.Degree()-1 {
+		return new(big.Rat)
+	}
+	return new(big.Rat).SetFrac(f.e.num.Leading(), f.e.den.Leading())
+}
+
+// FinalValue returns the limit for t → ∞, exactly. It exists where every pole
+// lies in the open left half plane, but for at most a simple pole at 0; else
+// the error is ErrNoFinalValue and names the pole.
+func (f TimeFunction) FinalValue() (*big.Rat, error) {
+	if f.e == nil {
+		return new(big.Rat), nil
+	}
+	for _, root := range f.e.roots {
+		x := root.Number
+		switch {
+		case x.IsZero() && root.Multiplicity > 1:
+			return nil, fmt.Errorf("tf: pole at 0 of multiplicity %d: %w", root.Multiplicity, ErrNoFinalValue)
+		case x.IsZero():
+		case x.IsImaginary():
+			return nil, fmt.Errorf("tf: pole %v on the imaginary axis: %w", x.Value(), ErrNoFinalValue)
+		case !math.Signbit(real(x.Value())):
+			return nil, fmt.Errorf("tf: pole %v in the right half plane: %w", x.Value(), ErrNoFinalValue)
+		}
+	}
+	if f.e.den.Sign(0) != 0 {
+		return new(big.Rat), nil
+	}
+	return new(big.Rat).SetFrac(f.e.num.Coefficient(0), f.e.den.Coefficient(1)), nil
+}
+
+// Derivative returns df/dt, whose transform is s·F(s): a jump at t = 0 becomes
+// an impulse. The unit is that of f per second. The error is
+// ErrImpulseDerivative where f holds an impulse.
+func (f TimeFunction) Derivative() (TimeFunction, error) {
+	signal, err := perSecond(f.signal)
+	if err != nil {
+		return TimeFunction{}, err
+	}
+	s, _ := ratfun.New(intpoly.FromInt64s(0, 1), intpoly.FromInt64s(1))
+	return newTimeFunction(f.transform().Mul(s), f.delay, signal)
+}
+
+// Integral returns the integral of f from just before 0 to t, whose transform
+// is F(s)/s: an impulse becomes a jump. The unit is that of f times seconds.
+func (f TimeFunction) Integral() (TimeFunction, error) {
+	signal, err := timesSeconds(f.signal)
+	if err != nil {
+		return TimeFunction{}, err
+	}
+	s, _ := ratfun.New(intpoly.FromInt64s(1), intpoly.FromInt64s(0, 1))
+	return newTimeFunction(f.transform().Mul(s), f.delay, signal)
+}
