@@ -248,4 +248,5 @@ def main():
                 out.writelines(lines)
 
 
-main()
+if __name__ == "__main__":
+    main()
