@@ -134,7 +134,7 @@ func (f TimeFunction) At(t float64) (float64, error) {
 		return 0, nil
 	}
 	if f.delay == nil {
-		if v, ok := f.e.quickAt(t); ok {
+		if v, ok := f.e.quickAt(t, 0); ok {
 			return v, nil
 		}
 	}

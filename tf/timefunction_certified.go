@@ -188,15 +188,10 @@ func (e *expansion) seriesAt(t *big.Rat, prec int) ball.Real {
 	n := e.den.Degree()
 	g := e.bound()
 	x := ball.FromRat(t, work)
-	lead := ball.FromInt(e.den.Leading())
 	var mu []ball.Real
 	sum, power := ball.Real{}, ball.FromInt64(1) // power is t^k/k!
 	for k := 0; ; k++ {
-		v := ball.FromInt(e.num.Coefficient(n - 1 - k))
-		for i := 1; i <= min(k, n); i++ {
-			v = v.Sub(ball.FromInt(e.den.Coefficient(n-i)).Mul(mu[k-i], work), work)
-		}
-		mu = append(mu, v.Div(lead, work))
+		mu = e.nextMarkov(mu, work)
 		sum = sum.Add(mu[k].Mul(power, work), work)
 		power = power.Mul(x, work).Div(ball.FromInt64(int64(k+1)), work)
 		// The rest is at most 2^scale·Σ_{l>k} (ρt)^l/l! ≤ 2^scale·2·(ρt)^(k+1)/(k+1)!,
@@ -206,6 +201,25 @@ func (e *expansion) seriesAt(t *big.Rat, prec int) ball.Real {
 			return ball.NewReal(sum.Mid(), new(big.Float).SetPrec(64).SetMode(big.AwayFromZero).Add(sum.Radius(), rest))
 		}
 	}
+}
+
+// nextMarkov appends the next Markov parameter.
+func (e *expansion) nextMarkov(mu []ball.Real, prec uint) []ball.Real {
+	n, k := e.den.Degree(), len(mu)
+	v := ball.FromInt(e.num.Coefficient(n - 1 - k))
+	for i := 1; i <= min(k, n); i++ {
+		v = v.Sub(ball.FromInt(e.den.Coefficient(n-i)).Mul(mu[k-i], prec), prec)
+	}
+	return append(mu, v.Div(ball.FromInt(e.den.Leading()), prec))
+}
+
+// markov returns the first count Markov parameters.
+func (e *expansion) markov(count int, prec uint) []ball.Real {
+	var mu []ball.Real
+	for range count {
+		mu = e.nextMarkov(mu, prec)
+	}
+	return mu
 }
 
 // small reports whether rest is below 2^−prec of the sum.

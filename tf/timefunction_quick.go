@@ -1,6 +1,264 @@
 package tf
 
-// quick is the first stage.
-type quick struct{}
+import (
+	"math"
+	"math/big"
 
-func (e *expansion) quickAt(t float64) (float64, bool) { return 0, false }
+	"github.com/qofs/qofs/internal/ball"
+	"github.com/qofs/qofs/internal/exponential"
+)
+
+// The first stage: the same sum as in the certified stage, in double-double
+// with a rigorous bound of the error. It answers where the bound leaves one
+// float64, which is nearly always; else the certified stage does.
+//
+// Errors, relative to Σ|c_k|t^k·e^(σt) of a mode: poles and coefficients are
+// stored to 2^−104, so the exponent σt, at most 600, is known to 2^−93 and
+// the angle ωt, at most 2^20, to 2^−82; the exponential is within 2^−81, sine
+// and cosine within 2^−79, products and sums within 2^−98. Together that is
+// less than 2^−78.
+const (
+	quickError  = 0x1p-77
+	smallest    = 0x1p-800 // of results that the bound covers
+	largest     = 0x1p+1000
+	negligible  = 0x1p-860 // above e^−600
+	seriesTerms = 24
+)
+
+// double is the sum h + l of two float64, |l| ≤ ulp(h)/2.
+type double struct{ h, l float64 }
+
+// quick is what the first stage needs of an expansion.
+type quick struct {
+	modes []mode
+	order int
+	// Below until, Σ series[k]·t^k with an error of at most
+	// quickError·Σ sizes[k]·t^k + remainder·(t/until)^24.
+	series    [seriesTerms]double
+	sizes     [seriesTerms]float64
+	until     float64
+	remainder float64
+}
+
+// mode is the part of one pole: e^(σt)·Σ t^k (a_k cos ωt + b_k sin ωt).
+type mode struct {
+	sigma, omega double
+	amplitudes   []amplitude
+	pair         bool
+}
+
+type amplitude struct {
+	a, b      double
+	magnitude float64 // at least |a| + |b|
+}
+
+// doubled returns the double nearest to the midpoint of x, and whether its
+// error is at most 2^−104·scale; it fails outside a range in which products
+// neither underflow nor overflow.
+func doubled(x ball.Real, scale float64) (double, bool) {
+	if x.IsZero() {
+		return double{}, true
+	}
+	mid := x.Mid()
+	h, _ := mid.Float64()
+	l, _ := new(big.Float).Sub(mid, new(big.Float).SetFloat64(h)).Float64()
+	radius, _ := x.Radius().Float64()
+	ok := math.Abs(h) < 0x1p300 && scale > 0x1p-300 && radius <= scale*0x1p-106
+	return double{h, l}, ok
+}
+
+// prepare derives the first stage from the lowest rung that suffices; nil
+// where none does.
+func (e *expansion) prepare() *quick {
+	e.stage.Do(func() {
+		for i := range 4 {
+			parts, err := e.principals(i)
+			if err != nil {
+				return
+			}
+			if q, ok := newQuick(parts); ok {
+				q.order = e.den.Degree()
+				e.prepareSeries(q)
+				e.quick = q
+				return
+			}
+		}
+	})
+	return e.quick
+}
+
+func newQuick(parts []principal) (*quick, bool) {
+	q := &quick{modes: make([]mode, len(parts))}
+	for i, p := range parts {
+		m := &q.modes[i]
+		m.pair = p.pair
+		var ok1, ok2 bool
+		// Each component to its own relative precision, as Enclosure gives them.
+		m.sigma, ok1 = doubled(p.pole.Re, midpoint(p.pole.Re))
+		m.omega, ok2 = doubled(p.pole.Im, midpoint(p.pole.Im))
+		if !ok1 || !ok2 {
+			return nil, false
+		}
+		m.amplitudes = make([]amplitude, len(p.coefficients))
+		factorial := big.NewRat(1, 1)
+		if p.pair {
+			factorial.SetInt64(2)
+		}
+		for k, c := range p.coefficients {
+			if k > 0 {
+				factorial.Quo(factorial, big.NewRat(int64(k), 1))
+			}
+			scale := ball.FromRat(factorial, 256)
+			re, im := c.Re.Mul(scale, 256), c.Im.Mul(scale, 256).Neg()
+			size := max(midpoint(re), midpoint(im))
+			var a amplitude
+			a.a, ok1 = doubled(re, size)
+			a.b, ok2 = doubled(im, size)
+			a.magnitude = (math.Abs(a.a.h) + math.Abs(a.b.h)) * (1 + 0x1p-50)
+			if !ok1 || !ok2 {
+				return nil, false
+			}
+			m.amplitudes[k] = a
+		}
+	}
+	return q, true
+}
+
+// midpoint returns |mid x| as a float64.
+func midpoint(x ball.Real) float64 {
+	v, _ := x.Mid().Float64()
+	return math.Abs(v)
+}
+
+// prepareSeries fills in the series μ_k/k!; it stays unused where its
+// coefficients leave the range of the stage.
+func (e *expansion) prepareSeries(q *quick) {
+	g := e.bound()
+	until := -1 - g.rate
+	if until < -300 || until > 300 || g.scale > 300 || g.scale < -300 {
+		return
+	}
+	const prec = 256
+	mu := e.markov(seriesTerms, prec)
+	factorial := ball.FromInt64(1)
+	for k, v := range mu {
+		if k > 0 {
+			factorial = factorial.Mul(ball.FromInt64(int64(k)), prec)
+		}
+		c := v.Div(factorial, prec)
+		d, ok := doubled(c, midpoint(c))
+		q.series[k], q.sizes[k] = d, math.Abs(d.h)
+		if !ok { // a parameter that is 0, or nearly so
+			q.series[k] = double{}
+			size, _ := c.Abs().Upper().Float64()
+			q.sizes[k] = size/quickError + 0x1p-1000
+		}
+	}
+	q.until = math.Ldexp(1, until)
+	// 2·2^scale·(ρ·until)^24/24! with ρ·until = 1/2 and 24! > 2^79.
+	q.remainder = math.Ldexp(1, g.scale+1-seriesTerms-79)
+}
+
+// quickAt returns the value at th + tl > 0 where the first stage decides it.
+// The time may have a relative error of 2^−104.
+func (e *expansion) quickAt(th, tl float64) (float64, bool) {
+	if !(th > 0x1p-300 && th < 0x1p300) {
+		return 0, false
+	}
+	q := e.prepare()
+	if q == nil {
+		return 0, false
+	}
+	if th < q.until {
+		if v, ok := q.near(th, tl); ok {
+			return v, true
+		}
+	}
+	var sum double
+	var bound float64
+	for i := range q.modes {
+		m := &q.modes[i]
+		a, b, magnitude := m.amplitudesAt(th, tl)
+		x := product2(m.sigma, th, tl)
+		if x.h < -exponential.MaxExp {
+			bound += magnitude * negligible
+			continue
+		}
+		if x.h > exponential.MaxExp {
+			return 0, false
+		}
+		var decay double
+		decay.h, decay.l = exponential.Exp(x.h, x.l)
+		if m.pair {
+			y := product2(m.omega, th, tl)
+			if y.h > exponential.MaxAngle {
+				return 0, false
+			}
+			sh, sl, ch, cl := exponential.SinCos(y.h, y.l)
+			a = product2(a, ch, cl).plus(product2(b, sh, sl))
+		}
+		sum = sum.plus(product2(a, decay.h, decay.l))
+		bound += magnitude * decay.h
+	}
+	return settle(sum, bound*quickError)
+}
+
+// amplitudesAt returns Σ t^k a_k and Σ t^k b_k and a bound of Σ t^k(|a_k|+|b_k|).
+func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
+	last := len(m.amplitudes) - 1
+	a, b, magnitude = m.amplitudes[last].a, m.amplitudes[last].b, m.amplitudes[last].magnitude
+	for k := last - 1; k >= 0; k-- {
+		c := &m.amplitudes[k]
+		a = product2(a, th, tl).plus(c.a)
+		b = product2(b, th, tl).plus(c.b)
+		magnitude = float64(magnitude*th)*(1+0x1p-50) + c.magnitude
+	}
+	return a, b, magnitude
+}
+
+// near returns the Taylor series about 0.
+func (q *quick) near(th, tl float64) (float64, bool) {
+	sum := q.series[seriesTerms-1]
+	magnitude := q.sizes[seriesTerms-1]
+	for k := seriesTerms - 2; k >= 0; k-- {
+		c := q.series[k]
+		sum = product2(sum, th, tl).plus(c)
+		magnitude = float64(magnitude*th) + q.sizes[k]
+	}
+	rest := th / q.until
+	rest *= rest * rest // the 3rd, 6th, 12th and 24th power
+	rest *= rest
+	rest *= rest
+	rest *= rest
+	return settle(sum, magnitude*quickError+q.remainder*rest*(1+0x1p-40))
+}
+
+// settle rounds sum where every number within bound of it rounds alike.
+func settle(sum double, bound float64) (float64, bool) {
+	size := math.Abs(sum.h)
+	if !(size > smallest && size < largest) {
+		return 0, false
+	}
+	bound += size * 0x1p-100
+	v := sum.h + (sum.l - bound)
+	return v, v == sum.h+(sum.l+bound)
+}
+
+// plus returns x + y with an error below 2^−103·(|x| + |y|).
+func (x double) plus(y double) double {
+	s := x.h + y.h
+	t := s - x.h
+	e := (x.h - (s - t)) + (y.h - t)
+	e += x.l + y.l
+	h := s + e
+	return double{h, e - (h - s)}
+}
+
+// product2 returns x·(yh + yl) with a relative error below 2^−102.
+func product2(x double, yh, yl float64) double {
+	p := float64(x.h * yh)
+	e := math.FMA(x.h, yh, -p)
+	e = math.FMA(x.h, yl, math.FMA(x.l, yh, e))
+	h := p + e
+	return double{h, e - (h - p)}
+}

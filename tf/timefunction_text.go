@@ -48,12 +48,12 @@ func (f TimeFunction) Format(state fmt.State, verb rune) {
 func (f TimeFunction) text(digits int) string {
 	variable := "t"
 	if f.delay != nil {
-		variable = "(t − " + decimal(f.delay, digits) + ")"
+		variable = "(t − " + rationalText(f.delay, digits) + ")"
 	}
 	terms, err := f.Terms()
 	var s sum
 	if f.impulse != nil {
-		s.add(decimal(f.impulse, digits), "δ("+strings.Trim(variable, "()")+")")
+		s.add(rationalText(f.impulse, digits), "δ("+strings.Trim(variable, "()")+")")
 	}
 	for _, term := range terms {
 		term.write(&s, variable, digits)
@@ -63,7 +63,7 @@ func (f TimeFunction) text(digits int) string {
 		text = "a time function whose terms cannot be printed: " + err.Error()
 	}
 	if f.delay != nil {
-		text += " for t ≥ " + decimal(f.delay, digits)
+		text += " for t ≥ " + rationalText(f.delay, digits)
 	}
 	if unit := unitText(f.signal.Unit); unit != "" && unit != "1" {
 		text += " [" + unit + "]"
@@ -143,7 +143,7 @@ const (
 // for exact text where it is short, and else for 6 digits.
 func (f figure) text(digits int) string {
 	if f.exact != nil {
-		return decimal(f.exact, digits)
+		return rationalText(f.exact, digits)
 	}
 	if digits == 0 {
 		digits = plainDigits
@@ -169,9 +169,9 @@ func agreed(b ball.Real, digits int) (string, bool) {
 	return tidy(lo), lo == hi
 }
 
-// decimal prints a rational number, exactly where digits is 0 and the text is
+// rationalText prints a rational number, exactly where digits is 0 and the text is
 // short, and else rounded.
-func decimal(r *big.Rat, digits int) string {
+func rationalText(r *big.Rat, digits int) string {
 	if digits == 0 {
 		if n, finite := r.FloatPrec(); finite && n <= exactDigits {
 			text := r.FloatString(n)
