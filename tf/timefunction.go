@@ -48,11 +48,7 @@ type TimeFunction struct {
 // ErrLimit for a denominator beyond the limits of Poles. Common factors of
 // numerator and denominator cancel here: they cannot be seen from outside.
 func (g Continuous) InverseLaplace() (TimeFunction, error) {
-	signal, err := impulseResponseSignal(g.c.input, g.c.output)
-	if err != nil {
-		return TimeFunction{}, err
-	}
-	return newTimeFunction(g.c.f, g.c.delay, signal)
+	return newTimeFunction(g.c.f, g.c.delay, impulseResponseSignal(g.c.input, g.c.output))
 }
 
 func newTimeFunction(f ratfun.Func, delay *big.Rat, signal units.Signal) (TimeFunction, error) {
@@ -184,21 +180,13 @@ func (f TimeFunction) FinalValue() (*big.Rat, error) {
 // an impulse. The unit is that of f per second. The error is
 // ErrImpulseDerivative where f holds an impulse.
 func (f TimeFunction) Derivative() (TimeFunction, error) {
-	signal, err := perSecond(f.signal)
-	if err != nil {
-		return TimeFunction{}, err
-	}
 	s, _ := ratfun.New(intpoly.FromInt64s(0, 1), intpoly.FromInt64s(1))
-	return newTimeFunction(f.transform().Mul(s), f.delay, signal)
+	return newTimeFunction(f.transform().Mul(s), f.delay, perSecond(f.signal))
 }
 
 // Integral returns the integral of f from just before 0 to t, whose transform
 // is F(s)/s: an impulse becomes a jump. The unit is that of f times seconds.
 func (f TimeFunction) Integral() (TimeFunction, error) {
-	signal, err := timesSeconds(f.signal)
-	if err != nil {
-		return TimeFunction{}, err
-	}
 	s, _ := ratfun.New(intpoly.FromInt64s(1), intpoly.FromInt64s(0, 1))
-	return newTimeFunction(f.transform().Mul(s), f.delay, signal)
+	return newTimeFunction(f.transform().Mul(s), f.delay, timesSeconds(f.signal))
 }

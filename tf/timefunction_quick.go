@@ -181,7 +181,7 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		a, b, magnitude := m.amplitudesAt(th, tl)
 		x := product2(m.sigma, th, tl)
 		if x.h < -exponential.MaxExp {
-			bound += magnitude * negligible
+			bound += magnitude * (negligible / quickError)
 			continue
 		}
 		if x.h > exponential.MaxExp {

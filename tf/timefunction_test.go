@@ -5,10 +5,12 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"math/rand/v2"
 	"testing"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/poly"
+	"github.com/qofs/qofs/units"
 )
 
 func whole(c ...int64) []*big.Rat {
@@ -41,11 +43,13 @@ func TestTimeFunctionText(t *testing.T) {
 		{whole(3, 4, 1), whole(-1, 0, 0, 1), "8/3 e^(t) − 5/3 e^(−0.5 t) cos(0.866025 t) + 0.57735 e^(−0.5 t) sin(0.866025 t)"},
 	} {
 		f := timeFunctionOf(t, c.num, c.den)
+		f.signal.Unit = units.Unit{}
 		if got := f.String(); got != c.want {
 			t.Errorf("%v / %v is %q, want %q", c.num, c.den, got, c.want)
 		}
 	}
 	f := timeFunctionOf(t, whole(1), whole(0, 3, 1))
+	f.signal.Unit = units.Unit{}
 	if got := fmt.Sprintf("%.3v|%30.2s|%-20.1v|%d", f, f, f, f); got != "0.333 − 0.333 e^(−3 t)|          0.33 − 0.33 e^(−3 t)|0.3 − 0.3 e^(−3 t)  |%!d(tf.TimeFunction=1/3 − 1/3 e^(−3 t))" {
 		t.Errorf("formats: %q", got)
 	}
@@ -123,7 +127,7 @@ func TestTimeFunctionLimits(t *testing.T) {
 func TestTimeFunctionCalculus(t *testing.T) {
 	f := timeFunctionOf(t, whole(7, 3), whole(5, 2, 1)) // 3 cos + 2 sin
 	d := Must(f.Derivative())
-	if got := d.String(); got != "3 δ(t) + e^(−t) cos(2 t) − 8 e^(−t) sin(2 t)" {
+	if got := d.String(); got != "3 δ(t) + e^(−t) cos(2 t) − 8 e^(−t) sin(2 t) [1/s^2]" {
 		t.Errorf("derivative %v", got)
 	}
 	if _, err := d.Derivative(); !errors.Is(err, ErrImpulseDerivative) {
@@ -136,4 +140,41 @@ func TestTimeFunctionCalculus(t *testing.T) {
 	if got := Must(f.Integral()).String(); got != "1.4 − 1.4 e^(−t) cos(2 t) + 0.8 e^(−t) sin(2 t)" {
 		t.Errorf("integral %v", got)
 	}
+}
+
+// TestSample compares every sample with the certified stage at the exact
+// product k·dt.
+func TestSample(t *testing.T) {
+	r := rand.New(rand.NewPCG(5, 6))
+	compared := 0
+	for _, dt := range []float64{0, 1e-9, 0.01, 0.1, 1, 1e3} {
+		for range 8 {
+			g := Continuous{c: core{f: randomProper(r, 1+r.IntN(8))}}
+			if r.IntN(3) == 0 {
+				g.c.setDelay(big.NewRat(int64(r.IntN(100)), 33))
+			}
+			f, err := g.InverseLaplace()
+			if err != nil {
+				t.Fatal(err)
+			}
+			n := 1 + r.IntN(150)
+			y, err := f.Sample(dt, n)
+			if err != nil && !errors.Is(err, fault.ErrRange) {
+				t.Fatal(err)
+			}
+			for k, v := range y {
+				x := new(big.Rat).SetFloat64(dt)
+				x.Mul(x, big.NewRat(int64(k), 1)).Sub(x, f.DeadTime())
+				want, errWant := f.e.at(x)
+				if errors.Is(errWant, fault.ErrRange) && errors.Is(err, fault.ErrRange) {
+					break
+				}
+				if errWant != nil || math.Float64bits(v) != math.Float64bits(want) {
+					t.Fatalf("%v: sample %d of step %v is %x, want %x, %v", f, k, dt, v, want, errWant)
+				}
+				compared++
+			}
+		}
+	}
+	t.Logf("%d samples compared", compared)
 }

@@ -65,7 +65,7 @@ func (f TimeFunction) text(digits int) string {
 	if f.delay != nil {
 		text += " for t ≥ " + rationalText(f.delay, digits)
 	}
-	if unit := unitText(f.signal.Unit); unit != "" && unit != "1" {
+	if unit := unitText(f.signal.Unit); unit != "" {
 		text += " [" + unit + "]"
 	}
 	return text
