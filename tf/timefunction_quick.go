@@ -22,7 +22,8 @@ const (
 	smallest    = 0x1p-800 // of results that the bound covers
 	largest     = 0x1p+1000
 	negligible  = 0x1p-860 // above e^−600
-	seriesTerms = 24
+	seriesTerms = 64
+	firstTerms  = 24 // of the series up to 1/16 of its range
 )
 
 // double is the sum h + l of two float64, |l| ≤ ulp(h)/2.
@@ -32,12 +33,12 @@ type double struct{ h, l float64 }
 type quick struct {
 	modes []mode
 	order int
-	// Below until, Σ series[k]·t^k with an error of at most
-	// quickError·Σ sizes[k]·t^k + remainder·(t/until)^24.
+	// Below until, the sum of the first n terms series[k]·t^k has an error of
+	// at most quickError·Σ sizes[k]·t^k + remainder(n)·(t/until)^n.
 	series    [seriesTerms]double
 	sizes     [seriesTerms]float64
 	until     float64
-	remainder float64
+	remainder [2]float64 // for all terms, and for firstTerms
 }
 
 // mode is the part of one pole: e^(σt)·Σ t^k (a_k cos ωt + b_k sin ωt).
@@ -134,7 +135,7 @@ func midpoint(x ball.Real) float64 {
 // coefficients leave the range of the stage.
 func (e *expansion) prepareSeries(q *quick) {
 	g := e.bound()
-	until := -1 - g.rate
+	until := 3 - g.rate // ρ·until = 8
 	if until < -300 || until > 300 || g.scale > 300 || g.scale < -300 {
 		return
 	}
@@ -155,8 +156,9 @@ func (e *expansion) prepareSeries(q *quick) {
 		}
 	}
 	q.until = math.Ldexp(1, until)
-	// 2·2^scale·(ρ·until)^24/24! with ρ·until = 1/2 and 24! > 2^79.
-	q.remainder = math.Ldexp(1, g.scale+1-seriesTerms-79)
+	// 2·2^scale·(ρ·until)^n/n! with 64! > 2^295 and 24! > 2^79.
+	q.remainder[0] = math.Ldexp(1, g.scale+1+3*seriesTerms-295)
+	q.remainder[1] = math.Ldexp(1, g.scale+1+3*firstTerms-79)
 }
 
 // quickAt returns the value at th + tl > 0 where the first stage decides it.
@@ -169,21 +171,35 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 	if q == nil {
 		return 0, false
 	}
-	if th < q.until {
-		if v, ok := q.near(th, tl); ok {
+	if th < q.until/16 {
+		if v, ok := q.near(th, tl, firstTerms); ok {
 			return v, true
 		}
 	}
+	if v, ok := q.far(th, tl); ok {
+		return v, true
+	}
+	if th < q.until {
+		return q.near(th, tl, seriesTerms)
+	}
+	return 0, false
+}
+
+// far returns the sum of the modes.
+func (q *quick) far(th, tl float64) (float64, bool) {
 	var sum double
 	var bound float64
+	top := math.Inf(-1) // log2 of the modes, where all are below e^−600
 	for i := range q.modes {
 		m := &q.modes[i]
 		a, b, magnitude := m.amplitudesAt(th, tl)
 		x := product2(m.sigma, th, tl)
 		if x.h < -exponential.MaxExp {
 			bound += magnitude * (negligible / quickError)
+			top = max(top, 1.44*x.h+math.Log2(magnitude)+1)
 			continue
 		}
+		top = math.Inf(1)
 		if x.h > exponential.MaxExp {
 			return 0, false
 		}
@@ -199,6 +215,9 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		}
 		sum = sum.plus(product2(a, decay.h, decay.l))
 		bound += magnitude * decay.h
+	}
+	if top+float64(len(q.modes)) < -1080 {
+		return 0, true // below half the smallest subnormal number
 	}
 	return settle(sum, bound*quickError)
 }
@@ -216,21 +235,25 @@ func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
 	return a, b, magnitude
 }
 
-// near returns the Taylor series about 0.
-func (q *quick) near(th, tl float64) (float64, bool) {
-	sum := q.series[seriesTerms-1]
-	magnitude := q.sizes[seriesTerms-1]
-	for k := seriesTerms - 2; k >= 0; k-- {
-		c := q.series[k]
-		sum = product2(sum, th, tl).plus(c)
+// near returns the first terms of the Taylor series about 0.
+func (q *quick) near(th, tl float64, terms int) (float64, bool) {
+	sum := q.series[terms-1]
+	magnitude := q.sizes[terms-1]
+	for k := terms - 2; k >= 0; k-- {
+		sum = product2(sum, th, tl).plus(q.series[k])
 		magnitude = float64(magnitude*th) + q.sizes[k]
 	}
-	rest := th / q.until
-	rest *= rest * rest // the 3rd, 6th, 12th and 24th power
-	rest *= rest
-	rest *= rest
-	rest *= rest
-	return settle(sum, magnitude*quickError+q.remainder*rest*(1+0x1p-40))
+	ratio, rest := th/q.until, q.remainder[0]
+	eighth := ratio * ratio
+	eighth *= eighth
+	eighth *= eighth
+	power := float64(eighth*eighth) * eighth // 24th
+	if terms == firstTerms {
+		rest = q.remainder[1]
+	} else {
+		power = float64(power*power) * float64(eighth*eighth) // 64th
+	}
+	return settle(sum, magnitude*quickError+rest*power*(1+0x1p-40))
 }
 
 // settle rounds sum where every number within bound of it rounds alike.

@@ -71,7 +71,12 @@ func doubleOf(r *big.Rat) double {
 // sampler evaluates on a grid. With t = anchor + j·dt every function
 // t^k e^(σt) cos ωt is a sum of products of a number that belongs to the anchor
 // and one that belongs to j; these are tabulated, so that a sample costs one
-// double-double product for each pole.
+// product for each pole.
+//
+// The products are done in slices: a number is a1 + a2, where a1 is a multiple of
+// 2^−slice of the largest, and the products of two such slices and their sum
+// over all poles are exact in float64. What is left is 2^−slice smaller, and
+// plain float64 suffices for it.
 type sampler struct {
 	e      *expansion
 	dt     float64
@@ -79,17 +84,26 @@ type sampler struct {
 	first  int      // the first sample after the dead time
 	exact  *big.Rat // the dead time; nil is 0
 
-	order  int
-	block  int
-	table  []double  // block rows of order entries
-	sizes  []float64 // bounds of the absolute values in each column of the table
-	anchor []double
+	order   int
+	block   int
+	slice   int
+	table   []cell    // block rows of order entries, scaled to at most 1
+	scales  []float64 // the powers of 2 by which the columns were divided
+	slack   []float64 // what the table neglects, times 1/quickError
+	anchor  []part
+	anchors []double
 }
+
+// cell is an entry of the table: b as float64, and b1 + b2 more precisely.
+type cell struct{ b, b1, b2 float64 }
+
+// part is an entry of the anchor.
+type part struct{ a1, a2 float64 }
 
 func (s *sampler) fill(y []float64) error {
 	count := len(y) - s.first
 	q := s.e.prepare()
-	if q == nil || count < 8 || !s.tabulate(q, count) {
+	if q == nil || count < 8 || q.order > 256 || !s.tabulate(q, count) {
 		for k := s.first; k < len(y); k++ {
 			if err := s.one(y, k); err != nil {
 				return err
@@ -102,7 +116,7 @@ func (s *sampler) fill(y []float64) error {
 		out := y[s.first+start:][:m]
 		decided := 0
 		if bound, ok := s.anchorAt(q, s.time(start)); ok {
-			decided = s.rows(out, bound*quickError)
+			decided = s.rows(out, bound)
 		}
 		if decided == m {
 			continue
@@ -143,64 +157,109 @@ func (s *sampler) one(y []float64, k int) error {
 	return nil
 }
 
+// fine is the number of rows of the table whose exponentials are computed;
+// the others are products of one of these and one of every fine-th.
+const fine = 8
+
 // tabulate fills the table; it fails where the functions leave the range of
 // the first stage within a block.
 func (s *sampler) tabulate(q *quick, count int) bool {
 	s.order = q.order
-	s.block = 1 << ((bits.Len(uint(count)) + 1) / 2)
-	s.block = min(max(s.block, 8), 256)
-	s.table = make([]double, s.block*s.order)
-	s.sizes = make([]float64, s.order)
-	s.anchor = make([]double, s.order)
+	s.slice = (52 - bits.Len(uint(s.order))) / 2
+	s.block = min(max(1<<(bits.Len(uint(count))/2+1), fine), 256)
+	s.table = make([]cell, s.block*s.order)
+	s.scales, s.slack = make([]float64, s.order), make([]float64, s.order)
+	s.anchor, s.anchors = make([]part, s.order), make([]double, s.order)
+	values := make([]double, s.block*s.order)
 	column := 0
 	for i := range q.modes {
 		m := &q.modes[i]
-		for j := range s.block {
-			row := s.table[j*s.order+column:]
-			p := float64(float64(j) * s.dt)
-			tau := double{p, math.FMA(float64(j), s.dt, -p)}
-			if !(tau.h == 0 || tau.h > 0x1p-300 && tau.h < 0x1p300) {
-				return false
-			}
-			c, d, ok := m.exponential(tau)
-			if !ok {
-				return false
-			}
-			for k := range m.amplitudes {
-				if k > 0 {
-					c = product2(c, tau.h, tau.l)
-					d = product2(d, tau.h, tau.l)
-				}
-				if m.pair {
-					row[2*k], row[2*k+1] = c, d
-				} else {
-					row[k] = c
-				}
-			}
-			s.measure(row, column, m, tau.h)
+		if !s.columns(m, values, column) {
+			return false
 		}
 		column += m.width() * len(m.amplitudes)
 	}
-	for _, v := range s.sizes {
-		if !(v < 0x1p300) {
+	round := math.Ldexp(1.5, 52-s.slice)
+	for l := range s.scales {
+		size := 0.0
+		for j := range s.block {
+			size = max(size, math.Abs(values[j*s.order+l].h))
+		}
+		if !(size < 0x1p300 && s.slack[l] < 0x1p300) {
 			return false
+		}
+		_, exponent := math.Frexp(max(size, 0x1p-300))
+		s.scales[l] = math.Ldexp(1, exponent)
+		down := math.Ldexp(1, -exponent)
+		for j := range s.block {
+			v := values[j*s.order+l]
+			h := float64(v.h * down)
+			b1 := (h + round) - round
+			s.table[j*s.order+l] = cell{h, b1, (h - b1) + float64(v.l*down)}
 		}
 	}
 	return true
 }
 
-// measure raises the sizes to those of a row. An exponential below e^−600 is
-// 0 in the table; its true size counts so much that the bound, a
-// quickError-th of it, covers it.
-func (s *sampler) measure(row []double, column int, m *mode, tau float64) {
-	power := 1.0
-	for k := range m.amplitudes {
-		neglected := float64(power*negligible) / quickError
-		power *= tau
-		for i := k * m.width(); i < (k+1)*m.width(); i++ {
-			s.sizes[column+i] = max(s.sizes[column+i], math.Abs(row[i].h), neglected)
+// columns fills the columns of one mode: for each power k those of
+// τ^k e^(στ) cos ωτ and τ^k e^(στ) sin ωτ at τ = j·dt. An exponential below
+// e^−600 is 0 there; slack keeps what it may be.
+func (s *sampler) columns(m *mode, values []double, column int) bool {
+	var near [fine][2]double
+	for j := range near {
+		var ok bool
+		if near[j][0], near[j][1], ok = m.exponential(s.step(j)); !ok {
+			return false
 		}
 	}
+	var base [2]double
+	for j := range s.block {
+		tau := s.step(j)
+		if !(tau.h == 0 || tau.h > 0x1p-300 && tau.h < 0x1p300) {
+			return false
+		}
+		if j%fine == 0 {
+			var ok bool
+			if base[0], base[1], ok = m.exponential(tau); !ok {
+				return false
+			}
+		}
+		c, d := base[0], base[1]
+		if j%fine != 0 {
+			c, d = rotate(base, near[j%fine])
+		}
+		power := 1.0
+		for k := range m.amplitudes {
+			if k > 0 {
+				c = product2(c, tau.h, tau.l)
+				d = product2(d, tau.h, tau.l)
+				power *= tau.h
+			}
+			at := j*s.order + column + k*m.width()
+			values[at] = c
+			s.slack[column+k*m.width()] = max(s.slack[column+k*m.width()], float64(power*negligible)/quickError)
+			if m.pair {
+				values[at+1] = d
+			}
+		}
+	}
+	return true
+}
+
+// rotate returns the complex product x·y.
+func rotate(x, y [2]double) (re, im double) {
+	if x[1].h == 0 && y[1].h == 0 {
+		return product2(x[0], y[0].h, y[0].l), double{}
+	}
+	re = product2(x[0], y[0].h, y[0].l).plus(product2(double{-x[1].h, -x[1].l}, y[1].h, y[1].l))
+	im = product2(x[0], y[1].h, y[1].l).plus(product2(x[1], y[0].h, y[0].l))
+	return re, im
+}
+
+// step returns j·dt.
+func (s *sampler) step(j int) double {
+	p := float64(float64(j) * s.dt)
+	return double{p, math.FMA(float64(j), s.dt, -p)}
 }
 
 // width is how many columns belong to each power of t.
@@ -211,8 +270,7 @@ func (m *mode) width() int {
 	return 1
 }
 
-// exponential returns e^(σt)·cos ωt and e^(σt)·sin ωt. Below e^−600 they are 0,
-// which the bound of anchorAt covers.
+// exponential returns e^(σt)·cos ωt and e^(σt)·sin ωt; below e^−600 they are 0.
 func (m *mode) exponential(t double) (c, d double, ok bool) {
 	x := product2(m.sigma, t.h, t.l)
 	if x.h < -exponential.MaxExp {
@@ -233,12 +291,16 @@ func (m *mode) exponential(t double) (c, d double, ok bool) {
 	return product2(c, ch, cl), product2(c, sh, sl), true
 }
 
-// anchorAt fills the anchor for the time t and returns a bound of
-// Σ|anchor|·|table| over the block, with the share of what was neglected.
+// anchorAt fills the anchor for the time t and returns a bound of the error of
+// a row. It fails outside the range of the first stage.
 //
-// The polynomial Σ c_k (t+τ)^k of a mode is Σ d_k τ^k, by repeated synthetic
-// division. With c = e^(σt) cos ωt and d = e^(σt) sin ωt, a cos ω(t+τ) + b sin ω(t+τ)
-// takes a·c + b·d times the column of cos ωτ, and b·c − a·d times that of sin ωτ.
+// The polynomial Σ c_k (t+τ)^k of a mode is Σ d_k τ^k. With
+// c = e^(σt) cos ωt and d = e^(σt) sin ωt, a cos ω(t+τ) + b sin ω(t+τ) takes
+// a·c + b·d times the column of cos ωτ, and b·c − a·d times that of sin ωτ.
+//
+// Anchor and table are within 2^−77 of the sizes that they are bounded by: twice
+// what At is. The slices leave 2^−(slice+53) of the largest anchor for each
+// of three products, sums included 4·order times as much.
 func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 	if !(t.h >= 0 && t.h < 0x1p300) {
 		return 0, false
@@ -250,24 +312,35 @@ func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 		if !ok {
 			return 0, false
 		}
-		size := (math.Abs(c.h) + math.Abs(d.h)) * (1 + 0x1p-40)
-		n := len(m.amplitudes)
-		for k := range n {
+		size := math.Abs(c.h) + math.Abs(d.h) + negligible/quickError
+		for k := range m.amplitudes {
 			a, b, magnitude := m.shifted(k, t)
-			sizes := s.sizes[column:]
+			scale, slack := s.scales[column], s.slack[column]
+			bound += magnitude * (size*(4*scale+slack) + 4*scale*(negligible/quickError))
+			s.anchors[column] = product2(a, c.h, c.l)
 			if m.pair {
-				s.anchor[column] = product2(a, c.h, c.l).plus(product2(b, d.h, d.l))
-				s.anchor[column+1] = product2(b, c.h, c.l).plus(product2(double{-a.h, -a.l}, d.h, d.l))
-				bound += magnitude*size*(sizes[0]+sizes[1]) + magnitude*(1+sizes[0]+sizes[1])*(negligible/quickError)
-				column += 2
-			} else {
-				s.anchor[column] = product2(a, c.h, c.l)
-				bound += magnitude*size*sizes[0] + magnitude*(1+sizes[0])*(negligible/quickError)
-				column++
+				bound += magnitude * size * 4 * s.scales[column+1]
+				s.anchors[column] = s.anchors[column].plus(product2(b, d.h, d.l))
+				s.anchors[column+1] = product2(b, c.h, c.l).plus(product2(double{-a.h, -a.l}, d.h, d.l))
 			}
+			column += m.width()
 		}
 	}
-	return bound * (1 + 0x1p-40), true
+	largest := 0.0
+	for l, v := range s.anchors {
+		largest = max(largest, float64(math.Abs(v.h)*s.scales[l]))
+	}
+	if !(largest > 0x1p-600 && largest < 0x1p600) {
+		return 0, false
+	}
+	_, exponent := math.Frexp(largest)
+	round := math.Ldexp(1.5, 52-s.slice+exponent)
+	for l, v := range s.anchors {
+		h := float64(v.h * s.scales[l])
+		a1 := (h + round) - round
+		s.anchor[l] = part{a1, (h - a1) + float64(v.l*s.scales[l])}
+	}
+	return 2*bound*quickError + math.Ldexp(float64(8*s.order), exponent-s.slice-53), true
 }
 
 // shifted returns the coefficient of τ^k in Σ c_j (t+τ)^j, which is
@@ -278,7 +351,7 @@ func (m *mode) shifted(k int, t double) (a, b double, magnitude float64) {
 		c := &m.amplitudes[0]
 		return c.a, c.b, c.magnitude
 	}
-	// Horner in t with the binomials C(j,k) by exact recurrence.
+	// Horner in t with the binomials C(j,k), exact below 2^53.
 	binomials := make([]float64, n)
 	binomials[k] = 1
 	for j := k + 1; j < n; j++ {
@@ -298,21 +371,20 @@ func (m *mode) shifted(k int, t double) (a, b double, magnitude float64) {
 func (s *sampler) rows(out []float64, bound float64) (decided int) {
 	anchor := s.anchor
 	n := len(anchor)
+	table := s.table
 	for j := range out {
-		row := s.table[j*n:][:n]
-		var h, l float64
-		for i, a := range anchor {
-			b := row[i]
-			p := float64(a.h * b.h)
-			e := math.FMA(a.h, b.h, -p)
-			e = math.FMA(a.h, b.l, math.FMA(a.l, b.h, e))
-			sum := h + p
-			t := sum - h
-			l += ((h - (sum - t)) + (p - t)) + e
-			h = sum
+		row := table[:n]
+		table = table[n:]
+		var h, l, m float64
+		for i := range anchor {
+			a, b := &anchor[i], &row[i]
+			h += float64(a.a1 * b.b1)
+			l += float64(a.a1 * b.b2)
+			m += float64(a.a2 * b.b)
 		}
+		l += m
 		v := h + (l - bound)
-		if size := math.Abs(v); v == h+(l+bound) && size > smallest && size < largest {
+		if v == h+(l+bound) {
 			out[j] = v
 			decided++
 		}
