@@ -20,6 +20,9 @@ func (e *expansion) at(t *big.Rat) (float64, error) {
 	case t.Sign() == 0 || e.den.Degree() == e.den.Valuation():
 		return rounded(e.polynomialAt(t))
 	}
+	if e.isHuge(t) {
+		return e.huge(t)
+	}
 	near := e.nearZero(t)
 	for i := range rungs {
 		if i == 2 && e.vanishesOffZero(t) {
@@ -49,11 +52,51 @@ func (e *expansion) enclosure(t *big.Rat, i int, near bool) (ball.Real, error) {
 		return ball.Real{}, err
 	}
 	prec := uint(firstPrecision)<<i + 32
-	return sumAt(parts, ball.FromRat(t, prec), prec), nil
+	return sumAt(parts, ball.FromRat(t, prec), ball.Real{}, prec), nil
 }
 
-// sumAt returns Σ c_k·t^k/k!·e^(pt) over the principal parts.
-func sumAt(parts []principal, t ball.Real, prec uint) ball.Real {
+// isHuge reports whether the exponent of the fastest growing mode passes 2^20.
+func (e *expansion) isHuge(t *big.Rat) bool {
+	v, _ := t.Float64()
+	return e.growthRate()*v > 1<<20
+}
+
+// growthRate is the largest real part of a pole.
+func (e *expansion) growthRate() float64 {
+	rate := math.Inf(-1)
+	for _, root := range e.roots {
+		rate = max(rate, real(root.Number.Value()))
+	}
+	return rate
+}
+
+// huge divides the function by e^(σt) of its fastest growing mode, with
+// σt > 2^20: where the quotient is above 2^−2^20 the value passes the range.
+func (e *expansion) huge(t *big.Rat) (float64, error) {
+	rate := e.growthRate()
+	for i := range rungs {
+		parts, err := e.principals(i)
+		if err != nil {
+			return 0, err
+		}
+		prec := uint(firstPrecision)<<i + 32
+		x := ball.FromRat(t, prec)
+		for _, p := range parts {
+			if real(p.root.Value()) != rate {
+				continue
+			}
+			y := sumAt(parts, x, p.pole.Re.Mul(x, prec), prec)
+			if _, ok := y.Sign(); ok && y.Abs().Lower().MantExp(nil) > -1<<20+2 {
+				return 0, fault.ErrRange
+			}
+			break
+		}
+	}
+	return 0, errUndecided
+}
+
+// sumAt returns e^(−shift)·Σ c_k·t^k/k!·e^(pt) over the principal parts.
+func sumAt(parts []principal, t, shift ball.Real, prec uint) ball.Real {
 	var sum ball.Real
 	for _, p := range parts {
 		// Horner in t: c_0 + t/1·(c_1 + t/2·(c_2 + …)).
@@ -65,7 +108,7 @@ func sumAt(parts []principal, t ball.Real, prec uint) ball.Real {
 			}
 			v = v.Add(p.coefficients[k], prec)
 		}
-		decay := p.pole.Re.Mul(t, prec).Exp(prec)
+		decay := p.pole.Re.Mul(t, prec).Sub(shift, prec).Exp(prec)
 		if !p.pair {
 			sum = sum.Add(v.Re.Mul(decay, prec), prec)
 			continue

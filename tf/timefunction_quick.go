@@ -172,23 +172,27 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		return 0, false
 	}
 	if th < q.until/16 {
-		if v, ok := q.near(th, tl, firstTerms); ok {
+		if v, ok := settle(q.near(th, tl, firstTerms)); ok {
 			return v, true
 		}
 	}
-	if v, ok := q.far(th, tl); ok {
+	sum, bound, isZero := q.far(th, tl)
+	if isZero {
+		return 0, true
+	}
+	if v, ok := settle(sum, bound); ok {
 		return v, true
 	}
 	if th < q.until {
-		return q.near(th, tl, seriesTerms)
+		return settle(q.near(th, tl, seriesTerms))
 	}
 	return 0, false
 }
 
-// far returns the sum of the modes.
-func (q *quick) far(th, tl float64) (float64, bool) {
-	var sum double
-	var bound float64
+// far returns the sum of the modes and a bound of its error, +Inf where the
+// stage does not reach; isZero tells that the sum is below half the smallest
+// subnormal number.
+func (q *quick) far(th, tl float64) (sum double, bound float64, isZero bool) {
 	top := math.Inf(-1) // log2 of the modes, where all are below e^−600
 	for i := range q.modes {
 		m := &q.modes[i]
@@ -199,16 +203,16 @@ func (q *quick) far(th, tl float64) (float64, bool) {
 			top = max(top, 1.44*x.h+math.Log2(magnitude)+1)
 			continue
 		}
-		top = math.Inf(1)
 		if x.h > exponential.MaxExp {
-			return 0, false
+			return double{}, math.Inf(1), false
 		}
+		top = math.Inf(1)
 		var decay double
 		decay.h, decay.l = exponential.Exp(x.h, x.l)
 		if m.pair {
 			y := product2(m.omega, th, tl)
 			if y.h > exponential.MaxAngle {
-				return 0, false
+				return double{}, math.Inf(1), false
 			}
 			sh, sl, ch, cl := exponential.SinCos(y.h, y.l)
 			a = product2(a, ch, cl).plus(product2(b, sh, sl))
@@ -216,10 +220,7 @@ func (q *quick) far(th, tl float64) (float64, bool) {
 		sum = sum.plus(product2(a, decay.h, decay.l))
 		bound += magnitude * decay.h
 	}
-	if top+float64(len(q.modes)) < -1080 {
-		return 0, true // below half the smallest subnormal number
-	}
-	return settle(sum, bound*quickError)
+	return sum, bound * quickError, top+float64(len(q.modes)) < -1080
 }
 
 // amplitudesAt returns Σ t^k a_k and Σ t^k b_k and a bound of Σ t^k(|a_k|+|b_k|).
@@ -235,8 +236,9 @@ func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
 	return a, b, magnitude
 }
 
-// near returns the first terms of the Taylor series about 0.
-func (q *quick) near(th, tl float64, terms int) (float64, bool) {
+// near returns the first terms of the Taylor series about 0 and a bound of the
+// error.
+func (q *quick) near(th, tl float64, terms int) (double, float64) {
 	sum := q.series[terms-1]
 	magnitude := q.sizes[terms-1]
 	for k := terms - 2; k >= 0; k-- {
@@ -253,7 +255,7 @@ func (q *quick) near(th, tl float64, terms int) (float64, bool) {
 	} else {
 		power = float64(power*power) * float64(eighth*eighth) // 64th
 	}
-	return settle(sum, magnitude*quickError+rest*power*(1+0x1p-40))
+	return sum, magnitude*quickError + rest*power*(1+0x1p-40)
 }
 
 // settle rounds sum where every number within bound of it rounds alike.

@@ -1,0 +1,183 @@
+package tf
+
+import (
+	"errors"
+	"math"
+	"math/big"
+	"math/rand/v2"
+	"testing"
+
+	"github.com/qofs/qofs/internal/ball"
+	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/poly"
+)
+
+// TestQuickStageIsSound: the true value lies within the bound that the
+// double-double sum claims, whether or not it decides the rounding.
+func TestQuickStageIsSound(t *testing.T) {
+	r := rand.New(rand.NewPCG(7, 8))
+	functions, times := 150, 60
+	if testing.Short() {
+		functions = 30
+	}
+	decided, total, limits := 0, 0, 0
+	tightest := math.Inf(1)
+	for range functions {
+		f := randomProper(r, 1+r.IntN(10))
+		e, err := newExpansion(f.Num(), f.Den())
+		if err != nil {
+			t.Fatal(err)
+		}
+		q := e.prepare()
+		if q == nil {
+			t.Fatalf("no first stage for %v", f)
+		}
+		for range times {
+			x := math.Exp2(16*r.Float64() - 12)
+			total++
+			exact := new(big.Rat).SetFloat64(x)
+			want, err := e.at(exact)
+			switch {
+			case errors.Is(err, fault.ErrRange):
+				continue
+			case err != nil:
+				limits++
+				t.Error(err)
+				continue
+			}
+			if v, ok := e.quickAt(x, 0); ok {
+				decided++
+				if math.Float64bits(v) != math.Float64bits(want) {
+					t.Errorf("%v/%v at %x: first stage %x, certified %x", f.Num(), f.Den(), x, v, want)
+				}
+			}
+			y, err := e.enclosure(exact, 2, e.nearZero(exact))
+			if err != nil {
+				t.Fatal(err)
+			}
+			check := func(sum double, bound float64, stage string) {
+				v := ball.FromFloat64(sum.h).Add(ball.FromFloat64(sum.l), 300).Sub(y, 300).Abs()
+				if lo, _ := v.Lower().Float64(); lo > bound {
+					t.Errorf("%v/%v at %x: %s is off by %g, claims %g", f.Num(), f.Den(), x, stage, lo, bound)
+				} else if lo > 0 {
+					tightest = min(tightest, bound/lo)
+				}
+			}
+			sum, bound, _ := q.far(x, 0)
+			check(sum, bound, "the sum of modes")
+			if x < q.until {
+				sum, bound := q.near(x, 0, seriesTerms)
+				check(sum, bound, "the series")
+			}
+			if x < q.until/16 {
+				sum, bound := q.near(x, 0, firstTerms)
+				check(sum, bound, "the short series")
+			}
+		}
+	}
+	t.Logf("%d of %d values decided by the first stage; bound at least %.1f times the error; ErrLimit %d", decided, total, tightest, limits)
+	if decided < total/2 {
+		t.Error("the first stage decides too little")
+	}
+}
+
+// FuzzTimeFunction compares the stages, and checks that nothing panics.
+func FuzzTimeFunction(f *testing.F) {
+	f.Add([]byte{1}, []byte{5, 2, 1}, 0.5)
+	f.Add([]byte{0, 1}, []byte{1, 2, 1}, 1.0)
+	f.Add([]byte{1, 1}, []byte{0, 0, 1, 3, 3, 1}, 1e-300)
+	f.Add([]byte{3}, []byte{0, 0, 0, 255}, 1e300)
+	f.Fuzz(func(t *testing.T, num, den []byte, x float64) {
+		if len(num) > 12 || len(den) > 10 {
+			return
+		}
+		g, err := New(fuzzPoly(num), fuzzPoly(den))
+		if err != nil {
+			return
+		}
+		h, err := g.InverseLaplace()
+		if err != nil {
+			if !errors.Is(err, ErrImpulseDerivative) {
+				t.Fatal(err)
+			}
+			return
+		}
+		y, err := h.At(x)
+		if err != nil {
+			if !errors.Is(err, fault.ErrRange) && !errors.Is(err, fault.ErrNotFinite) {
+				t.Fatalf("%v at %v: %v", h, x, err)
+			}
+			return
+		}
+		if h.e != nil && x >= 0 {
+			want, err := h.e.at(new(big.Rat).SetFloat64(x))
+			if err != nil || math.Float64bits(y) != math.Float64bits(want) {
+				t.Fatalf("%v at %x: %x, certified %x, %v", h, x, y, want, err)
+			}
+			samples, err := h.Sample(x, 12)
+			if err == nil && math.Float64bits(samples[1]) != math.Float64bits(y) {
+				t.Fatalf("%v: sample %x, value %x", h, samples[1], y)
+			}
+		}
+		if h.String() == "" {
+			t.Fatal("no text")
+		}
+	})
+}
+
+func fuzzPoly(b []byte) poly.Poly {
+	c := make([]int64, len(b))
+	for i, v := range b {
+		c[i] = int64(int8(v))
+	}
+	return poly.FromInts(c...)
+}
+
+// FuzzPartialFractions: the rational fractions add up to the function.
+func FuzzPartialFractions(f *testing.F) {
+	f.Add([]byte{1}, []byte{5, 2, 1})
+	f.Add([]byte{1, 2, 3, 4}, []byte{1, 2, 1})
+	f.Fuzz(func(t *testing.T, num, den []byte) {
+		if len(num) > 10 || len(den) > 9 {
+			return
+		}
+		g, err := New(fuzzPoly(num), fuzzPoly(den))
+		if err != nil {
+			return
+		}
+		p, err := g.PartialFractions()
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !total(p).Equivalent(g.c.f) {
+			t.Fatalf("%v/%v: the fractions do not add up", g.c.f.Num(), g.c.f.Den())
+		}
+	})
+}
+
+// TestTimeFunctionLaws: linearity in the transform, the shift by a dead time,
+// and the response as a product of transforms.
+func TestTimeFunctionLaws(t *testing.T) {
+	r := rand.New(rand.NewPCG(9, 10))
+	for range 20 {
+		g := Continuous{c: core{f: randomProper(r, 1+r.IntN(4))}}
+		h := Continuous{c: core{f: randomProper(r, 1+r.IntN(4))}}
+		f := Must(h.InverseLaplace())
+		f.signal = g.c.input
+		if y := Must(g.Response(f)); !y.transform().Equivalent(g.c.f.Mul(h.c.f)) {
+			t.Errorf("response of %v to %v is %v", g, f, y)
+		}
+		delayed := g
+		delayed.c.setDelay(big.NewRat(3, 4))
+		a, b := Must(g.InverseLaplace()), Must(delayed.InverseLaplace())
+		for _, x := range []float64{0.5, 0.75, 1, 3.25} {
+			want := 0.0
+			if x >= 0.75 {
+				want = Must(a.At(x - 0.75))
+			}
+			if got := Must(b.At(x)); got != want {
+				t.Errorf("%v at %v is %v, want %v", b, x, got, want)
+			}
+		}
+	}
+}
