@@ -296,14 +296,14 @@ func (f factor) coefficient(v ratpoly.Poly, x *algebraic.Number) (coefficient, e
 	negative := b.Sign() < 0 // the sign of b·(x − center)
 	if x.IsReal() {
 		// Of the two real roots the greater one is center + √square.
-		above, err := x.Enclosure(firstPrecision)
+		above, err := enclosure(x, firstPrecision)
 		for prec := uint(firstPrecision); err == nil; prec *= 2 {
 			s, ok := above.Re.Sub(ball.FromRat(center, prec), prec).Sign()
 			if ok {
 				negative = negative != (s < 0)
 				break
 			}
-			above, err = x.Enclosure(2 * prec)
+			above, err = enclosure(x, 2*prec)
 		}
 		if err != nil {
 			return coefficient{}, err

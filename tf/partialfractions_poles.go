@@ -94,7 +94,7 @@ func (e *expansion) principals(i int) ([]principal, error) {
 // derivative of the denominator from zero, the coefficients are indeterminate
 // and a higher rung decides.
 func (e *expansion) principal(root algebraic.Root, prec uint) (principal, error) {
-	pole, err := root.Number.Enclosure(prec)
+	pole, err := enclosure(root.Number, prec)
 	if err != nil {
 		return principal{}, fmt.Errorf("tf: poles: %w", err)
 	}
@@ -113,6 +113,22 @@ func (e *expansion) principal(root algebraic.Root, prec uint) (principal, error)
 		}
 	}
 	return principal{root: root.Number, pole: pole, coefficients: c, pair: !root.Number.IsReal()}, nil
+}
+
+// enclosure returns a ball around x whose components are known to prec bits
+// each, an exact zero exactly.
+func enclosure(x *algebraic.Number, prec uint) (ball.Complex, error) {
+	re, im, err := x.Rounded(prec + 2)
+	if err != nil {
+		return ball.Complex{}, err
+	}
+	around := func(mid *big.Float) ball.Real {
+		if mid.Sign() == 0 {
+			return ball.Real{}
+		}
+		return ball.NewReal(mid, new(big.Float).SetMantExp(big.NewFloat(1), mid.MantExp(nil)-int(prec)-2))
+	}
+	return ball.NewComplex(around(re), around(im)), nil
 }
 
 // factor is a factor of the denominator over ℚ: linear or quadratic, or what
@@ -181,7 +197,7 @@ func splitQuadratics(q intpoly.Poly, roots []*algebraic.Number) (found []factor,
 	var enclosures []ball.Complex
 	prec := uint(lead.BitLen() + 64)
 	for _, x := range roots {
-		b, err := x.Enclosure(prec + 2*exponentAbove(x.Value()))
+		b, err := enclosure(x, prec+2*exponentAbove(x.Value()))
 		if err != nil {
 			return nil, nil, q, fmt.Errorf("tf: rational factors: %w", err)
 		}

@@ -127,7 +127,7 @@ func TestPartialFractionsEnclosures(t *testing.T) {
 				if err != nil {
 					t.Fatal(err)
 				}
-				pole, err := f.roots[i].Enclosure(prec)
+				pole, err := enclosure(f.roots[i], prec)
 				if err != nil {
 					t.Fatal(err)
 				}

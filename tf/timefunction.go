@@ -12,13 +12,10 @@ import (
 	"github.com/qofs/qofs/units"
 )
 
-var (
-	// ErrImpulseDerivative: the function holds a derivative of an impulse,
-	// because its numerator has a higher degree than its denominator.
-	ErrImpulseDerivative = errors.New("the time function would hold a derivative of an impulse")
-	// ErrNoFinalValue: the function has no limit for t → ∞.
-	ErrNoFinalValue = errors.New("no final value")
-)
+// ErrImpulseDerivative: the time function would hold a derivative of an impulse,
+// because the numerator of its transform has a higher degree than the
+// denominator.
+var ErrImpulseDerivative = errors.New("the time function would hold a derivative of an impulse")
 
 // TimeFunction is a function of time t in seconds, closed in form: for t ≥ 0 a
 // sum of terms t^k·e^(σt)·cos(ωt) and t^k·e^(σt)·sin(ωt), and an impulse at
@@ -75,13 +72,16 @@ func newTimeFunction(f ratfun.Func, delay *big.Rat, signal units.Signal) (TimeFu
 }
 
 func ratfunConstant(c *big.Rat) ratfun.Func {
+	if c == nil {
+		return ratfun.Func{}
+	}
 	f, _ := ratfun.New(intpoly.FromBigs(c.Num()), intpoly.FromBigs(c.Denom()))
 	return f
 }
 
 // transform returns the exact Laplace transform without the dead time.
 func (f TimeFunction) transform() ratfun.Func {
-	g := ratfunConstant(f.Impulse())
+	g := ratfunConstant(f.impulse)
 	if f.e != nil {
 		h, _ := ratfun.New(f.e.num, f.e.den)
 		g = g.Add(h)
@@ -89,14 +89,11 @@ func (f TimeFunction) transform() ratfun.Func {
 	return g
 }
 
-// Impulse returns the weight of the impulse at t = 0, exactly; with a dead
-// time it falls at the end of it. Its unit is that of the function times
-// seconds. At and Sample do not show it.
-func (f TimeFunction) Impulse() *big.Rat {
-	if f.impulse == nil {
-		return new(big.Rat)
-	}
-	return new(big.Rat).Set(f.impulse)
+// Impulse returns the weight of the impulse at t = 0, exactly, in the unit of
+// the function times seconds; with a dead time it falls at the end of it. At and
+// Sample do not show it.
+func (f TimeFunction) Impulse() units.Quantity {
+	return units.NewQuantity(f.impulse, f.signal.Unit.Mul(second))
 }
 
 // DeadTime returns the time in seconds before which the function is 0.
@@ -141,40 +138,21 @@ func (f TimeFunction) At(t float64) (float64, error) {
 	return f.e.at(x)
 }
 
-// InitialValue returns the value just after t = 0, exactly: the limit of
-// s·F(s) for s → ∞ where F is the transform without its impulse, and 0 where
-// there is a dead time.
-func (f TimeFunction) InitialValue() *big.Rat {
-	if f.e == nil || f.delay != nil || f.e.num.Degree() < f.e.den.Degree()-1 {
-		return new(big.Rat)
+// InitialValue returns the value just after t = 0, exactly, in the unit of f:
+// the limit of s·F(s) for s → ∞ where F is the transform without its impulse,
+// and 0 where there is a dead time.
+func (f TimeFunction) InitialValue() units.Quantity {
+	v := new(big.Rat)
+	if f.e != nil && f.delay == nil {
+		v = f.e.initial()
 	}
-	return new(big.Rat).SetFrac(f.e.num.Leading(), f.e.den.Leading())
+	return units.NewQuantity(v, f.signal.Unit)
 }
 
-// FinalValue returns the limit for t → ∞, exactly. It exists where every pole
-// lies in the open left half plane, but for at most a simple pole at 0; else
-// the error is ErrNoFinalValue and names the pole.
-func (f TimeFunction) FinalValue() (*big.Rat, error) {
-	if f.e == nil {
-		return new(big.Rat), nil
-	}
-	for _, root := range f.e.roots {
-		x := root.Number
-		switch {
-		case x.IsZero() && root.Multiplicity > 1:
-			return nil, fmt.Errorf("tf: pole at 0 of multiplicity %d: %w", root.Multiplicity, ErrNoFinalValue)
-		case x.IsZero():
-		case x.IsImaginary():
-			return nil, fmt.Errorf("tf: pole %v on the imaginary axis: %w", x.Value(), ErrNoFinalValue)
-		case !math.Signbit(real(x.Value())):
-			return nil, fmt.Errorf("tf: pole %v in the right half plane: %w", x.Value(), ErrNoFinalValue)
-		}
-	}
-	if f.e.den.Sign(0) != 0 {
-		return new(big.Rat), nil
-	}
-	return new(big.Rat).SetFrac(f.e.num.Coefficient(0), f.e.den.Coefficient(1)), nil
-}
+// FinalValue returns the limit for t → ∞, exactly, in the unit of f. It exists
+// where every pole lies in the open left half plane, but for at most a simple
+// pole at 0; that is decided exactly, and else the error is a *NoLimitError.
+func (f TimeFunction) FinalValue() (units.Quantity, error) { return f.Laplace().FinalValue() }
 
 // Derivative returns df/dt, whose transform is s·F(s): a jump at t = 0 becomes
 // an impulse. The unit is that of f per second. The error is

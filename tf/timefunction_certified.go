@@ -124,10 +124,7 @@ func sumAt(parts []principal, t, shift ball.Real, prec uint) ball.Real {
 // polynomial in t, at t. Where t = 0 that is the initial value of the whole.
 func (e *expansion) polynomialAt(t *big.Rat) *big.Rat {
 	if t.Sign() == 0 {
-		if e.num.Degree() < e.den.Degree()-1 {
-			return new(big.Rat)
-		}
-		return new(big.Rat).SetFrac(e.num.Leading(), e.den.Leading())
+		return e.initial()
 	}
 	m := e.den.Valuation()
 	if m == 0 {
@@ -142,6 +139,14 @@ func (e *expansion) polynomialAt(t *big.Rat) *big.Rat {
 		v.Add(v, c[k])
 	}
 	return v
+}
+
+// initial returns the value just after t = 0.
+func (e *expansion) initial() *big.Rat {
+	if e.num.Degree() < e.den.Degree()-1 {
+		return new(big.Rat)
+	}
+	return new(big.Rat).SetFrac(e.num.Leading(), e.den.Leading())
 }
 
 // vanishesOffZero reports whether the polynomials in t that multiply e^(pt)

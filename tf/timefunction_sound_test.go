@@ -16,9 +16,9 @@ import (
 // double-double sum claims, whether or not it decides the rounding.
 func TestQuickStageIsSound(t *testing.T) {
 	r := rand.New(rand.NewPCG(7, 8))
-	functions, times := 150, 60
+	functions, times := 60, 60
 	if testing.Short() {
-		functions = 30
+		functions = 15
 	}
 	decided, total, limits := 0, 0, 0
 	tightest := math.Inf(1)

@@ -203,7 +203,7 @@ func TestLaplaceTable(t *testing.T) {
 // Sine S, t^k e^(σt)(C cos ωt + S sin ωt) becomes the real part, for real s, of
 // (C − jS)·k!·(s−σ+jω)^(k+1) over ((s−σ)² + ω²)^(k+1).
 func transformOfTerms(t *testing.T, f TimeFunction) (ratfun.Func, bool) {
-	sum := ratfunConstant(f.Impulse())
+	sum := ratfunConstant(f.impulse)
 	for _, term := range Must(f.Terms()) {
 		decay, frequency, cosine, sine := term.Exact()
 		if decay == nil || frequency == nil || cosine == nil || sine == nil {

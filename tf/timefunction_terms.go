@@ -100,14 +100,14 @@ type figure struct {
 
 func (t TimeTerm) decay() figure {
 	return figure{t.rate.re, t.Decay, func(prec uint) (ball.Real, error) {
-		z, err := t.root.Enclosure(prec)
+		z, err := enclosure(t.root, prec)
 		return z.Re, err
 	}}
 }
 
 func (t TimeTerm) frequency() figure {
 	return figure{t.rate.im, t.Frequency, func(prec uint) (ball.Real, error) {
-		z, err := t.root.Enclosure(prec)
+		z, err := enclosure(t.root, prec)
 		return z.Im, err
 	}}
 }

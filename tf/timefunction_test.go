@@ -110,15 +110,16 @@ func TestTimeFunctionLimits(t *testing.T) {
 		{whole(0), whole(1), "0", "0"},
 	} {
 		f := timeFunctionOf(t, c.num, c.den)
-		if got := f.InitialValue().RatString(); got != c.initial {
+		if got := f.InitialValue().Value().RatString(); got != c.initial {
 			t.Errorf("%v: initial value %v, want %v", f, got, c.initial)
 		}
 		got, err := f.FinalValue()
 		if c.final_ == "" {
-			if !errors.Is(err, ErrNoFinalValue) {
+			var none *NoLimitError
+			if !errors.As(err, &none) {
 				t.Errorf("%v: final value %v, %v", f, got, err)
 			}
-		} else if err != nil || got.RatString() != c.final_ {
+		} else if err != nil || got.Value().RatString() != c.final_ {
 			t.Errorf("%v: final value %v, %v, want %v", f, got, err, c.final_)
 		}
 	}

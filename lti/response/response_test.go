@@ -67,7 +67,7 @@ func TestSecondOrderStep(t *testing.T) {
 		if want := 1 + math.Exp(-math.Pi*zeta/root); err != nil || math.Abs(peak-want) > 1e-14 {
 			t.Errorf("ζ = %v: peak %v, %v, want %v", zeta, peak, err, want)
 		}
-		if final, err := f.FinalValue(); err != nil || final.RatString() != "1" {
+		if final, err := f.FinalValue(); err != nil || final.Value().RatString() != "1" {
 			t.Errorf("ζ = %v: final value %v, %v", zeta, final, err)
 		}
 	}
