@@ -66,7 +66,8 @@ const (
 type Token struct {
 	Kind   Kind
 	Text   string // as written (a superscript: translated to ASCII)
-	Offset int    // where it begins
+	Offset int    // where it begins, in bytes
+	Length int    // how many bytes it takes
 	Spaced bool   // white space came before it
 	value  *big.Rat
 }
@@ -177,6 +178,7 @@ func Tokens(text string) ([]Token, error) {
 				t.Text = "*"
 			}
 		}
+		t.Length = n
 		out = append(out, t)
 		spaced = false
 		i += n

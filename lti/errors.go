@@ -1,0 +1,80 @@
+package lti
+
+import (
+	"fmt"
+	"strings"
+
+	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/lex"
+)
+
+// ErrLimit: a documented bound on size or work was reached.
+var ErrLimit = fault.ErrLimit
+
+// SyntaxError tells what is wrong in a text and where.
+type SyntaxError = lex.SyntaxError
+
+// EquationError tells what is wrong in an equation.
+type EquationError struct {
+	Number   int    // of the equation in the order of entry, from 1
+	Equation string // as entered
+	Term     string // the part that is wrong, as entered
+	Offset   int    // byte offset of the term in the equation
+	Reason   string // what is wrong, and what to do
+	Err      error  // the error behind it, or nil
+}
+
+// Error names the equation, the term and the reason.
+func (e *EquationError) Error() string {
+	return fmt.Sprintf("equation %d, %q, at %q (offset %d): %s", e.Number, lex.Excerpt(e.Equation, e.Offset), lex.Excerpt(e.Term, 0), e.Offset, e.Reason)
+}
+
+// Unwrap returns the error behind the fault.
+func (e *EquationError) Unwrap() error { return e.Err }
+
+// DeclarationError tells what is wrong in the declaration of a signal or a
+// constant.
+type DeclarationError struct {
+	Kind   string // "signal" or "constant"
+	Name   string
+	Text   string // the unit or quantity as entered
+	Reason string
+	Err    error // the error behind it, or nil
+}
+
+// Error names the declaration and the reason.
+func (e *DeclarationError) Error() string {
+	return fmt.Sprintf("%s %s = %q: %s", e.Kind, lex.Excerpt(e.Name, 0), lex.Excerpt(e.Text, 0), e.Reason)
+}
+
+// Unwrap returns the error behind the fault.
+func (e *DeclarationError) Unwrap() error { return e.Err }
+
+// UnknownNameError tells that no signal or constant has a name.
+type UnknownNameError struct {
+	Kind string   // "signal" or "constant"
+	Name string   // what was asked for
+	Have []string // what there is
+}
+
+// Error lists the names that exist.
+func (e *UnknownNameError) Error() string {
+	have := e.Have
+	more := ""
+	if len(have) > 12 {
+		have, more = have[:12], ", …"
+	}
+	return fmt.Sprintf("no %s %q: there are %s%s", e.Kind, lex.Excerpt(e.Name, 0), strings.Join(have, ", "), more)
+}
+
+// DeterminacyError tells that a set of equations does not determine the signal
+// that was asked for: it is singular, or has too many or too few equations.
+type DeterminacyError struct {
+	Equations int      // how many there are
+	Unknowns  []string // the signals that are neither the input nor held at 0
+	Open      []string // those that are not determined, where that can be told
+	Reason    string
+}
+
+// Error says what is too many, too few or open, and what to do.
+func (e *DeterminacyError) Error() string { return e.Reason }

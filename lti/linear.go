@@ -1,0 +1,293 @@
+package lti
+
+import (
+	"fmt"
+	"math/big"
+	"slices"
+	"strings"
+
+	"github.com/qofs/qofs/units"
+)
+
+// value is what a part of an equation amounts to, in coherent units: a number
+// and a combination of signals and their derivatives.
+type value struct {
+	dimension units.Dimension // with the radian weightless
+	number    *big.Rat        // nil is 0
+	terms     map[derivative]*big.Rat
+	zero      bool // a literal 0, which has any dimension
+}
+
+// derivative is a signal by its index, and the order of its derivative.
+type derivative struct{ signal, order int }
+
+// evaluator turns the tree of one equation into a value. It goes on after a
+// fault, so that Build can report all of them.
+type evaluator struct {
+	number   int // of the equation, from 1
+	equation equation
+	system   *System
+	faults   []error
+}
+
+const (
+	nonlinear = "a transfer function holds only for equations that are linear in the signals; " +
+		"replace the term by its slope at an operating point (linearise)"
+	maxRatBits = 1 << 16 // of a number in an equation
+)
+
+func (e *evaluator) fail(n *node, format string, args ...any) (value, bool) {
+	return e.failWith(n, nil, format, args...)
+}
+
+func (e *evaluator) failWith(n *node, err error, format string, args ...any) (value, bool) {
+	e.faults = append(e.faults, &EquationError{Number: e.number, Equation: e.equation.text, Term: e.equation.text[n.from:n.to],
+		Offset: n.from, Reason: fmt.Sprintf(format, args...), Err: err})
+	return value{}, false
+}
+
+// evaluate returns what n amounts to; ok is false after a fault.
+func (e *evaluator) evaluate(n *node) (v value, ok bool) {
+	switch n.kind {
+	case isNumber:
+		r := n.number.Value()
+		return value{number: r, zero: r.Sign() == 0}, true
+	case isName:
+		return e.name(n)
+	case isCall:
+		return e.fail(n, "%s of a signal is not linear: %s", n.name, nonlinear)
+	case isNegative:
+		a, ok := e.evaluate(n.a)
+		return a.times(big.NewRat(-1, 1), units.Dimension{}), ok
+	case isSum, isDifference:
+		return e.sum(n)
+	case isProduct, isQuotient:
+		return e.product(n)
+	case isPower:
+		return e.power(n)
+	default:
+		return e.derivative(n)
+	}
+}
+
+func (e *evaluator) name(n *node) (value, bool) {
+	if i, ok := e.system.signalIndex(n.name); ok {
+		s := e.system.signals[i]
+		return value{dimension: s.Unit.Dimension().WithoutAngle(),
+			terms: map[derivative]*big.Rat{{i, 0}: big.NewRat(1, 1)}}, true
+	}
+	if i, ok := e.system.constantIndex(n.name); ok {
+		q := e.system.constants[i].Value
+		if symbol, cycles := q.Unit().Cycles(); cycles {
+			return e.failWith(n, nil, "the constant is in %s, which counts cycles or degrees; an equation needs radians: write %s", symbol, inRadians(q))
+		}
+		number := q.Value()
+		return value{dimension: q.Unit().Dimension().WithoutAngle(), number: number.Mul(number, q.Unit().Scale())}, true
+	}
+	return e.fail(n, "no signal or constant has this name; declared are %s", e.system.names())
+}
+
+// inRadians writes a quantity with cycles and degrees turned into radians, to
+// seven digits.
+func inRadians(q units.Quantity) string {
+	coherent, err := q.ConvertTo(q.Unit().Dimension().Unit())
+	if err != nil {
+		return "it in rad/s"
+	}
+	return fmt.Sprintf("%.7g", coherent)
+}
+
+// sum adds or subtracts; the dimensions must agree.
+func (e *evaluator) sum(n *node) (value, bool) {
+	a, okA := e.evaluate(n.a)
+	b, okB := e.evaluate(n.b)
+	if !okA || !okB {
+		return value{}, false
+	}
+	if n.kind == isDifference {
+		b = b.times(big.NewRat(-1, 1), units.Dimension{})
+	}
+	return e.add(n.b, a, b)
+}
+
+// add returns a + b; a fault of dimension is put at n, the part that b is.
+func (e *evaluator) add(n *node, a, b value) (value, bool) {
+	switch {
+	case a.zero:
+		return b, true
+	case b.zero:
+		return a, true
+	case a.dimension != b.dimension:
+		found, want := b.dimension.Unit(), a.dimension.Unit()
+		return e.failWith(n, &units.MismatchError{Found: found, Want: want},
+			"the term is in %s (in base units), the terms before it in %s", found, want)
+	}
+	sum := value{dimension: a.dimension, number: new(big.Rat).Add(a.rat(), b.rat()), terms: map[derivative]*big.Rat{}}
+	for _, v := range []value{a, b} {
+		for k, c := range v.terms {
+			if sum.terms[k] == nil {
+				sum.terms[k] = new(big.Rat)
+			}
+			sum.terms[k].Add(sum.terms[k], c)
+		}
+	}
+	return sum, true
+}
+
+func (v value) rat() *big.Rat {
+	if v.number == nil {
+		return new(big.Rat)
+	}
+	return v.number
+}
+
+// times returns v·k, with d as the dimension of k.
+func (v value) times(k *big.Rat, d units.Dimension) value {
+	out := value{dimension: v.dimension.Mul(d), number: new(big.Rat).Mul(v.rat(), k), zero: v.zero}
+	if len(v.terms) > 0 {
+		out.terms = make(map[derivative]*big.Rat, len(v.terms))
+		for t, c := range v.terms {
+			out.terms[t] = new(big.Rat).Mul(c, k)
+		}
+	}
+	return out
+}
+
+func (v value) isConstant() bool { return len(v.terms) == 0 }
+
+func (e *evaluator) product(n *node) (value, bool) {
+	a, okA := e.evaluate(n.a)
+	b, okB := e.evaluate(n.b)
+	if !okA || !okB {
+		return value{}, false
+	}
+	if n.kind == isQuotient {
+		switch {
+		case !b.isConstant():
+			return e.fail(n, "a division by a signal is not linear: %s", nonlinear)
+		case b.rat().Sign() == 0:
+			return e.fail(n.b, "a division by zero")
+		}
+		b = value{dimension: units.Dimension{}.Div(b.dimension), number: new(big.Rat).Inv(b.rat())}
+	}
+	if !a.isConstant() && !b.isConstant() {
+		return e.fail(n, "a product of signals is not linear: %s", nonlinear)
+	}
+	if a.isConstant() {
+		a, b = b, a
+	}
+	out := a.times(b.rat(), b.dimension)
+	out.zero = a.zero || b.zero
+	return e.bounded(n, out)
+}
+
+// bounded refuses numbers that have grown beyond all use.
+func (e *evaluator) bounded(n *node, v value) (value, bool) {
+	size := v.rat().Num().BitLen() + v.rat().Denom().BitLen()
+	for _, c := range v.terms {
+		size = max(size, c.Num().BitLen()+c.Denom().BitLen())
+	}
+	if size > maxRatBits {
+		return e.failWith(n, ErrLimit, "a number of more than %d bits", maxRatBits)
+	}
+	return v, true
+}
+
+func (e *evaluator) power(n *node) (value, bool) {
+	a, ok := e.evaluate(n.a)
+	if !ok {
+		return value{}, false
+	}
+	k := n.order
+	switch {
+	case k == 1:
+		return a, true
+	case !a.isConstant():
+		return e.fail(n, "a power of a signal is not linear: %s", nonlinear)
+	case a.rat().Sign() == 0 && k < 0:
+		return e.fail(n, "a negative power of zero")
+	case (a.rat().Num().BitLen()+a.rat().Denom().BitLen())*max(k, -k) > maxRatBits:
+		return e.failWith(n, ErrLimit, "a number of more than %d bits", maxRatBits)
+	}
+	factor := value{dimension: a.dimension, number: a.rat()}
+	if k < 0 {
+		factor = value{dimension: units.Dimension{}.Div(a.dimension), number: new(big.Rat).Inv(a.rat())}
+		k = -k
+	}
+	out := value{number: big.NewRat(1, 1)}
+	for range k {
+		out = out.times(factor.number, factor.dimension)
+	}
+	return out, true
+}
+
+func (e *evaluator) derivative(n *node) (value, bool) {
+	a, ok := e.evaluate(n.a)
+	if !ok {
+		return value{}, false
+	}
+	if a.isConstant() {
+		return e.fail(n, "the derivative of a constant; primes belong to signals")
+	}
+	out := value{dimension: a.dimension, terms: make(map[derivative]*big.Rat, len(a.terms))}
+	for range n.order {
+		out.dimension = out.dimension.Div(second)
+	}
+	for t, c := range a.terms {
+		t.order += n.order
+		if t.order > maxPrimes {
+			return e.failWith(n, ErrLimit, "a derivative of order %d: at most %d", t.order, maxPrimes)
+		}
+		out.terms[t] = c
+	}
+	return out, true
+}
+
+var second = units.MustParse("s").Dimension()
+
+// linear returns left − right of the equation as a combination of signals.
+func (e *evaluator) linear() (map[derivative]*big.Rat, bool) {
+	left, okLeft := e.evaluate(e.equation.left)
+	right, okRight := e.evaluate(e.equation.right)
+	if !okLeft || !okRight {
+		return nil, false
+	}
+	whole := &node{from: 0, to: len(e.equation.text)}
+	v, ok := e.add(e.equation.right, left, right.times(big.NewRat(-1, 1), units.Dimension{}))
+	if !ok {
+		return nil, false
+	}
+	if v.rat().Sign() != 0 {
+		e.fail(whole, "a constant stands alone as a term; a linear model holds deviations from an operating point, in which it drops out: leave it away")
+		return nil, false
+	}
+	for t, c := range v.terms {
+		if c.Sign() == 0 {
+			delete(v.terms, t)
+		}
+	}
+	if len(v.terms) == 0 {
+		e.fail(whole, "the equation says nothing about any signal")
+		return nil, false
+	}
+	return v.terms, true
+}
+
+// names lists what is declared, shortened.
+func (s *System) names() string {
+	var out []string
+	for _, x := range s.signals {
+		out = append(out, x.Name)
+	}
+	for _, x := range s.constants {
+		out = append(out, x.Name)
+	}
+	slices.Sort(out)
+	if len(out) > 12 {
+		out = append(out[:12], "…")
+	}
+	if len(out) == 0 {
+		return "none"
+	}
+	return strings.Join(out, ", ")
+}
