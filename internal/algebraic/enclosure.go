@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math/big"
 
+	"github.com/qofs/qofs/internal/ball"
 	"github.com/qofs/qofs/internal/fault"
 )
 
@@ -57,4 +58,29 @@ func (x *Number) Equal(y *Number) bool {
 		return same && err == nil
 	}
 	return false
+}
+
+// Enclosure returns a ball that contains the number, with a radius of at most
+// 2^-prec times its absolute value in each component. A component that is
+// exactly 0 is exact. What is enclosed is the same on every machine; the
+// midpoint need not be.
+func (x *Number) Enclosure(prec uint) (ball.Complex, error) {
+	if prec > MaxPrecision {
+		return ball.Complex{}, fmt.Errorf("enclosure of %d bits, at most %d: %w", prec, MaxPrecision, fault.ErrLimit)
+	}
+	d, err := x.disc(prec+2, &work{left: maxWork})
+	if err != nil {
+		return ball.Complex{}, err
+	}
+	var re, im ball.Real
+	if !x.imaginary {
+		re = ball.NewReal(exactFloat(&d.re, d.e), d.radius.float())
+	}
+	if !x.real {
+		im = ball.NewReal(exactFloat(&d.im, d.e), d.radius.float())
+	}
+	if x.below {
+		im = im.Neg()
+	}
+	return ball.NewComplex(re, im), nil
 }
