@@ -70,9 +70,6 @@ func TestAtReference(t *testing.T) {
 		t.Fatalf("%d cases, want 300", len(cases))
 	}
 	for _, c := range cases {
-		if c.g.c.delay != nil {
-			continue // until balls are there
-		}
 		got, err := c.g.At(c.point)
 		if math.IsInf(real(c.want), 0) || math.IsInf(imag(c.want), 0) {
 			if !errors.Is(err, ErrRange) {
@@ -82,6 +79,33 @@ func TestAtReference(t *testing.T) {
 		}
 		if err != nil || got != c.want {
 			t.Errorf("%v at %v: %v, %v, want %v", c.g, c.point, got, err, c.want)
+		}
+	}
+}
+
+// TestAtWithDeadTime takes exp(−j) from table 4.6 of Abramowitz & Stegun (cos 1
+// and sin 1), exp(−1) from table 4.4, and the ends of the range of a float64.
+func TestAtWithDeadTime(t *testing.T) {
+	delay := MustParse("exp(-s)")
+	for _, c := range []struct{ s, want complex128 }{
+		{1i, complex(0.5403023058681397174, -0.8414709848078965067)},
+		{-1i, complex(0.5403023058681397174, 0.8414709848078965067)},
+		{1, 0.36787944117144232160},
+		{0, 1},
+		{1e300, 0},
+		{complex(1e9, 3), 0},
+		{745, 5e-324},
+		{746, 0},
+		{complex(0, 1e300), complex(-0.5753861119575490466882, 0.8178819121159085970459)}, // mpmath at 3000 bits
+	} {
+		got, err := delay.At(c.s)
+		if err != nil || got != c.want {
+			t.Errorf("exp(-s) at %v: %v, %v, want %v", c.s, got, err, c.want)
+		}
+	}
+	for _, s := range []complex128{-710, -1e300, complex(-1e9, 1)} {
+		if got, err := delay.At(s); !errors.Is(err, ErrRange) {
+			t.Errorf("exp(-s) at %v: %v, %v, want ErrRange", s, got, err)
 		}
 	}
 }
