@@ -2,6 +2,7 @@ package tf
 
 import (
 	"bufio"
+	"fmt"
 	"math"
 	"math/big"
 	"math/rand/v2"
@@ -178,4 +179,49 @@ func randomProper(r *rand.Rand, n int) ratfun.Func {
 	f, _ := ratfun.New(ratpoly.Poly(poly.FromInts(c...)).Integer(), ratpoly.Poly(den).Integer())
 	f, _ = f.LowestTerms()
 	return f
+}
+
+func TestPartialFractionsText(t *testing.T) {
+	for _, c := range []struct{ g, want, poles string }{
+		{"0", "0", "0"},
+		{"s^2 + 1", "s^2 + 1", "s^2 + 1"},
+		{"1/(s (s + 3))", "-1/(3 (s + 3)) + 1/(3 s)", "-0.333333/(s + 3) + 0.333333/s"},
+		{"(s^3 + 2)/(s + 1)^2", "s - 2 + 3/(s + 1) + 1/(s + 1)^2", "s - 2 + 3/(s + 1) + 1/(s + 1)^2"},
+		{"(s + 7)/((s^2 + 2 s + 5) (s + 2))", "1/(s + 2) - (s - 1)/(s^2 + 2 s + 5)", ""},
+		{"1.12/(1493 s + 1)", "1.12/(1493 s + 1)", "0.000750167/(s + 0.000669792)"},
+		{"1/(s^4 + s + 1)", "1/(s^4 + s + 1)", ""},
+		{"(s + 1)/(s^2 + 4)", "(s + 1)/(s^2 + 4)", "(0.5 - 0.25j)/(s - 2j) + (0.5 + 0.25j)/(s + 2j)"},
+		{"2/(s^2 + 1)", "2/(s^2 + 1)", "-j/(s - j) + j/(s + j)"},
+	} {
+		g := MustParse(c.g)
+		p := Must(g.PartialFractions())
+		if got := p.String(); got != c.want {
+			t.Errorf("%s: %q, want %q", c.g, got, c.want)
+		}
+		if got := fmt.Sprintf("%g", p); c.poles != "" && got != c.poles {
+			t.Errorf("%s over the poles: %q, want %q", c.g, got, c.poles)
+		}
+		if back, err := Parse(p.String()); err != nil || !back.Equivalent(g) {
+			t.Errorf("%q does not read back as %s: %v", p, c.g, err)
+		}
+	}
+}
+
+// TestExactResidues: D'/D has the residue 1 at every pole of an irreducible D,
+// and (1 + 2^−53)·D'/D the tie between two float64.
+func TestExactResidues(t *testing.T) {
+	for _, den := range []string{"s^3 + s + 1", "s^4 + 2 s^3 + 3 s + 7", "s^5 - s - 1", "s^6 + s + 3"} {
+		d := poly.MustParse(den)
+		for _, scale := range []*big.Rat{big.NewRat(1, 1), big.NewRat(1<<53+1, 1<<53)} {
+			p := Must(Must(New(d.Derivative().Scale(scale), d)).PartialFractions())
+			if len(p.Terms()) != d.Degree() {
+				t.Fatalf("%s: %d terms", den, len(p.Terms()))
+			}
+			for _, term := range p.Terms() {
+				if term.Coefficient != 1 {
+					t.Errorf("%s: residue %v at %v, want 1", den, term.Coefficient, term.Pole)
+				}
+			}
+		}
+	}
 }

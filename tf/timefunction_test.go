@@ -50,7 +50,7 @@ func TestTimeFunctionText(t *testing.T) {
 	}
 	f := timeFunctionOf(t, whole(1), whole(0, 3, 1))
 	f.signal.Unit = units.Unit{}
-	if got := fmt.Sprintf("%.3v|%30.2s|%-20.1v|%d", f, f, f, f); got != "0.333 − 0.333 e^(−3 t)|          0.33 − 0.33 e^(−3 t)|0.3 − 0.3 e^(−3 t)  |%!d(tf.TimeFunction=1/3 − 1/3 e^(−3 t))" {
+	if got := fmt.Sprintf("%.3g|%g|%s|%d", f, f, f, f); got != "0.333 − 0.333 e^(−3 t)|0.333333 − 0.333333 e^(−3 t)|1/3 − 1/3 e^(−3 t)|%!d(tf.TimeFunction=1/3 − 1/3 e^(−3 t))" {
 		t.Errorf("formats: %q", got)
 	}
 }

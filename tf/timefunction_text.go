@@ -19,30 +19,26 @@ import (
 // dead time of 180 s as in 1 − e^(−0.1 (t − 180)) for t ≥ 180.
 func (f TimeFunction) String() string { return f.text(0) }
 
-// Format prints the function: %v and %s as String does, %.4v and %.4s with
-// every number rounded to 4 significant digits (1 to 100 can be asked for),
-// each of them correct.
+// Format prints the function by a verb:
+//
+//	%v, %s  as String does
+//	%g      with every number rounded to six significant digits, or to the
+//	        precision given (%.4g), each digit correct
 func (f TimeFunction) Format(state fmt.State, verb rune) {
-	if verb != 'v' && verb != 's' {
+	digits := 0
+	switch verb {
+	case 'v', 's':
+	case 'g':
+		var ok bool
+		if digits, ok = state.Precision(); !ok {
+			digits = plainDigits
+		}
+		digits = min(max(digits, 1), 100)
+	default:
 		fmt.Fprintf(state, "%%!%c(tf.TimeFunction=%s)", verb, f.text(0))
 		return
 	}
-	digits, ok := state.Precision()
-	if !ok {
-		digits = 0
-	} else {
-		digits = min(max(digits, 1), 100)
-	}
-	text := f.text(digits)
-	if width, ok := state.Width(); ok {
-		pad := strings.Repeat(" ", max(0, width-len([]rune(text))))
-		if state.Flag('-') {
-			text += pad
-		} else {
-			text = pad + text
-		}
-	}
-	fmt.Fprint(state, text)
+	fmt.Fprint(state, f.text(digits))
 }
 
 func (f TimeFunction) text(digits int) string {
