@@ -246,8 +246,11 @@ func (x Real) sqrtClipped(prec uint) Real {
 	if s, ok := x.Sign(); ok && s >= 0 || !x.IsFinite() {
 		return x.Sqrt(prec)
 	}
-	top := FromFloat(makeUpper(x)).sqrtPositive(64)
-	return hull(new(big.Float), makeUpper(top), 64)
+	top := FromFloat(makeUpper(x))
+	if !top.IsFinite() || top.mid == nil {
+		return top
+	}
+	return hull(new(big.Float), makeUpper(top.sqrtPositive(64)), 64)
 }
 
 func (x Real) sqrtPositive(prec uint) Real {
