@@ -6,6 +6,7 @@
 // 2^-450 and 2^450 (or exactly 0). Outside, results may be NaN or inexact, never
 // a panic. Products use math.FMA and no other product is added to anything
 // without an explicit rounding, so that every machine computes the same bits.
+// Who fills a DD with a product of his own writes DD{Hi: float64(a * b)}.
 //
 // The algorithms and bounds are those of M. Joldes, J.-M. Muller and
 // V. Popescu, Tight and rigorous error bounds for basic building blocks of
@@ -24,10 +25,14 @@ const (
 )
 
 // From returns v exactly.
-func From(v float64) DD { return DD{Hi: v} }
+func From(v float64) DD { return DD{Hi: float64(v)} }
 
 // TwoSum returns a + b exactly as s + e (Knuth, Møller).
+//
+// The conversions keep a product in the caller's argument from being fused
+// into the additions when the call is inlined.
 func TwoSum(a, b float64) DD {
+	a, b = float64(a), float64(b)
 	s := a + b
 	bb := s - a
 	return DD{s, (a - (s - bb)) + (b - bb)}
@@ -35,6 +40,7 @@ func TwoSum(a, b float64) DD {
 
 // fastTwoSum is TwoSum for |a| ≥ |b| or a = 0 (Dekker).
 func fastTwoSum(a, b float64) DD {
+	a, b = float64(a), float64(b)
 	s := a + b
 	return DD{s, b - (s - a)}
 }
@@ -157,8 +163,9 @@ func Horner(c []DD, z Complex) (v Complex, bound float64) {
 	if len(c) == 0 {
 		return Complex{}, 0
 	}
-	r := math.Hypot(z.Re.Hi, z.Im.Hi)
-	r += float64(r * 0x1p-50) // over Lo and the rounding of Hypot
+	// math.Hypot has other last bits on other machines.
+	r := math.Sqrt(float64(z.Re.Hi*z.Re.Hi) + float64(z.Im.Hi*z.Im.Hi))
+	r += float64(r * 0x1p-50) // over Lo and three roundings
 	n := len(c) - 1
 	v.Re = c[n]
 	s := math.Abs(c[n].Hi)

@@ -149,6 +149,27 @@ func TestHornerBound(t *testing.T) {
 	}
 }
 
+// Sums and products of floats in the documented range are exact.
+func FuzzErrorFree(f *testing.F) {
+	f.Add(1.0, 0x1p-53)
+	f.Add(-1e100, 3.7)
+	f.Fuzz(func(t *testing.T, a, b float64) {
+		for _, v := range []float64{a, b} {
+			if m := math.Abs(v); !(m >= MinMagnitude && m <= MaxMagnitude) {
+				t.Skip()
+			}
+		}
+		x, y := exact(From(a)), exact(From(b))
+		wide := func() *big.Float { return new(big.Float).SetPrec(2200) }
+		if exact(TwoSum(a, b)).Cmp(wide().Add(x, y)) != 0 {
+			t.Errorf("TwoSum(%g, %g) = %v", a, b, TwoSum(a, b))
+		}
+		if exact(TwoProduct(a, b)).Cmp(wide().Mul(x, y)) != 0 {
+			t.Errorf("TwoProduct(%g, %g) = %v", a, b, TwoProduct(a, b))
+		}
+	})
+}
+
 var sinkDD DD
 
 func BenchmarkAdd(b *testing.B) {
