@@ -3,6 +3,7 @@ package ball
 import (
 	"fmt"
 	"math"
+	"math/big"
 
 	"github.com/qofs/qofs/internal/fault"
 )
@@ -22,8 +23,29 @@ func (x Real) Float64() (v float64, ok bool) {
 		v, _ = x.mid.Float64()
 		return v + 0, !math.IsInf(v, 0)
 	}
+	if v, ok = x.clearFloat64(); ok {
+		return v, true
+	}
 	lo, hi := x.ends()
 	return hi + 0, lo == hi && !math.IsInf(lo, 0)
+}
+
+// clearFloat64 decides the common case without forming the ends: v, the
+// float64 nearest to the midpoint, is neither near the ends of the exponent
+// range nor a power of two (below which the neighbours are closer), and the
+// whole ball is strictly within half a unit of the last place around it.
+func (x Real) clearFloat64() (v float64, ok bool) {
+	if x.mid == nil {
+		return 0, false
+	}
+	v, _ = x.mid.Float64()
+	f, e := math.Frexp(v)
+	if v == 0 || e < -900 || e > 1000 || f == 0.5 || f == -0.5 || x.rad.exponent() > e-54 {
+		return 0, false
+	}
+	rest := new(big.Float).SetPrec(64).SetMode(big.AwayFromZero)
+	rest.Sub(x.mid, new(big.Float).SetFloat64(v))
+	return v, magUp(rest).add(x.rad).cmp(magPow2(e-54)) < 0
 }
 
 func (x Real) ends() (lo, hi float64) {

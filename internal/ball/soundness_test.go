@@ -164,6 +164,43 @@ func TestFloat64(t *testing.T) {
 	}
 }
 
+// The quick decision of Float64 agrees with the ends wherever it decides.
+func TestFloat64AgreesWithEnds(t *testing.T) {
+	r := rand.New(rand.NewPCG(9, 10))
+	decided, refused := 0, 0
+	for range 20000 {
+		m := math.Ldexp(float64(r.Uint64()>>11), r.IntN(1900)-1000)
+		x := FromFloat64(m).Add(FromFloat64(m*math.Ldexp(float64(r.IntN(5)-2), -54)), 200)
+		x = x.Add(FromFloat64(m*(r.Float64()-0.5)*math.Ldexp(1, -r.IntN(90))), 200)
+		x = x.widen(magUp(big.NewFloat(m)).mulPow2(-50 - r.IntN(60)))
+		v, ok := x.clearFloat64()
+		if !ok {
+			refused++
+			continue
+		}
+		decided++
+		if lo, hi := x.ends(); lo != hi || v != lo {
+			t.Fatalf("%v rounds to %g, its ends to %g and %g", x, v, lo, hi)
+		}
+	}
+	if decided < 2000 || refused < 2000 {
+		t.Errorf("%d decided, %d refused", decided, refused)
+	}
+}
+
+// The float64 starting values are as good as their comments say.
+func TestApproximations(t *testing.T) {
+	for i := range 1000 {
+		f, a := 0.7+0.72*float64(i)/999, float64(i)/999
+		if f != 1 && math.Abs(logApproximation(f)-math.Log(f)) > 0x1p-40 {
+			t.Errorf("log %g", f)
+		}
+		if math.Abs(atanApproximation(a)-math.Atan(a)) > 0x1p-40 {
+			t.Errorf("atan %g", a)
+		}
+	}
+}
+
 func TestRound(t *testing.T) {
 	v, err := Round(64, 4096, func(p uint) (Real, error) { // cos 1e-60 - 1 needs 400 bits
 		return FromFloat64(1e-60).Cos(p).Sub(FromInt64(1), p), nil
