@@ -3,6 +3,7 @@ package tf
 import (
 	"fmt"
 	"math"
+	"sync"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
@@ -33,9 +34,12 @@ type frequencyFunction struct {
 	fast *axisRatio // nil where float64 does not reach, and with dead time
 
 	isReal, isImaginary bool // of the rational part, for all ω
+
+	delayShape func() delayShape           // see GroupDelay; computed once
+	angles     func() (*rootAngles, error) // see Phase; computed once
 }
 
-var zeroOnAxis = &frequencyFunction{isReal: true, isImaginary: true}
+var zeroOnAxis = Continuous{}.FrequencyFunction().p
 
 // data is what f points to.
 func (f FrequencyFunction) data() *frequencyFunction {
@@ -56,6 +60,8 @@ func (g Continuous) FrequencyFunction() FrequencyFunction {
 	e2, o2 := g.c.f.Den().EvenOdd()
 	f.isReal = o.Mul(e2).Equal(e.Mul(o2))
 	f.isImaginary = e.Mul(e2).Equal(o.Mul(o2).Mul(intpoly.FromInt64s(0, 1)))
+	f.delayShape = sync.OnceValue(f.newDelayShape)
+	f.angles = sync.OnceValues(f.newRootAngles)
 	return FrequencyFunction{p: f}
 }
 

@@ -156,15 +156,8 @@ func pair(a, aLow, c, cLow, b, bLow, d, dLow float64) (high, low float64) {
 // 2^−1060, and bound·size is above 2^−360; where |w| > 1, size is at least
 // 2^−axisSpan·|w|^(m−1), and 2^−1060·|w|^(m−1) is again far below bound·size.
 func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
-	x := math.Abs(omega)
-	if !(x >= minSize && x <= maxSize) {
-		return 0, false, false
-	}
-	w := float64(omega * omega)
-	wl := -math.FMA(omega, omega, -w)
-	a := evaluate(r.num, omega, -w, wl)
-	b := evaluate(r.den, omega, -w, wl)
-	if !(a.size >= minSize && a.size <= maxSize && b.size >= minSize && b.size <= maxSize) {
+	a, b, ok := r.parts(omega)
+	if !ok {
 		return 0, false, false
 	}
 	norm, normLow := pair(b.re, b.reLow, b.re, b.reLow, b.im, b.imLow, b.im, b.imLow)
@@ -176,21 +169,62 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	re, reLow := pair(a.re, a.reLow, b.re, b.reLow, a.im, a.imLow, b.im, b.imLow)
 	im, imLow := pair(a.im, a.imLow, b.re, b.reLow, -a.re, -a.reLow, b.im, b.imLow)
 	inverse := 1 / norm
-	x, reOK = roundPair(re, reLow, norm, normLow, inverse, errNum, errNorm)
+	x, reOK := roundPair(re, reLow, norm, normLow, inverse, errNum, errNorm)
 	y, imOK := roundPair(im, imLow, norm, normLow, inverse, errNum, errNorm)
 	return complex(x*r.factor, y*r.factor), reOK, imOK
 }
 
-// roundPair divides n by d and tells whether the rounding is certain. inverse
-// is 1/d to a few units in the last place.
-func roundPair(n, nLow, d, dLow, inverse, errNum, errDen float64) (q float64, ok bool) {
-	q1 := float64(n * inverse)
-	// q1 is off by 5 u at most, so that rest is at most 5 u·|n| and its rounding,
-	// that of the correction and that of q2 are below 32 u² of the quotient.
-	rest := math.FMA(-q1, d, n)
-	q2 := (rest + math.FMA(-q1, dLow, nLow)) * inverse
-	high, low := twoSum(q1, q2)
+// parts evaluates numerator and denominator; ok is false where the error bound
+// does not hold.
+func (r *axisRatio) parts(omega float64) (a, b axisValue, ok bool) {
+	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
+		return a, b, false
+	}
+	w := float64(omega * omega)
+	wl := -math.FMA(omega, omega, -w)
+	a = evaluate(r.num, omega, -w, wl)
+	b = evaluate(r.den, omega, -w, wl)
+	return a, b, a.size >= minSize && a.size <= maxSize && b.size >= minSize && b.size <= maxSize
+}
+
+// magnitude returns the absolute value at jω; ok tells that it is certainly
+// correctly rounded. The error of the ratio of squares is that of value, and a
+// square root halves it.
+func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
+	a, b, ok := r.parts(omega)
+	if !ok {
+		return 0, false
+	}
+	above, aboveLow := pair(a.re, a.reLow, a.re, a.reLow, a.im, a.imLow, a.im, a.imLow)
+	below, belowLow := pair(b.re, b.reLow, b.re, b.reLow, b.im, b.imLow, b.im, b.imLow)
+	errAbove, errBelow := r.bound*a.size*a.size, r.bound*b.size*b.size
+	if !(errAbove <= 0x1p-20*above && errBelow <= 0x1p-20*below) {
+		return 0, false
+	}
+	square, squareLow, off := dividePair(above, aboveLow, below, belowLow, 1/below, errAbove, errBelow)
+	root := math.Sqrt(square)
+	// root² + rest = square + squareLow up to u² square: one step of Newton's
+	rest := math.FMA(-root, root, square) + squareLow
+	high, low := twoSum(root, rest/(2*root))
+	off = float64(0.51*off/root) + float64(0x1p-101*high)
+	return high * r.factor, high == high+(low+off) && high == high+(low-off) && high > 0x1p-200
+}
+
+// dividePair divides n by d into the sum of two float64 that is at most off from
+// the quotient. inverse is 1/d to a few units in the last place.
+func dividePair(n, nLow, d, dLow, inverse, errNum, errDen float64) (high, low, off float64) {
+	q := float64(n * inverse)
+	// q is off by 5 u at most, so that rest is at most 5 u·|n| and its rounding,
+	// that of the correction and that of the last product are below 32 u² of
+	// the quotient.
+	rest := math.FMA(-q, d, n)
+	high, low = twoSum(q, (rest+math.FMA(-q, dLow, nLow))*inverse)
 	size := math.Abs(high)
-	off := 1.02*inverse*math.FMA(size, errDen, errNum) + 0x1p-101*size
-	return high, high == high+(low+off) && high == high+(low-off) && size > 0x1p-200
+	return high, low, float64(1.02*inverse*math.FMA(size, errDen, errNum)) + float64(0x1p-101*size)
+}
+
+// roundPair divides n by d and tells whether the rounding is certain.
+func roundPair(n, nLow, d, dLow, inverse, errNum, errDen float64) (q float64, ok bool) {
+	high, low, off := dividePair(n, nLow, d, dLow, inverse, errNum, errDen)
+	return high, high == high+(low+off) && high == high+(low-off) && math.Abs(high) > 0x1p-200
 }

@@ -16,7 +16,7 @@ type SyntaxError = lex.SyntaxError
 
 // Parse reads a transfer function in s:
 //
-//	[exp(-T s)] ratio ["[" signal -> signal "]"]
+//	[exp(-T s) [* | /]] ratio ["[" signal -> signal "]"]
 //
 //	(2 s + 1)/(s^2 + 0.4 s + 9) [V -> mm]
 //	exp(-180 s) 8/(15 s + 1) [level: m -> reading: mA]
@@ -129,7 +129,7 @@ func (r *reader) fault(t lex.Token, want string, err error) error {
 	return lex.Fault(r.text, t.Offset, t.Describe(), want, err)
 }
 
-// delay reads exp(−T s) and an optional sign of multiplication.
+// delay reads exp(−T s) and an optional sign of multiplication or division.
 func (r *reader) delay(c *core) error {
 	const want = "a dead time as exp(-T s), T a number of seconds"
 	if r.variable != "s" {
@@ -154,8 +154,16 @@ func (r *reader) delay(c *core) error {
 		return r.fault(r.tokens[0], "a closing parenthesis", nil)
 	}
 	r.tokens = r.tokens[1:]
-	if r.tokens[0].Is("*") {
+	switch {
+	case r.tokens[0].Is("*"):
 		r.tokens = r.tokens[1:]
+	case r.tokens[0].Is("/"): // exp(-T s)/(s + 1) is exp(-T s) 1/(s + 1)
+		one, err := lex.Tokens("1")
+		if err != nil {
+			return err
+		}
+		one[0].Offset = r.tokens[0].Offset
+		r.tokens = append(one[:1:1], r.tokens...)
 	}
 	t := new(big.Rat).SetFrac(num.Coefficient(1), f.Den().Coefficient(0))
 	c.setDelay(t.Neg(t))

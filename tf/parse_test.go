@@ -27,6 +27,7 @@ func TestParse(t *testing.T) {
 		{"(s + 1)/(s + 1)", Must(New(ints(1, 1), ints(1, 1)))},
 		{"s² → 1", Continuous{}},
 		{"exp(-1/3 s)", Must(MustParse("1").WithDeadTime(sec("1/3")))},
+		{"exp(-0.5 s)/(s + 1)", Must(MustParse("1/(s + 1)").WithDeadTime(sec("1/2")))},
 		{"exp(-0.5*s)*(-s)", Must(MustParse("-s").WithDeadTime(sec("1/2")))},
 		{"1/s^2 [1→rad]", pair(MustParse("s^-2"), "1", "rad")},
 		{"  5e-3  ", Must(New(ints(1), ints(200)))},

@@ -101,14 +101,14 @@ func valueAt(c *core, s complex128, variable string) (complex128, error) {
 	if math.IsNaN(x-x) || math.IsNaN(y-y) {
 		return 0, fmt.Errorf("tf: value at %s = %v: %w", variable, s, fault.ErrNotFinite)
 	}
-	q, err := quotientAt(c.f, dyadicPoint(x, y))
+	v, err := sidesAt(c.f, dyadicPoint(x, y))
 	if err != nil {
 		return 0, err
 	}
-	if q.below.Sign() == 0 {
-		return 0, &PoleError{Operation: "At", Variable: variable, Point: fmt.Sprint(s),
-			Shared: q.re.Sign() == 0 && q.im.Sign() == 0}
+	if v.isPole() {
+		return 0, &PoleError{Operation: "At", Variable: variable, Point: fmt.Sprint(s), Shared: v.isZero()}
 	}
+	q := v.quotient()
 	if c.delay != nil && s != 0 {
 		return q.delayed(c.delay, x, y)
 	}
@@ -176,30 +176,43 @@ type complexQuotient struct {
 	exponent      int
 }
 
-// quotientAt evaluates f exactly. Where the denominator is 0, below is 0 and
-// re + im·i is a multiple of the numerator.
-func quotientAt(f ratfun.Func, s point) (q complexQuotient, err error) {
+// sides are numerator and denominator at a point: (a + b·i)/(c + d·i)·2^exponent.
+type sides struct {
+	a, b, c, d *big.Int
+	exponent   int
+}
+
+// sidesAt evaluates numerator and denominator exactly.
+func sidesAt(f ratfun.Func, s point) (v sides, err error) {
 	num, den := f.Num(), f.Den()
 	n, m := max(0, num.Degree()), den.Degree()
 	if bits := max(n, m) * max(s.re.BitLen(), s.im.BitLen(), int(s.shift)); bits > maxPointBits {
-		return q, fmt.Errorf("tf: value at a point: degree times bits of the point is %d, at most %d: %w", bits, maxPointBits, fault.ErrLimit)
+		return v, fmt.Errorf("tf: value at a point: degree times bits of the point is %d, at most %d: %w", bits, maxPointBits, fault.ErrLimit)
 	}
-	a, b := s.polynomialAt(num)
-	c, d := s.polynomialAt(den)
-	if c.Sign() == 0 && d.Sign() == 0 {
-		return complexQuotient{re: a, im: b, below: new(big.Int)}, nil
-	}
-	var t big.Int
-	product := func(x, y, z, w *big.Int) *big.Int { // x·y + z·w
-		r := new(big.Int).Mul(x, y)
-		return r.Add(r, t.Mul(z, w))
-	}
+	v.a, v.b = s.polynomialAt(num)
+	v.c, v.d = s.polynomialAt(den)
+	v.exponent = int(s.shift) * (m - n)
+	return v, nil
+}
+
+// isZero and isPole tell that the numerator, and the denominator, is 0.
+func (v *sides) isZero() bool { return v.a.Sign() == 0 && v.b.Sign() == 0 }
+func (v *sides) isPole() bool { return v.c.Sign() == 0 && v.d.Sign() == 0 }
+
+// quotient divides; the denominator is not 0.
+func (v *sides) quotient() complexQuotient {
 	return complexQuotient{
-		re:       product(a, c, b, d),
-		im:       product(b, c, new(big.Int).Neg(a), d),
-		below:    product(c, c, d, d),
-		exponent: int(s.shift) * (m - n),
-	}, nil
+		re:       products(v.a, v.c, v.b, v.d),
+		im:       products(v.b, v.c, new(big.Int).Neg(v.a), v.d),
+		below:    products(v.c, v.c, v.d, v.d),
+		exponent: v.exponent,
+	}
+}
+
+// products is x·y + z·w.
+func products(x, y, z, w *big.Int) *big.Int {
+	r := new(big.Int).Mul(x, y)
+	return r.Add(r, new(big.Int).Mul(z, w))
 }
 
 // roundQuotient returns a/b·2^e, b > 0, rounded once to the nearest float64.
