@@ -272,23 +272,15 @@ func (x Real) sqrtPositive(prec uint) Real {
 	return settle(s, rad.add(err))
 }
 
-// sqrtFloat returns √x for x > 0 (x = 0 gives nil) and a bound of the error.
+// sqrtFloat returns √x for x > 0 (x ≤ 0 gives nil) and a bound of the error,
+// taken from the residual: |s - √x| = |s² - x|/(s + √x) ≤ |s² - x|/s. It asks
+// nothing of how s was found.
 func sqrtFloat(x *big.Float, prec uint) (*big.Float, mag) {
 	if x.Sign() <= 0 {
 		return nil, mag{}
 	}
-	// n = ⌊x·4^k⌋ with at least 2(prec+1) bits; s = ⌊√n⌋ has prec+1 or more,
-	// and √(x·4^k) is within one unit of s, or equal if nothing was cut.
-	e := x.MantExp(nil)
-	shift := 2*int(prec+2) - e
-	shift += shift & 1
-	scaled := new(big.Float).SetMantExp(x, shift)
-	n, acc := scaled.Int(nil)
-	s := new(big.Int).Sqrt(n)
-	err := mag{}
-	if acc != big.Exact || new(big.Int).Mul(s, s).Cmp(n) != 0 {
-		err = magPow2(-shift / 2)
-	}
-	z, cut := fromFixed(s, shift/2, prec)
-	return z, err.add(cut)
+	s := new(big.Float).SetPrec(prec).Sqrt(x)
+	square := new(big.Float).SetPrec(2*prec).Mul(s, s) // exact
+	rest := new(big.Float).SetPrec(64).SetMode(big.AwayFromZero).Sub(square, x)
+	return s, magUp(rest).div(magDown(s))
 }

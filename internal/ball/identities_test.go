@@ -24,7 +24,7 @@ func TestQuickIdentities(t *testing.T) {
 			x := FromFloat64(v)
 			s, c := x.SinCos(prec)
 			check(t, "s2+c2", v, s.Sqr(prec).Add(c.Sqr(prec), prec), FromInt64(1), prec-8)
-			check(t, "atan2", v, Atan2(s, c, prec).SinOf(prec), s, prec-12)
+			check(t, "atan2", v, Atan2(s, c, prec).Sin(prec), s, prec-12)
 			if v > 0 {
 				check(t, "exp(log)", v, x.Log(prec+10).Exp(prec), x, prec-16)
 			}
@@ -36,8 +36,6 @@ func TestQuickIdentities(t *testing.T) {
 	}
 }
 
-func (x Real) SinOf(prec uint) Real { return x.Sin(prec) }
-
 func check(t *testing.T, what string, v float64, got, want Real, bits uint) {
 	t.Helper()
 	d := got.Sub(want, 4000)
@@ -46,5 +44,16 @@ func check(t *testing.T, what string, v float64, got, want Real, bits uint) {
 	}
 	if got.RelativeBits() < int(bits) {
 		t.Errorf("%s of %g: %d bits, want %d", what, v, got.RelativeBits(), bits)
+	}
+}
+
+// Perfect squares have exact roots.
+func TestPerfectSquares(t *testing.T) {
+	for n := int64(1); n < 3000; n++ {
+		for _, prec := range []uint{64, 200} {
+			if s := FromInt64(n * n).Sqrt(prec); !s.IsExact() || s.mid.Cmp(FromInt64(n).mid) != 0 {
+				t.Errorf("√%d² = %v", n, s)
+			}
+		}
 	}
 }
