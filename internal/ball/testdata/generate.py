@@ -1,8 +1,8 @@
 """Writes functions.txt: reference values of elementary functions from mpmath,
 to 1200 bits. Usage: python3 generate.py OUTDIR
 
-A line holds the function, the arguments as MANTISSA*2^EXPONENT in decimal and
-hexadecimal-free form "m:e", and the value as "m:e" with a mantissa of 1200 bits.
+A line holds the function, its arguments and its value; a number m * 2^e is
+written "m:e" in decimal, the value with a mantissa of 1200 bits.
 """
 import os
 import sys
