@@ -1,8 +1,10 @@
 package tf
 
 import (
+	"errors"
 	"fmt"
 	"math/big"
+	"strings"
 	"testing"
 
 	"github.com/qofs/qofs/poly"
@@ -85,6 +87,41 @@ func BenchmarkTimeFunctionSetup(b *testing.B) {
 				}
 				if _, err := f.At(1); err != nil {
 					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+// BenchmarkTimeResponseFamilies: one op is one At at the points of a family of
+// testdata/timefunction.txt, ugly inputs included.
+func BenchmarkTimeResponseFamilies(b *testing.B) {
+	families := map[string][]referenceFunction{}
+	var order []string
+	for _, c := range readReference(b) {
+		if families[c.family] == nil {
+			order = append(order, c.family)
+		}
+		families[c.family] = append(families[c.family], c)
+	}
+	for _, family := range order {
+		var functions []TimeFunction
+		var times []float64
+		for _, c := range families[family] {
+			f := timeFunctionOf(b, c.num, c.den)
+			for _, t := range c.t {
+				functions, times = append(functions, f), append(times, t)
+				if _, err := f.At(t); err != nil && !errors.Is(err, ErrRange) {
+					b.Fatal(err)
+				}
+			}
+		}
+		b.Run(strings.ReplaceAll(family, " ", "-"), func(b *testing.B) {
+			i := 0
+			for b.Loop() {
+				_, _ = functions[i].At(times[i])
+				if i++; i == len(times) {
+					i = 0
 				}
 			}
 		})

@@ -29,10 +29,13 @@ const (
 // double is the sum h + l of two float64, |l| ≤ ulp(h)/2.
 type double struct{ h, l float64 }
 
-// quick is what the first stage needs of an expansion.
+// quick is what the first stage needs of an expansion. Everything is multiplied
+// by a power of 2, and results by scale, its inverse; it differs from 1 where
+// the coefficients are very large or small.
 type quick struct {
 	modes []mode
 	order int
+	scale float64
 	// Below until, the sum of the first n terms series[k]·t^k has an error of
 	// at most quickError·Σ sizes[k]·t^k + remainder(n)·(t/until)^n.
 	series    [seriesTerms]double
@@ -55,7 +58,7 @@ type amplitude struct {
 
 // doubled returns the double nearest to the midpoint of x, and whether its
 // error is at most 2^−104·scale; it fails outside a range in which products
-// neither underflow nor overflow.
+// do not overflow, and underflow by less than 2^−1000.
 func doubled(x ball.Real, scale float64) (double, bool) {
 	if x.IsZero() {
 		return double{}, true
@@ -64,7 +67,7 @@ func doubled(x ball.Real, scale float64) (double, bool) {
 	h, _ := mid.Float64()
 	l, _ := new(big.Float).Sub(mid, new(big.Float).SetFloat64(h)).Float64()
 	radius, _ := x.Radius().Float64()
-	ok := math.Abs(h) < 0x1p300 && scale > 0x1p-300 && radius <= scale*0x1p-106
+	ok := math.Abs(h) < 0x1p300 && scale > 0x1p-900 && radius <= scale*0x1p-106
 	return double{h, l}, ok
 }
 
@@ -89,7 +92,14 @@ func (e *expansion) prepare() *quick {
 }
 
 func newQuick(parts []principal) (*quick, bool) {
-	q := &quick{modes: make([]mode, len(parts))}
+	q := &quick{modes: make([]mode, len(parts)), scale: 1}
+	up := 0
+	if top := largestExponent(parts); top < -200 || top > 200 {
+		if top < -1000 || top > 1000 {
+			return nil, false
+		}
+		up, q.scale = -top, math.Ldexp(1, top)
+	}
 	for i, p := range parts {
 		m := &q.modes[i]
 		m.pair = p.pair
@@ -97,7 +107,7 @@ func newQuick(parts []principal) (*quick, bool) {
 		// Each component to its own relative precision, as Enclosure gives them.
 		m.sigma, ok1 = doubled(p.pole.Re, midpoint(p.pole.Re))
 		m.omega, ok2 = doubled(p.pole.Im, midpoint(p.pole.Im))
-		if !ok1 || !ok2 {
+		if !ok1 || !ok2 || !inRange(m.sigma.h) || !inRange(m.omega.h) {
 			return nil, false
 		}
 		m.amplitudes = make([]amplitude, len(p.coefficients))
@@ -110,7 +120,7 @@ func newQuick(parts []principal) (*quick, bool) {
 				factorial.Quo(factorial, big.NewRat(int64(k), 1))
 			}
 			scale := ball.FromRat(factorial, 256)
-			re, im := c.Re.Mul(scale, 256), c.Im.Mul(scale, 256).Neg()
+			re, im := c.Re.Mul(scale, 256).MulPow2(up), c.Im.Mul(scale, 256).MulPow2(up).Neg()
 			size := max(midpoint(re), midpoint(im))
 			var a amplitude
 			a.a, ok1 = doubled(re, size)
@@ -125,6 +135,28 @@ func newQuick(parts []principal) (*quick, bool) {
 	return q, true
 }
 
+// inRange reports whether x is 0 or products with a time in the range of the
+// stage are far from overflow and underflow.
+func inRange(x float64) bool {
+	x = math.Abs(x)
+	return x == 0 || x > 0x1p-300 && x < 0x1p300
+}
+
+// largestExponent returns n such that the largest coefficient is near 2^n.
+func largestExponent(parts []principal) int {
+	n := math.MinInt32
+	for _, p := range parts {
+		for _, c := range p.coefficients {
+			for _, v := range []ball.Real{c.Re, c.Im} {
+				if mid := v.Mid(); mid.Sign() != 0 {
+					n = max(n, mid.MantExp(nil))
+				}
+			}
+		}
+	}
+	return n
+}
+
 // midpoint returns |mid x| as a float64.
 func midpoint(x ball.Real) float64 {
 	v, _ := x.Mid().Float64()
@@ -136,7 +168,9 @@ func midpoint(x ball.Real) float64 {
 func (e *expansion) prepareSeries(q *quick) {
 	g := e.bound()
 	until := 3 - g.rate // ρ·until = 8
-	if until < -300 || until > 300 || g.scale > 300 || g.scale < -300 {
+	_, down := math.Frexp(q.scale)
+	size := g.scale - (down - 1)
+	if until < -300 || until > 300 || size > 300 || size < -300 {
 		return
 	}
 	const prec = 256
@@ -146,19 +180,19 @@ func (e *expansion) prepareSeries(q *quick) {
 		if k > 0 {
 			factorial = factorial.Mul(ball.FromInt64(int64(k)), prec)
 		}
-		c := v.Div(factorial, prec)
+		c := v.Div(factorial, prec).MulPow2(1 - down)
 		d, ok := doubled(c, midpoint(c))
 		q.series[k], q.sizes[k] = d, math.Abs(d.h)
 		if !ok { // a parameter that is 0, or nearly so
 			q.series[k] = double{}
-			size, _ := c.Abs().Upper().Float64()
-			q.sizes[k] = size/quickError + 0x1p-1000
+			above, _ := c.Abs().Upper().Float64()
+			q.sizes[k] = above/quickError + 0x1p-1000
 		}
 	}
 	q.until = math.Ldexp(1, until)
 	// 2·2^scale·(ρ·until)^n/n! with 64! > 2^295 and 24! > 2^79.
-	q.remainder[0] = math.Ldexp(1, g.scale+1+3*seriesTerms-295)
-	q.remainder[1] = math.Ldexp(1, g.scale+1+3*firstTerms-79)
+	q.remainder[0] = math.Ldexp(1, size+1+3*seriesTerms-295)
+	q.remainder[1] = math.Ldexp(1, size+1+3*firstTerms-79)
 }
 
 // quickAt returns the value at th + tl > 0 where the first stage decides it.
@@ -172,19 +206,19 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		return 0, false
 	}
 	if th < q.until/16 {
-		if v, ok := settle(q.near(th, tl, firstTerms)); ok {
+		if v, ok := q.settle(q.near(th, tl, firstTerms)); ok {
 			return v, true
 		}
 	}
 	sum, bound, isZero := q.far(th, tl)
-	if isZero {
+	if isZero && q.scale <= 1 {
 		return 0, true
 	}
-	if v, ok := settle(sum, bound); ok {
+	if v, ok := q.settle(sum, bound); ok {
 		return v, true
 	}
 	if th < q.until {
-		return settle(q.near(th, tl, seriesTerms))
+		return q.settle(q.near(th, tl, seriesTerms))
 	}
 	return 0, false
 }
@@ -259,14 +293,26 @@ func (q *quick) near(th, tl float64, terms int) (double, float64) {
 }
 
 // settle rounds sum where every number within bound of it rounds alike.
-func settle(sum double, bound float64) (float64, bool) {
+func (q *quick) settle(sum double, bound float64) (float64, bool) {
 	size := math.Abs(sum.h)
 	if !(size > smallest && size < largest) {
 		return 0, false
 	}
 	bound += size * 0x1p-100
 	v := sum.h + (sum.l - bound)
-	return v, v == sum.h+(sum.l+bound)
+	ok := v == sum.h+(sum.l+bound)
+	if q.scale != 1 {
+		return q.unscaled(v, ok)
+	}
+	return v, ok
+}
+
+// unscaled returns v times the scale; it fails where that is no normal number,
+// because it would be rounded again.
+func (q *quick) unscaled(v float64, ok bool) (float64, bool) {
+	v *= q.scale
+	size := math.Abs(v)
+	return v, ok && size > 0x1p-1020 && size < largest
 }
 
 // plus returns x + y with an error below 2^−103·(|x| + |y|).

@@ -86,7 +86,7 @@ func timeFunctionOf(t testing.TB, num, den []*big.Rat) TimeFunction {
 // (testdata/generate_timefunction.py), and counts ErrLimit, of which there
 // must be none.
 func TestTimeFunctionReference(t *testing.T) {
-	compared, limits := map[string]int{}, 0
+	compared, quickly, limits := map[string]int{}, map[string]int{}, 0
 	var order []string
 	for _, c := range readReference(t) {
 		f := timeFunctionOf(t, c.num, c.den)
@@ -97,6 +97,9 @@ func TestTimeFunctionReference(t *testing.T) {
 			got, err := f.At(x)
 			slow, errSlow := f.e.at(new(big.Rat).SetFloat64(x))
 			compared[c.family]++
+			if _, ok := f.e.quickAt(x, 0); ok {
+				quickly[c.family]++
+			}
 			for _, v := range []struct {
 				y   float64
 				err error
@@ -115,7 +118,7 @@ func TestTimeFunctionReference(t *testing.T) {
 	}
 	report := ""
 	for _, family := range order {
-		report += fmt.Sprintf("\n%-20s%5d", family, compared[family])
+		report += fmt.Sprintf("\n%-20s%5d, %5d by the first stage", family, compared[family], quickly[family])
 	}
 	t.Logf("values compared bit for bit:%s\nErrLimit: %d", report, limits)
 	if limits != 0 {

@@ -117,6 +117,9 @@ func (s *sampler) fill(y []float64) error {
 		decided := 0
 		if bound, ok := s.anchorAt(q, s.time(start)); ok {
 			decided = s.rows(out, bound)
+			if q.scale != 1 {
+				decided = q.unscaleAll(out)
+			}
 		}
 		if decided == m {
 			continue
@@ -388,6 +391,20 @@ func (s *sampler) rows(out []float64, bound float64) (decided int) {
 			out[j] = v
 			decided++
 		}
+	}
+	return decided
+}
+
+// unscaleAll scales the decided values and returns how many stay decided.
+func (q *quick) unscaleAll(out []float64) (decided int) {
+	for k, v := range out {
+		v, ok := q.unscaled(v, v != 0)
+		if !ok {
+			v = 0
+		} else {
+			decided++
+		}
+		out[k] = v
 	}
 	return decided
 }
