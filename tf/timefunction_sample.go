@@ -87,15 +87,13 @@ type sampler struct {
 	order   int
 	block   int
 	slice   int
-	table   []cell    // block rows of order entries, scaled to at most 1
-	scales  []float64 // the powers of 2 by which the columns were divided
-	slack   []float64 // what the table neglects, times 1/quickError
+	table   [3][]float64 // order columns of block entries, scaled to at most 1: b, b1 and b2
+	sums    [2][]float64 // of one block: exact, and what is left
+	scales  []float64    // the powers of 2 by which the columns were divided
+	slack   []float64    // what the table neglects, times 1/quickError
 	anchor  []part
 	anchors []double
 }
-
-// cell is an entry of the table: b as float64, and b1 + b2 more precisely.
-type cell struct{ b, b1, b2 float64 }
 
 // part is an entry of the anchor.
 type part struct{ a1, a2 float64 }
@@ -170,7 +168,12 @@ func (s *sampler) tabulate(q *quick, count int) bool {
 	s.order = q.order
 	s.slice = (52 - bits.Len(uint(s.order))) / 2
 	s.block = min(max(1<<(bits.Len(uint(count))/2+1), fine), 256)
-	s.table = make([]cell, s.block*s.order)
+	for i := range s.table {
+		s.table[i] = make([]float64, s.block*s.order)
+	}
+	for i := range s.sums {
+		s.sums[i] = make([]float64, s.block)
+	}
 	s.scales, s.slack = make([]float64, s.order), make([]float64, s.order)
 	s.anchor, s.anchors = make([]part, s.order), make([]double, s.order)
 	values := make([]double, s.block*s.order)
@@ -185,8 +188,9 @@ func (s *sampler) tabulate(q *quick, count int) bool {
 	round := math.Ldexp(1.5, 52-s.slice)
 	for l := range s.scales {
 		size := 0.0
-		for j := range s.block {
-			size = max(size, math.Abs(values[j*s.order+l].h))
+		column := values[l*s.block:][:s.block]
+		for _, v := range column {
+			size = max(size, math.Abs(v.h))
 		}
 		if !(size < 0x1p300 && s.slack[l] < 0x1p300) {
 			return false
@@ -194,11 +198,11 @@ func (s *sampler) tabulate(q *quick, count int) bool {
 		_, exponent := math.Frexp(max(size, 0x1p-300))
 		s.scales[l] = math.Ldexp(1, exponent)
 		down := math.Ldexp(1, -exponent)
-		for j := range s.block {
-			v := values[j*s.order+l]
+		for j, v := range column {
 			h := float64(v.h * down)
 			b1 := (h + round) - round
-			s.table[j*s.order+l] = cell{h, b1, (h - b1) + float64(v.l*down)}
+			i := l*s.block + j
+			s.table[0][i], s.table[1][i], s.table[2][i] = h, b1, (h-b1)+float64(v.l*down)
 		}
 	}
 	return true
@@ -238,11 +242,11 @@ func (s *sampler) columns(m *mode, values []double, column int) bool {
 				d = product2(d, tau.h, tau.l)
 				power *= tau.h
 			}
-			at := j*s.order + column + k*m.width()
-			values[at] = c
-			s.slack[column+k*m.width()] = max(s.slack[column+k*m.width()], float64(power*negligible)/quickError)
+			l := column + k*m.width()
+			values[l*s.block+j] = c
+			s.slack[l] = max(s.slack[l], float64(power*negligible)/quickError)
 			if m.pair {
-				values[at+1] = d
+				values[(l+1)*s.block+j] = d
 			}
 		}
 	}
@@ -372,27 +376,54 @@ func (m *mode) shifted(k int, t double) (a, b double, magnitude float64) {
 // rows multiplies the table by the anchor and rounds; it returns how many
 // values are decided and leaves 0 in the others.
 func (s *sampler) rows(out []float64, bound float64) (decided int) {
-	anchor := s.anchor
-	n := len(anchor)
-	table := s.table
+	h, r := s.sums[0][:len(out)], s.sums[1][:len(out)]
+	clear(h)
+	clear(r)
+	l := 0
+	for ; l+1 < len(s.anchor); l += 2 {
+		s.addTwo(h, r, l)
+	}
+	if l < len(s.anchor) {
+		s.addOne(h, r, l)
+	}
 	for j := range out {
-		row := table[:n]
-		table = table[n:]
-		var h, l, m float64
-		for i := range anchor {
-			a, b := &anchor[i], &row[i]
-			h += float64(a.a1 * b.b1)
-			l += float64(a.a1 * b.b2)
-			m += float64(a.a2 * b.b)
-		}
-		l += m
-		v := h + (l - bound)
-		if v == h+(l+bound) {
+		v := h[j] + (r[j] - bound)
+		if v == h[j]+(r[j]+bound) {
 			out[j] = v
 			decided++
 		}
 	}
 	return decided
+}
+
+// addOne adds the products of column l: the exact ones to h, the others to r.
+func (s *sampler) addOne(h, r []float64, l int) {
+	a := s.anchor[l]
+	b, b1, b2 := s.column(l, len(h))
+	r = r[:len(h)]
+	for j := range h {
+		h[j] += float64(a.a1 * b1[j])
+		r[j] += float64(a.a1*b2[j]) + float64(a.a2*b[j])
+	}
+}
+
+// addTwo does so for columns l and l+1.
+func (s *sampler) addTwo(h, r []float64, l int) {
+	a, d := s.anchor[l], s.anchor[l+1]
+	b, b1, b2 := s.column(l, len(h))
+	c, c1, c2 := s.column(l+1, len(h))
+	r = r[:len(h)]
+	b, b1, b2, c, c1, c2 = b[:len(h)], b1[:len(h)], b2[:len(h)], c[:len(h)], c1[:len(h)], c2[:len(h)]
+	for j := range h {
+		h[j] += float64(a.a1*b1[j]) + float64(d.a1*c1[j])
+		r[j] += (float64(a.a1*b2[j]) + float64(a.a2*b[j])) + (float64(d.a1*c2[j]) + float64(d.a2*c[j]))
+	}
+}
+
+// column returns the first n entries of column l.
+func (s *sampler) column(l, n int) (b, b1, b2 []float64) {
+	i := l * s.block
+	return s.table[0][i:][:n], s.table[1][i:][:n], s.table[2][i:][:n]
 }
 
 // unscaleAll scales the decided values and returns how many stay decided.

@@ -78,13 +78,13 @@ func (t TimeTerm) write(s *sum, variable string, digits int) {
 		factors = append(factors, power)
 	}
 	if t.Decay != 0 {
-		factors = append(factors, "e^("+product(t.decay().text(digits), variable)+")")
+		factors = append(factors, "e^("+rate(t.decay().text(digits), variable)+")")
 	}
 	if t.Frequency == 0 {
 		s.add(t.cosine().text(digits), factors...)
 		return
 	}
-	angle := "(" + product(t.frequency().text(digits), variable) + ")"
+	angle := "(" + rate(t.frequency().text(digits), variable) + ")"
 	n := len(factors)
 	if t.Cosine != 0 {
 		s.add(t.cosine().text(digits), append(factors[:n:n], "cos"+angle)...)
@@ -104,6 +104,15 @@ func product(number string, factors ...string) string {
 		return sign + strings.Join(factors, " ")
 	}
 	return sign + strings.Join(append([]string{number}, factors...), " ")
+}
+
+// rate joins a number and the time, a fraction as in 2 t/3.
+func rate(number, variable string) string {
+	above, below, ok := strings.Cut(number, "/")
+	if !ok {
+		return product(number, variable)
+	}
+	return product(above, variable) + "/" + below
 }
 
 // sum joins products with their signs.

@@ -5,7 +5,7 @@
 //
 //	pool := tf.MustParse("1.12/(1493 s + 1) [mm -> mm]")
 //	level := tf.Must(response.Step(pool, units.MustParseQuantity("50 mm")))
-//	fmt.Println(level) // 56 − 56 e^(−1/1493 t) [mm]
+//	fmt.Println(level) // 56 − 56 e^(−t/1493) [mm]
 package response
 
 import (

@@ -76,12 +76,11 @@ func TestSecondOrderStep(t *testing.T) {
 // ExampleStep opens the gate of a canal pool by 50 mm. The pool's level rises
 // by 1.12 mm per millimetre, with a time constant of 1493 s.
 func ExampleStep() {
-	opening, level := units.MustParse("mm"), units.MustParse("mm")
-	pool := tf.Must(tf.Must(tf.New(poly.FromInts(112), poly.FromInts(100, 149300))).WithUnits(opening, level))
+	pool := tf.MustParse("1.12/(1493 s + 1) [mm -> mm]")
 	rise := tf.Must(Step(pool, units.MustParseQuantity("50 mm")))
 	fmt.Println(rise)
 	fmt.Printf("after 30 min %.2f mm\n", tf.Must(rise.At(1800)))
 	// Output:
-	// 56 − 56 e^(−1/1493 t) [mm]
+	// 56 − 56 e^(−t/1493) [mm]
 	// after 30 min 39.23 mm
 }
