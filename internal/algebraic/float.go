@@ -148,10 +148,10 @@ func convexHull(logs []float64, hull []int) []int {
 // by the third order of the iteration, would be lost in the last place.
 const settled = 0x1p-36
 
-// approximate runs the simultaneous iteration in float64; it reports false when
-// the approximations leave the numbers. Nothing that it computes is relied on
-// for more than a good guess, so its rounding does not matter.
-func (f *floats) approximate(re, im []float64, sweeps int) bool {
+// approximate runs the simultaneous iteration in float64; it reports whether
+// every approximation settled. Nothing that it computes is relied on for more
+// than a good guess, so its rounding does not matter.
+func (f *floats) approximate(re, im []float64) bool {
 	n := len(re)
 	var buffer [64]bool
 	done := buffer[:]
@@ -160,7 +160,7 @@ func (f *floats) approximate(re, im []float64, sweeps int) bool {
 	}
 	left := n
 	c := f.hi
-	for range sweeps {
+	for range maxSweeps {
 		for i := range re {
 			if done[i] {
 				continue
@@ -193,10 +193,42 @@ func (f *floats) approximate(re, im []float64, sweeps int) bool {
 			}
 		}
 		if left == 0 {
-			break
+			return true
 		}
 	}
-	return true
+	return false
+}
+
+// approximateCompensated corrects by p(z_i)/(c_n·Π(z_i − z_k)) with compensated
+// values (Weierstrass 1891): for ill-conditioned roots, where float64 tells
+// neither the value nor the derivative from 0. It reports whether every
+// approximation settled in a few sweeps.
+func (f *floats) approximateCompensated(re, im []float64) bool {
+	for range maxSweeps / 2 {
+		active := false
+		for i := range re {
+			s := f.at(re[i], im[i])
+			dr, di := f.hi[len(re)], 0.0
+			for k := range re {
+				if k != i {
+					x, y := re[i]-re[k], im[i]-im[k]
+					dr, di = dr*x-di*y, dr*y+di*x
+				}
+			}
+			q := 1 / (dr*dr + di*di)
+			cr, ci := (s.pr*dr+s.pi*di)*q, (s.pi*dr-s.pr*di)*q
+			re[i], im[i] = re[i]-cr, im[i]-ci
+			size := cr*cr + ci*ci
+			if size != size {
+				return false
+			}
+			active = active || size > settled*settled*(re[i]*re[i]+im[i]*im[i])
+		}
+		if !active {
+			return true
+		}
+	}
+	return false
 }
 
 // sumOfInverses returns Σ 1/(z_i − z_k) over k ≠ i.

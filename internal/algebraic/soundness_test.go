@@ -99,7 +99,7 @@ func TestCompensatedBounds(t *testing.T) {
 		case 1: // next to a root
 			re, im := make([]float64, n), make([]float64, n)
 			f.place(re, im)
-			f.approximate(re, im, maxSweeps)
+			f.approximate(re, im)
 			x, w = re[0], im[0]
 		}
 		v := f.at(x, w)

@@ -30,29 +30,48 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 	if !ok || !f.place(re, im) {
 		return triageDecades(p, w)
 	}
-	if !f.approximate(re, im, maxSweeps) {
-		return nil, false
-	}
-	m, ok := foldConjugates(re, im, nil)
-	if !ok {
-		return nil, false
-	}
 	var room [smallDegree]candidate
 	found := room[:]
-	if m > smallDegree {
-		found = make([]candidate, m)
+	if n > smallDegree {
+		found = make([]candidate, n)
 	}
-	found = found[:m]
-	for i := range found {
-		found[i].x, found[i].y, found[i].k = re[i], im[i], f.k
-		if !f.refine(&found[i]) {
-			return nil, false
+	if f.approximate(re, im) {
+		if found, ok := f.candidates(found, re, im); ok && f.refineAll(found) && separate(found, n) {
+			return certified(found, &factor{poly: p, degree: n}, w), true
 		}
+		f.place(re, im)
+		f.approximate(re, im) // what failed has changed them
 	}
-	if !separate(found, n) {
+	if !f.approximateCompensated(re, im) {
+		return nil, false
+	}
+	found, ok = f.candidates(found, re, im)
+	for i := range found {
+		f.weierstrass(found, i)
+	}
+	if !ok || !separate(found, n) {
 		return nil, false
 	}
 	return certified(found, &factor{poly: p, degree: n}, w), true
+}
+
+// candidates returns the approximations on and above the real axis.
+func (f *floats) candidates(found []candidate, re, im []float64) ([]candidate, bool) {
+	m, ok := foldConjugates(re, im, nil)
+	found = found[:m]
+	for i := range found {
+		found[i] = candidate{x: re[i], y: im[i], k: f.k}
+	}
+	return found, ok
+}
+
+func (f *floats) refineAll(found []candidate) bool {
+	for i := range found {
+		if !f.refine(&found[i]) {
+			return false
+		}
+	}
+	return true
 }
 
 // certified returns the numbers of separated candidates.
@@ -151,6 +170,41 @@ func (f *floats) refine(a *candidate) bool {
 		return a.inclusion < 0x1p-8*z
 	}
 	return false
+}
+
+// weierstrass bounds the distance to a root without the derivative: every root
+// of p is in the union of the discs around the n points z_i of radius
+// n·|p(z_i)/(c_n·Π(z_i − z_k))|, and a disc that meets no other holds one (Smith
+// 1970). The points are the candidates and the mirror images of those above the
+// real axis.
+func (f *floats) weierstrass(found []candidate, i int) {
+	a := &found[i]
+	n := len(f.hi) - 1
+	s := f.at(a.x, a.y)
+	value := math.Hypot(s.pr, s.pi)*(1+0x1p-50) + s.errValue
+	log := math.Log2(value) - math.Log2(math.Abs(f.hi[n]))
+	if a.y != 0 {
+		log -= math.Log2(2 * a.y)
+	}
+	for k := range found {
+		b := &found[k]
+		if k == i {
+			continue
+		}
+		dx, dy := a.x-b.x, a.y-b.y
+		norm := dx*dx + dy*dy
+		if b.y != 0 {
+			dy = a.y + b.y
+			norm *= dx*dx + dy*dy
+		}
+		log -= math.Log2(norm) / 2
+	}
+	// The logarithms err by less than 2^-40 together; NaN and Inf prove nothing.
+	a.cr, a.ci, a.size, a.err = 0, 0, 0, float64(n)*math.Exp2(log)*1.01+tiny
+	a.inclusion = a.err
+	if !(a.y >= 0) {
+		a.inclusion = math.Inf(1)
+	}
 }
 
 // separate proves that the discs of radius inclusion are disjoint and far from
