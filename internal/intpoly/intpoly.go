@@ -4,58 +4,166 @@
 // return new values and never change an operand; a *big.Int is copied on the
 // way in and out, and nil reads as 0. Coefficients ascend: index i belongs to
 // x^i.
+//
+// All coefficients of a polynomial lie in one slice and have the same number
+// of 64-bit limbs, the smallest that holds the largest of them in two's
+// complement. A polynomial of word-size coefficients is an array of int64.
 package intpoly
 
-import "math/big"
+import (
+	"math/big"
+	"math/bits"
+	"slices"
+)
 
 // Poly is a polynomial with integer coefficients.
 type Poly struct {
 	_ [0]func()
-	c []*big.Int // ascending, no leading zero
+	w []uint64 // limbs, least significant first; coefficient i is w[i·n : (i+1)·n]
+	n int      // limbs of a coefficient; 0 for the polynomial 0
 }
 
-func trim(c []*big.Int) Poly {
-	n := len(c)
-	for n > 0 && c[n-1].Sign() == 0 {
-		n--
+// trim returns the polynomial with the limbs w, n to a coefficient, without
+// leading zero coefficients and needless limbs. It keeps w.
+func trim(w []uint64, n int) Poly {
+	for len(w) > 0 && isZero(w[len(w)-n:]) {
+		w = w[:len(w)-n]
 	}
-	return Poly{c: c[:n]}
+	if len(w) == 0 {
+		return Poly{}
+	}
+	need := 1
+	for i := n; i <= len(w) && need < n; i += n {
+		c := w[i-n : i]
+		for k := n; k > need; k-- {
+			if c[k-1] != signOf(c[k-2]) {
+				need = k
+				break
+			}
+		}
+	}
+	if need < n {
+		for i, k := 0, 0; i < len(w); i, k = i+n, k+need {
+			copy(w[k:k+need], w[i:i+need])
+		}
+		w, n = w[:len(w)/n*need], need
+	}
+	return Poly{w: w, n: n}
+}
+
+// signOf returns the limb of which a sign extension consists.
+func signOf(limb uint64) uint64 { return uint64(int64(limb) >> 63) }
+
+func isZero(c []uint64) bool {
+	for _, x := range c {
+		if x != 0 {
+			return false
+		}
+	}
+	return true
 }
 
 // FromInt64s returns the polynomial with the given ascending coefficients.
 func FromInt64s(ascending ...int64) Poly {
-	c := make([]*big.Int, len(ascending))
+	w := make([]uint64, len(ascending))
 	for i, v := range ascending {
-		c[i] = big.NewInt(v)
+		w[i] = uint64(v)
 	}
-	return trim(c)
+	return trim(w, 1)
 }
 
 // FromBigs returns the polynomial with the given ascending coefficients.
 func FromBigs(ascending ...*big.Int) Poly {
-	c := make([]*big.Int, len(ascending))
-	for i, v := range ascending {
-		c[i] = new(big.Int)
+	n := 1
+	for _, v := range ascending {
 		if v != nil {
-			c[i].Set(v)
+			n = max(n, v.BitLen()/64+1)
 		}
 	}
-	return trim(c)
+	w := make([]uint64, n*len(ascending))
+	for i, v := range ascending {
+		if v != nil {
+			store(w[i*n:(i+1)*n], v)
+		}
+	}
+	return trim(w, n)
+}
+
+// store writes v into c, which has enough limbs.
+func store(c []uint64, v *big.Int) {
+	for i, word := range v.Bits() {
+		c[i*bits.UintSize/64] |= uint64(word) << (uint(i*bits.UintSize) % 64)
+	}
+	if v.Sign() < 0 {
+		negate(c)
+	}
+}
+
+// load sets v to the coefficient c.
+func load(v *big.Int, c []uint64) *big.Int {
+	negative := int64(c[len(c)-1]) < 0
+	if len(c) == 1 {
+		return v.SetInt64(int64(c[0]))
+	}
+	words := make([]big.Word, 0, len(c)*64/bits.UintSize)
+	carry := uint64(1)
+	for _, x := range c {
+		if negative {
+			x, carry = bits.Add64(^x, 0, carry)
+		}
+		words = append(words, big.Word(x))
+		if bits.UintSize == 32 {
+			words = append(words, big.Word(x>>32))
+		}
+	}
+	v.SetBits(words)
+	if negative {
+		v.Neg(v)
+	}
+	return v
+}
+
+// negate sets c to −c.
+func negate(c []uint64) {
+	carry := uint64(1)
+	for i, x := range c {
+		c[i], carry = bits.Add64(^x, 0, carry)
+	}
+}
+
+// at returns the limbs of the coefficient i.
+func (p Poly) at(i int) []uint64 { return p.w[i*p.n : (i+1)*p.n] }
+
+// terms is the number of coefficients.
+func (p Poly) terms() int {
+	if p.n <= 1 {
+		return len(p.w)
+	}
+	return len(p.w) / p.n
+}
+
+// bigs returns the coefficients as fresh numbers.
+func (p Poly) bigs() []*big.Int {
+	c := make([]*big.Int, p.terms())
+	for i := range c {
+		c[i] = load(new(big.Int), p.at(i))
+	}
+	return c
 }
 
 // Degree is the degree, −1 for the polynomial 0.
-func (p Poly) Degree() int { return len(p.c) - 1 }
+func (p Poly) Degree() int { return p.terms() - 1 }
 
 // IsZero reports whether p is 0.
-func (p Poly) IsZero() bool { return len(p.c) == 0 }
+func (p Poly) IsZero() bool { return len(p.w) == 0 }
 
 // Coefficient returns the coefficient of x^i as a fresh number; 0 outside the
 // range.
 func (p Poly) Coefficient(i int) *big.Int {
-	if i < 0 || i >= len(p.c) {
+	if i < 0 || i >= p.terms() {
 		return new(big.Int)
 	}
-	return new(big.Int).Set(p.c[i])
+	return load(new(big.Int), p.at(i))
 }
 
 // Leading returns the leading coefficient, 0 for the polynomial 0.
@@ -63,114 +171,92 @@ func (p Poly) Leading() *big.Int { return p.Coefficient(p.Degree()) }
 
 // Sign is the sign of the coefficient of x^i.
 func (p Poly) Sign(i int) int {
-	if i < 0 || i >= len(p.c) {
+	if i < 0 || i >= p.terms() {
 		return 0
 	}
-	return p.c[i].Sign()
+	c := p.at(i)
+	switch {
+	case int64(c[p.n-1]) < 0:
+		return -1
+	case isZero(c):
+		return 0
+	}
+	return 1
 }
 
 // BitLen is the bit length of the absolute value of the coefficient of x^i.
 func (p Poly) BitLen(i int) int {
-	if i < 0 || i >= len(p.c) {
+	if i < 0 || i >= p.terms() {
 		return 0
 	}
-	return p.c[i].BitLen()
+	c := p.at(i)
+	sign := signOf(c[p.n-1])
+	for k := p.n - 1; k >= 0; k-- {
+		x := c[k] ^ sign
+		if x == 0 {
+			continue
+		}
+		length := 64*k + bits.Len64(x)
+		// −2^b has the complement 2^b − 1, one bit shorter than its magnitude.
+		if sign != 0 && x&(x+1) == 0 && allOnes(c[:k], sign) {
+			length++
+		}
+		return length
+	}
+	return int(sign & 1) // 0 or −1
 }
 
-// MaxBitLen is the largest bit length of a coefficient.
-func (p Poly) MaxBitLen() int {
-	m := 0
-	for _, c := range p.c {
-		m = max(m, c.BitLen())
-	}
-	return m
-}
-
-// IsOne reports whether p is 1.
-func (p Poly) IsOne() bool { return len(p.c) == 1 && p.c[0].IsInt64() && p.c[0].Int64() == 1 }
-
-// Equal reports whether p and q are the same polynomial.
-func (p Poly) Equal(q Poly) bool {
-	if len(p.c) != len(q.c) {
-		return false
-	}
-	for i := range p.c {
-		if p.c[i].Cmp(q.c[i]) != 0 {
+// allOnes reports whether the limbs, complemented by sign, are all ones.
+func allOnes(c []uint64, sign uint64) bool {
+	for _, x := range c {
+		if ^(x ^ sign) != 0 {
 			return false
 		}
 	}
 	return true
 }
 
-// Add returns p + q.
-func (p Poly) Add(q Poly) Poly {
-	c := make([]*big.Int, max(len(p.c), len(q.c)))
-	for i := range c {
-		c[i] = new(big.Int).Add(p.Coefficient(i), q.Coefficient(i))
-	}
-	return trim(c)
-}
-
-// Neg returns −p.
-func (p Poly) Neg() Poly { return p.MulInt(big.NewInt(-1)) }
-
-// Sub returns p − q.
-func (p Poly) Sub(q Poly) Poly { return p.Add(q.Neg()) }
-
-// Mul returns p·q.
-func (p Poly) Mul(q Poly) Poly {
-	if p.IsZero() || q.IsZero() {
-		return Poly{}
-	}
-	c := make([]*big.Int, len(p.c)+len(q.c)-1)
-	for i := range c {
-		c[i] = new(big.Int)
-	}
-	var t big.Int
-	for i, a := range p.c {
-		for j, b := range q.c {
-			c[i+j].Add(c[i+j], t.Mul(a, b))
+// MaxBitLen is the largest bit length of a coefficient.
+func (p Poly) MaxBitLen() int {
+	m := 0
+	for i := range p.terms() {
+		if p.n > 1 || m < 64 {
+			m = max(m, p.BitLen(i))
 		}
 	}
-	return trim(c)
+	return m
 }
 
-// MulInt returns c·p.
-func (p Poly) MulInt(c *big.Int) Poly {
-	out := make([]*big.Int, len(p.c))
-	for i, a := range p.c {
-		out[i] = new(big.Int).Mul(a, c)
+// span returns b such that −2^b ≤ c < 2^b for every coefficient c.
+func (p Poly) span() int {
+	var or uint64
+	for i := p.n - 1; i < len(p.w); i += p.n {
+		or |= p.w[i] ^ signOf(p.w[i])
 	}
-	return trim(out)
+	return 64*(p.n-1) + bits.Len64(or)
 }
 
-// QuoInt returns p/c, where c divides every coefficient and is not 0.
-func (p Poly) QuoInt(c *big.Int) Poly {
-	out := make([]*big.Int, len(p.c))
-	for i, a := range p.c {
-		out[i] = new(big.Int).Quo(a, c)
-	}
-	return trim(out)
-}
+// IsOne reports whether p is 1.
+func (p Poly) IsOne() bool { return len(p.w) == 1 && p.w[0] == 1 }
+
+// Equal reports whether p and q are the same polynomial.
+func (p Poly) Equal(q Poly) bool { return p.n == q.n && slices.Equal(p.w, q.w) }
 
 // MulPower returns p·x^k, k ≥ 0.
 func (p Poly) MulPower(k int) Poly {
-	if p.IsZero() {
+	if p.IsZero() || k == 0 {
 		return p
 	}
-	c := make([]*big.Int, k+len(p.c))
-	for i := range k {
-		c[i] = new(big.Int)
-	}
-	copy(c[k:], p.c)
-	return trim(c)
+	w := make([]uint64, len(p.w)+k*p.n)
+	copy(w[k*p.n:], p.w)
+	return Poly{w: w, n: p.n}
 }
 
 // Valuation is the multiplicity of the root 0 (the number of low zero
 // coefficients), 0 for the polynomial 0.
 func (p Poly) Valuation() int {
-	for i, c := range p.c {
-		if c.Sign() != 0 {
+	for i := range p.terms() {
+		if !isZero(p.at(i)) {
 			return i
 		}
 	}
@@ -178,248 +264,44 @@ func (p Poly) Valuation() int {
 }
 
 // QuoPower returns p/x^k, where k ≤ p.Valuation().
-func (p Poly) QuoPower(k int) Poly { return trim(p.c[min(k, len(p.c)):]) }
-
-// Content is the greatest common divisor of the coefficients, ≥ 0.
-func (p Poly) Content() *big.Int {
-	g := new(big.Int)
-	for _, c := range p.c {
-		g.GCD(nil, nil, g, new(big.Int).Abs(c))
+func (p Poly) QuoPower(k int) Poly {
+	if k <= 0 || p.IsZero() {
+		return p
 	}
-	return g
-}
-
-// Primitive returns p/content with a positive leading coefficient, and the
-// content with the sign that makes content·primitive = p.
-func (p Poly) Primitive() (content *big.Int, primitive Poly) {
-	content = p.Content()
-	if p.IsZero() {
-		return content, p
-	}
-	if p.c[len(p.c)-1].Sign() < 0 {
-		content.Neg(content)
-	}
-	return content, p.QuoInt(content)
-}
-
-// PseudoQuoRem returns quo, rem and k with lc(q)^k·p = quo·q + rem and
-// deg rem < deg q, where k = max(0, deg p − deg q + 1). q must not be 0.
-func (p Poly) PseudoQuoRem(q Poly) (quo, rem Poly, k int) {
-	n := q.Degree()
-	k = max(0, p.Degree()-n+1)
-	lc := q.Leading()
-	rem = p
-	left := k
-	for rem.Degree() >= n {
-		t := FromBigs(rem.Leading()).MulPower(rem.Degree() - n)
-		quo = quo.MulInt(lc).Add(t)
-		rem = rem.MulInt(lc).Sub(t.Mul(q))
-		left--
-	}
-	for ; left > 0; left-- {
-		quo, rem = quo.MulInt(lc), rem.MulInt(lc)
-	}
-	return quo, rem, k
-}
-
-// QuoExact returns p/q and true where q divides p over the integers.
-func (p Poly) QuoExact(q Poly) (Poly, bool) {
-	if q.IsZero() {
-		return Poly{}, false
-	}
-	n := q.Degree()
-	lc := q.Leading()
-	var quo Poly
-	for p.Degree() >= n {
-		d, r := new(big.Int).QuoRem(p.Leading(), lc, new(big.Int))
-		if r.Sign() != 0 {
-			return Poly{}, false
-		}
-		t := FromBigs(d).MulPower(p.Degree() - n)
-		quo, p = quo.Add(t), p.Sub(t.Mul(q))
-	}
-	return quo, p.IsZero()
-}
-
-// GCD returns the primitive greatest common divisor with a positive leading
-// coefficient; contents are ignored. GCD(0, q) is the primitive part of q, and
-// GCD(0, 0) is 0.
-func (p Poly) GCD(q Poly) Poly {
-	_, p = p.Primitive()
-	_, q = q.Primitive()
-	for !q.IsZero() {
-		_, r, _ := p.PseudoQuoRem(q)
-		_, r = r.Primitive()
-		p, q = q, r
-	}
-	return p
-}
-
-// Derivative returns dp/dx.
-func (p Poly) Derivative() Poly {
-	if len(p.c) < 2 {
-		return Poly{}
-	}
-	c := make([]*big.Int, len(p.c)-1)
-	for i := range c {
-		c[i] = new(big.Int).Mul(p.c[i+1], big.NewInt(int64(i+1)))
-	}
-	return trim(c)
-}
-
-// Factor is a square-free factor and its multiplicity.
-type Factor struct {
-	Poly         Poly
-	Multiplicity int
-}
-
-// SquareFree returns the square-free decomposition of the primitive part of p:
-// factors of positive degree, primitive with positive leading coefficients,
-// pairwise coprime, in ascending multiplicity (Yun 1976). A constant has none.
-func (p Poly) SquareFree() []Factor {
-	_, p = p.Primitive()
-	if p.Degree() < 1 {
-		return nil
-	}
-	d := p.Derivative()
-	g := p.GCD(d)
-	b, _ := p.QuoExact(g)
-	c, _ := d.QuoExact(g)
-	var out []Factor
-	for i := 1; b.Degree() > 0; i++ {
-		d := c.Sub(b.Derivative())
-		a := b.GCD(d)
-		if a.Degree() > 0 {
-			out = append(out, Factor{a, i})
-		}
-		b, _ = b.QuoExact(a)
-		c, _ = d.QuoExact(a)
-	}
-	return out
+	return Poly{w: p.w[min(k*p.n, len(p.w)):], n: p.n}
 }
 
 // EvenOdd returns E and O with p(x) = E(x²) + x·O(x²).
 func (p Poly) EvenOdd() (even, odd Poly) {
-	var e, o []*big.Int
-	for i, c := range p.c {
-		if i%2 == 0 {
-			e = append(e, c)
-		} else {
-			o = append(o, c)
+	w := make([]uint64, len(p.w))
+	split := (p.terms() + 1) / 2 * p.n
+	for i := range p.terms() {
+		k := i / 2 * p.n
+		if i%2 == 1 {
+			k += split
 		}
+		copy(w[k:], p.at(i))
 	}
-	return trim(e), trim(o)
+	return trim(w[:split:split], p.n), trim(w[split:], p.n)
 }
 
 // Reverse returns x^k·p(1/x) for k = deg p.
 func (p Poly) Reverse() Poly {
-	c := make([]*big.Int, len(p.c))
-	for i := range c {
-		c[i] = p.c[len(p.c)-1-i]
+	w := make([]uint64, len(p.w))
+	for i := range p.terms() {
+		copy(w[len(w)-(i+1)*p.n:], p.at(i))
 	}
-	return trim(c)
+	return trim(w, p.n)
 }
 
-// ScaleArgument returns den^n·p(num·x/den), n = deg p.
-func (p Poly) ScaleArgument(num, den *big.Int) Poly {
-	c := make([]*big.Int, len(p.c))
-	up := big.NewInt(1)
-	for i := range c {
-		c[i] = new(big.Int).Mul(p.c[i], up)
-		up = new(big.Int).Mul(up, num)
+// part returns the coefficients from … to−1 as a polynomial of its own.
+func (p Poly) part(from, to int) Poly {
+	w := p.w[min(from*p.n, len(p.w)):min(to*p.n, len(p.w))]
+	for len(w) > 0 && isZero(w[len(w)-p.n:]) {
+		w = w[:len(w)-p.n]
 	}
-	down := big.NewInt(1)
-	for i := len(c) - 1; i >= 0; i-- {
-		c[i].Mul(c[i], down)
-		down = new(big.Int).Mul(down, den)
+	if len(w) == 0 {
+		return Poly{}
 	}
-	return trim(c)
-}
-
-// TaylorShift returns p(x + a).
-func (p Poly) TaylorShift(a *big.Int) Poly {
-	c := make([]*big.Int, len(p.c))
-	for i := range c {
-		c[i] = p.Coefficient(i)
-	}
-	var t big.Int
-	for i := range c {
-		for j := len(c) - 2; j >= i; j-- {
-			c[j].Add(c[j], t.Mul(a, c[j+1]))
-		}
-	}
-	return trim(c)
-}
-
-// AtInt returns p(x).
-func (p Poly) AtInt(x *big.Int) *big.Int {
-	v := new(big.Int)
-	for i := len(p.c) - 1; i >= 0; i-- {
-		v.Add(v.Mul(v, x), p.c[i])
-	}
-	return v
-}
-
-// AtRat returns den^n·p(num/den), n = deg p.
-func (p Poly) AtRat(num, den *big.Int) *big.Int {
-	v, d := new(big.Int), big.NewInt(1)
-	var t big.Int
-	for i := len(p.c) - 1; i >= 0; i-- {
-		v.Add(v.Mul(v, num), t.Mul(p.c[i], d))
-		d.Mul(d, den)
-	}
-	return v
-}
-
-// Compose returns p(q(x)).
-func (p Poly) Compose(q Poly) Poly {
-	var v Poly
-	for i := len(p.c) - 1; i >= 0; i-- {
-		v = v.Mul(q).Add(FromBigs(p.c[i]))
-	}
-	return v
-}
-
-// Pow returns p^n, n ≥ 0.
-func (p Poly) Pow(n int) Poly {
-	v := FromInt64s(1)
-	for ; n > 0; n >>= 1 {
-		if n&1 == 1 {
-			v = v.Mul(p)
-		}
-		p = p.Mul(p)
-	}
-	return v
-}
-
-// Resultant returns the resultant of p and q: 0 when they have a common root
-// or one of them is 0.
-func (p Poly) Resultant(q Poly) *big.Int {
-	if p.IsZero() || q.IsZero() {
-		return new(big.Int)
-	}
-	// Euclid over the rationals: res(p, q) = (−1)^{mn} lc(q)^{m − deg r} res(q, r).
-	res := big.NewRat(1, 1)
-	pow := func(c *big.Rat, k int) {
-		for range k {
-			res.Mul(res, c)
-		}
-	}
-	for q.Degree() > 0 {
-		m, n := p.Degree(), q.Degree()
-		_, r, k := p.PseudoQuoRem(q) // r = lc(q)^k p mod q
-		if r.IsZero() {
-			return new(big.Int)
-		}
-		if m*n%2 == 1 {
-			res.Neg(res)
-		}
-		lc := new(big.Rat).SetInt(q.Leading())
-		pow(lc, m-r.Degree())
-		// res(q, r_true), r_true = r/lc^k: res(q, r)·lc^(−k n)
-		pow(new(big.Rat).Inv(lc), k*n)
-		p, q = q, r
-	}
-	pow(new(big.Rat).SetInt(q.Leading()), p.Degree())
-	return new(big.Int).Set(res.Num())
+	return Poly{w: w, n: p.n} // may have needless limbs; for internal use
 }

@@ -1,0 +1,172 @@
+package intpoly
+
+import (
+	"math/big"
+	"math/bits"
+)
+
+// Derivative returns dp/dx.
+func (p Poly) Derivative() Poly {
+	if p.terms() < 2 {
+		return Poly{}
+	}
+	n := limbsFor(p.span() + bits.Len(uint(p.Degree())))
+	w := make([]uint64, p.Degree()*n)
+	k := make([]uint64, 1)
+	x := make([]uint64, n)
+	for i := 1; i < p.terms(); i++ {
+		k[0] = -uint64(i)
+		extend(x, p.at(i))
+		subtractProduct(w[(i-1)*n:i*n], k, x)
+	}
+	return trim(w, n)
+}
+
+// ScaleArgument returns den^n·p(num·x/den), n = deg p.
+func (p Poly) ScaleArgument(num, den *big.Int) Poly {
+	c := p.bigs()
+	up := big.NewInt(1)
+	for i := range c {
+		c[i].Mul(c[i], up)
+		up = new(big.Int).Mul(up, num)
+	}
+	down := big.NewInt(1)
+	for i := len(c) - 1; i >= 0; i-- {
+		c[i].Mul(c[i], down)
+		down = new(big.Int).Mul(down, den)
+	}
+	return FromBigs(c...)
+}
+
+// TaylorShift returns p(x + a), by repeated synthetic division.
+func (p Poly) TaylorShift(a *big.Int) Poly {
+	c := p.bigs()
+	unit := a.IsInt64() && a.Int64() == 1
+	var t big.Int
+	for i := range c {
+		for j := len(c) - 2; j >= i; j-- {
+			if unit {
+				c[j].Add(c[j], c[j+1])
+			} else {
+				c[j].Add(c[j], t.Mul(a, c[j+1]))
+			}
+		}
+	}
+	return FromBigs(c...)
+}
+
+// AtInt returns p(x).
+func (p Poly) AtInt(x *big.Int) *big.Int {
+	v := new(big.Int)
+	var c big.Int
+	for i := p.Degree(); i >= 0; i-- {
+		v.Add(v.Mul(v, x), load(&c, p.at(i)))
+	}
+	return v
+}
+
+// AtRat returns den^n·p(num/den), n = deg p.
+func (p Poly) AtRat(num, den *big.Int) *big.Int {
+	if den.IsInt64() && den.Int64() == 1 {
+		return p.AtInt(num)
+	}
+	v, d := new(big.Int), big.NewInt(1)
+	var c, t big.Int
+	for i := p.Degree(); i >= 0; i-- {
+		v.Add(v.Mul(v, num), t.Mul(load(&c, p.at(i)), d))
+		d.Mul(d, den)
+	}
+	return v
+}
+
+// Compose returns p(q(x)), by Horner's rule.
+func (p Poly) Compose(q Poly) Poly {
+	var v Poly
+	for i := p.Degree(); i >= 0; i-- {
+		v = v.Mul(q).Add(trimmed(p.part(i, i+1)))
+	}
+	return v
+}
+
+// Pow returns p^n, n ≥ 0.
+func (p Poly) Pow(n int) Poly {
+	v := FromInt64s(1)
+	for ; n > 0; n >>= 1 {
+		if n&1 == 1 {
+			v = v.Mul(p)
+		}
+		if n > 1 {
+			p = p.Mul(p)
+		}
+	}
+	return v
+}
+
+// Factor is a square-free factor and its multiplicity.
+type Factor struct {
+	Poly         Poly
+	Multiplicity int
+}
+
+// SquareFree returns the square-free decomposition of the primitive part of p:
+// factors of positive degree, primitive with positive leading coefficients,
+// pairwise coprime, in ascending multiplicity (Yun 1976). A constant has none.
+func (p Poly) SquareFree() []Factor {
+	p = p.primitive()
+	if p.Degree() < 1 {
+		return nil
+	}
+	d := p.Derivative()
+	g := p.GCD(d)
+	if g.IsOne() {
+		return []Factor{{p, 1}}
+	}
+	b, _ := p.QuoExact(g)
+	c, _ := d.QuoExact(g)
+	var out []Factor
+	for i := 1; b.Degree() > 0; i++ {
+		d := c.Sub(b.Derivative())
+		a := b.GCD(d)
+		if a.Degree() > 0 {
+			out = append(out, Factor{a, i})
+		}
+		b, _ = b.QuoExact(a)
+		c, _ = d.QuoExact(a)
+	}
+	return out
+}
+
+// Resultant returns the resultant of p and q: 0 when they have a common root
+// or one of them is 0.
+func (p Poly) Resultant(q Poly) *big.Int {
+	if p.IsZero() || q.IsZero() {
+		return new(big.Int)
+	}
+	// Euclid over the rationals: res(p, q) = (−1)^{mn} lc(q)^{m − deg r} res(q, r).
+	res := big.NewRat(1, 1)
+	pow := func(c *big.Int, k int) {
+		e := new(big.Int).Exp(c, big.NewInt(int64(max(k, -k))), nil)
+		if k >= 0 {
+			res.Mul(res, new(big.Rat).SetInt(e))
+		} else {
+			res.Quo(res, new(big.Rat).SetInt(e))
+		}
+	}
+	for q.Degree() > 0 {
+		m, n := p.Degree(), q.Degree()
+		_, r, k := p.PseudoQuoRem(q) // r = lc(q)^k p mod q
+		if r.IsZero() {
+			return new(big.Int)
+		}
+		content, r := r.Primitive()
+		if m*n%2 == 1 {
+			res.Neg(res)
+		}
+		// res(q, r) is homogeneous of degree n in r
+		pow(q.Leading(), m-r.Degree()-k*n)
+		pow(content, n)
+		p, q = q, r
+	}
+	pow(q.Leading(), p.Degree())
+	return new(big.Int).Set(res.Num())
+}
