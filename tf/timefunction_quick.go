@@ -44,11 +44,13 @@ type quick struct {
 	remainder [2]float64 // for all terms, and for firstTerms
 }
 
-// mode is the part of one pole: e^(σt)·Σ t^k (a_k cos ωt + b_k sin ωt).
+// mode is the part of one pole or of a cluster of poles:
+// e^(σt)·Σ t^k (a_k cos ωt + b_k sin ωt).
 type mode struct {
 	sigma, omega double
 	amplitudes   []amplitude
 	pair         bool
+	tail         tail // what the sum leaves out for a cluster
 }
 
 type amplitude struct {
@@ -81,7 +83,6 @@ func (e *expansion) prepare() *quick {
 				return
 			}
 			if q, ok := newQuick(parts); ok {
-				q.order = e.den.Degree()
 				e.prepareSeries(q)
 				e.quick = q
 				return
@@ -100,39 +101,56 @@ func newQuick(parts []principal) (*quick, bool) {
 		}
 		up, q.scale = -top, math.Ldexp(1, top)
 	}
-	for i, p := range parts {
-		m := &q.modes[i]
-		m.pair = p.pair
-		var ok1, ok2 bool
-		// Each component to its own relative precision, as Enclosure gives them.
-		m.sigma, ok1 = doubled(p.pole.Re, midpoint(p.pole.Re))
-		m.omega, ok2 = doubled(p.pole.Im, midpoint(p.pole.Im))
-		if !ok1 || !ok2 || !inRange(m.sigma.h) || !inRange(m.omega.h) {
+	q.modes = q.modes[:0]
+	for _, group := range clusters(parts) {
+		var m mode
+		var ok bool
+		if len(group) == 1 && !nearAxis(group[0].root.Value()) {
+			m, ok = newMode(group[0], up)
+		} else {
+			m, ok = newCluster(group, up)
+		}
+		if !ok || !inRange(m.sigma.h) || !inRange(m.omega.h) {
 			return nil, false
 		}
-		m.amplitudes = make([]amplitude, len(p.coefficients))
-		factorial := big.NewRat(1, 1)
-		if p.pair {
-			factorial.SetInt64(2)
-		}
-		for k, c := range p.coefficients {
-			if k > 0 {
-				factorial.Quo(factorial, big.NewRat(int64(k), 1))
-			}
-			scale := ball.FromRat(factorial, 256)
-			re, im := c.Re.Mul(scale, 256).MulPow2(up), c.Im.Mul(scale, 256).MulPow2(up).Neg()
-			size := max(midpoint(re), midpoint(im))
-			var a amplitude
-			a.a, ok1 = doubled(re, size)
-			a.b, ok2 = doubled(im, size)
-			a.magnitude = (math.Abs(a.a.h) + math.Abs(a.b.h)) * (1 + 0x1p-50)
-			if !ok1 || !ok2 {
-				return nil, false
-			}
-			m.amplitudes[k] = a
-		}
+		q.order += len(m.amplitudes) * m.width()
+		q.modes = append(q.modes, m)
 	}
 	return q, true
+}
+
+// newMode returns the mode of one pole, its coefficients times 2^up.
+func newMode(p principal, up int) (m mode, ok bool) {
+	m.pair = p.pair
+	var ok1, ok2 bool
+	// Each component to its own relative precision, as enclosure gives them.
+	m.sigma, ok1 = doubled(p.pole.Re, midpoint(p.pole.Re))
+	m.omega, ok2 = doubled(p.pole.Im, midpoint(p.pole.Im))
+	if !ok1 || !ok2 {
+		return m, false
+	}
+	m.amplitudes = make([]amplitude, len(p.coefficients))
+	factorial := big.NewRat(1, 1)
+	if p.pair {
+		factorial.SetInt64(2)
+	}
+	for k, c := range p.coefficients {
+		if k > 0 {
+			factorial.Quo(factorial, big.NewRat(int64(k), 1))
+		}
+		scale := ball.FromRat(factorial, 256)
+		re, im := c.Re.Mul(scale, 256).MulPow2(up), c.Im.Mul(scale, 256).MulPow2(up).Neg()
+		size := max(midpoint(re), midpoint(im))
+		var a amplitude
+		a.a, ok1 = doubled(re, size)
+		a.b, ok2 = doubled(im, size)
+		a.magnitude = (math.Abs(a.a.h) + math.Abs(a.b.h)) * (1 + 0x1p-50)
+		if !ok1 || !ok2 {
+			return m, false
+		}
+		m.amplitudes[k] = a
+	}
+	return m, true
 }
 
 // inRange reports whether x is 0 or products with a time in the range of the
@@ -231,6 +249,9 @@ func (q *quick) far(th, tl float64) (sum double, bound float64, isZero bool) {
 	for i := range q.modes {
 		m := &q.modes[i]
 		a, b, magnitude := m.amplitudesAt(th, tl)
+		if m.tail.until > 0 {
+			magnitude += m.tail.at(th)
+		}
 		x := product2(m.sigma, th, tl)
 		if x.h < -exponential.MaxExp {
 			bound += magnitude * (negligible / quickError)
@@ -264,7 +285,9 @@ func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
 	for k := last - 1; k >= 0; k-- {
 		c := &m.amplitudes[k]
 		a = product2(a, th, tl).plus(c.a)
-		b = product2(b, th, tl).plus(c.b)
+		if m.pair {
+			b = product2(b, th, tl).plus(c.b)
+		}
 		magnitude = float64(magnitude*th)*(1+0x1p-50) + c.magnitude
 	}
 	return a, b, magnitude

@@ -101,7 +101,7 @@ type part struct{ a1, a2 float64 }
 func (s *sampler) fill(y []float64) error {
 	count := len(y) - s.first
 	q := s.e.prepare()
-	if q == nil || count < 8 || q.order > 256 || !s.tabulate(q, count) {
+	if q == nil || count < 8 || q.order > 256 || q.longest() > maxMoments || !s.tabulate(q, count) {
 		for k := s.first; k < len(y); k++ {
 			if err := s.one(y, k); err != nil {
 				return err
@@ -131,6 +131,16 @@ func (s *sampler) fill(y []float64) error {
 		}
 	}
 	return nil
+}
+
+// longest is the largest number of powers of t in a mode; binomials are exact
+// up to maxMoments.
+func (q *quick) longest() int {
+	n := 0
+	for i := range q.modes {
+		n = max(n, len(q.modes[i].amplitudes))
+	}
+	return n
 }
 
 // time returns offset + k·dt with a relative error below 2^−104.
@@ -322,6 +332,9 @@ func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 		size := math.Abs(c.h) + math.Abs(d.h) + negligible/quickError
 		for k := range m.amplitudes {
 			a, b, magnitude := m.shifted(k, t)
+			if k == 0 && m.tail.until > 0 {
+				magnitude += m.tail.at(t.h + float64(float64(s.block)*s.dt))
+			}
 			scale, slack := s.scales[column], s.slack[column]
 			bound += magnitude * (size*(4*scale+slack) + 4*scale*(negligible/quickError))
 			s.anchors[column] = product2(a, c.h, c.l)

@@ -9,6 +9,7 @@ import (
 
 	"github.com/qofs/qofs/internal/ball"
 	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/ratfun"
 	"github.com/qofs/qofs/poly"
 )
 
@@ -23,14 +24,14 @@ func TestQuickStageIsSound(t *testing.T) {
 	decided, total, limits := 0, 0, 0
 	tightest := math.Inf(1)
 	for range functions {
-		f := randomProper(r, 1+r.IntN(10))
+		f := randomDifficult(r)
 		e, err := newExpansion(f.Num(), f.Den())
 		if err != nil {
 			t.Fatal(err)
 		}
 		q := e.prepare()
 		if q == nil {
-			t.Fatalf("no first stage for %v", f)
+			t.Fatalf("no first stage for %v/%v", f.Num(), f.Den())
 		}
 		for range times {
 			x := math.Exp2(16*r.Float64() - 12)
@@ -80,6 +81,56 @@ func TestQuickStageIsSound(t *testing.T) {
 	if decided < total/2 {
 		t.Error("the first stage decides too little")
 	}
+}
+
+// randomDifficult returns a strictly proper function, in turn at random, scaled by
+// powers of 2, and with clusters of poles on and beside the real axis.
+func randomDifficult(r *rand.Rand) ratfun.Func {
+	f := randomProper(r, 1+r.IntN(8))
+	switch r.IntN(3) {
+	case 1:
+		scale := new(big.Int).Lsh(big.NewInt(1), uint(200+r.IntN(400)))
+		if r.IntN(2) == 0 {
+			return f.Scale(new(big.Rat).SetInt(scale))
+		}
+		return f.Scale(new(big.Rat).SetFrac(big.NewInt(1), scale))
+	case 2:
+		return randomCluster(r)
+	}
+	return f
+}
+
+// randomCluster returns a function whose poles, simple or repeated, are
+// 10^−6 to 10^−15 apart.
+func randomCluster(r *rand.Rand) ratfun.Func {
+	close := new(big.Rat).SetFrac(big.NewInt(1), new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(6+r.IntN(10))), nil))
+	one := big.NewRat(1, 1)
+	base := big.NewRat(int64(1+r.IntN(40)), int64(1+r.IntN(9)))
+	den := poly.FromInts(int64(r.IntN(9)), 1)
+	for k := range int64(1 + r.IntN(4)) {
+		apart := new(big.Rat).Mul(close, big.NewRat(k+1, 1))
+		center := new(big.Rat).Add(base, apart)
+		var factor poly.Poly
+		switch r.IntN(3) {
+		case 0: // real
+			factor = poly.FromRats(center, one)
+		case 1: // beside the axis: (s + base)² + apart²
+			factor = poly.FromRats(new(big.Rat).Add(new(big.Rat).Mul(base, base), new(big.Rat).Mul(apart, apart)), new(big.Rat).Add(base, base), one)
+		default: // far from it: s² + s + base + apart
+			factor = poly.FromRats(new(big.Rat).Add(center, one), one, one)
+		}
+		for range 1 + r.IntN(2) {
+			den = den.Mul(factor)
+		}
+	}
+	c := make([]int64, 1+r.IntN(den.Degree()))
+	for i := range c {
+		c[i] = int64(r.IntN(99) - 49)
+	}
+	c[0] |= 1
+	f, _ := quotient(poly.FromInts(c...), den)
+	f, _ = f.LowestTerms()
+	return f
 }
 
 // FuzzTimeFunction compares the stages, and checks that nothing panics.

@@ -150,7 +150,7 @@ func TestSample(t *testing.T) {
 	compared := 0
 	for _, dt := range []float64{0, 1e-9, 0.01, 0.1, 1, 1e3} {
 		for range 8 {
-			g := Continuous{c: core{f: randomProper(r, 1+r.IntN(8))}}
+			g := Continuous{c: core{f: randomDifficult(r)}}
 			if r.IntN(3) == 0 {
 				g.c.setDelay(big.NewRat(int64(r.IntN(100)), 33))
 			}
