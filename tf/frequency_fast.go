@@ -17,7 +17,8 @@ type axisTerm struct{ even, evenLow, odd, oddLow float64 }
 type axisRatio struct {
 	num, den []axisTerm // highest power first
 	factor   float64    // a power of two
-	bound    float64    // see value
+	// Multiples of 2^−106 for the error bounds of value and magnitude.
+	bound, boundK, boundSquare float64
 }
 
 // Binary exponents within which the error bound of value holds: a coefficient
@@ -49,7 +50,11 @@ func newAxisRatio(f ratfun.Func) (r *axisRatio, ok bool) {
 	}
 	r.factor = math.Ldexp(1, e-d)
 	m := float64(max(len(r.num), len(r.den)))
-	r.bound = (12*m*(2*m+5) + 25*m*m + 80*m) * 0x1p-106
+	// 1.01 for terms of higher order and the rounding of the bounds themselves
+	horner := 6*m*(2*m+5) + 8*m + 10
+	r.bound = 1.01 * 0x1p-106 * (horner + 40*m + 64)
+	r.boundK = 1.01 * 0x1p-106 * (5*m + 8) * (10*m + 12)
+	r.boundSquare = 1.01 * 0x1p-106 * (2*horner + 25*m*m + 80*m)
 	return r, true
 }
 
@@ -78,13 +83,11 @@ func axisTerms(p intpoly.Poly) (terms []axisTerm, exponent int, ok bool) {
 	return terms, exponent, true
 }
 
-// axisValue is E and ω·O, each as an unevaluated sum of two float64, and the
-// same with the absolute values of all terms, added up.
-type axisValue struct{ re, reLow, im, imLow, size float64 }
-
 // evaluate is the compensated Horner scheme (Graillat, Langlois and Louvet 2009)
-// at w = −ω² = wh + wl, for the even and the odd part together.
-func evaluate(terms []axisTerm, omega, wh, wl float64) axisValue {
+// at w = −ω² = wh + wl, for the even and the odd part together. It returns E and
+// ω·O, each as an unevaluated sum of two float64, and the same with the absolute
+// values of all terms, added up.
+func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, size float64) {
 	var e, eLow, eSize, o, oLow, oSize float64
 	wa := math.Abs(wh)
 	for i := range terms {
@@ -108,12 +111,8 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) axisValue {
 		oSize = math.FMA(oSize, wa, math.Abs(t.odd))
 		o = s
 	}
-	im := float64(o * omega)
-	return axisValue{
-		re: e, reLow: eLow,
-		im: im, imLow: math.FMA(oLow, omega, math.FMA(o, omega, -im)),
-		size: math.FMA(oSize, math.Abs(omega), eSize),
-	}
+	im = float64(o * omega)
+	return e, eLow, im, math.FMA(oLow, omega, math.FMA(o, omega, -im)), math.FMA(oSize, math.Abs(omega), eSize)
 }
 
 // twoSum returns s + e = a + b exactly, s = fl(a + b) (Knuth 1969).
@@ -123,18 +122,11 @@ func twoSum(a, b float64) (s, e float64) {
 	return s, (a - (s - v)) + (b - v)
 }
 
-// pair is a·c + b·d for unevaluated sums a = (a, aLow) and so on.
-func pair(a, aLow, c, cLow, b, bLow, d, dLow float64) (high, low float64) {
-	p := float64(a * c)
-	q := float64(b * d)
-	s, e := twoSum(p, q)
-	t := math.FMA(a, cLow, math.FMA(aLow, c, math.FMA(a, c, -p)))
-	u := math.FMA(b, dLow, math.FMA(bLow, d, math.FMA(b, d, -q)))
-	return twoSum(s, e+(t+u))
-}
-
 // value returns the ratio at jω; reOK and imOK tell which component is certainly
-// the exact one correctly rounded, and norm and error bounds serve magnitude.
+// the exact one correctly rounded.
+//
+// A quotient q in plain float64 is corrected once by (num − q·den)/den, where the
+// residual is taken without error but for terms of second order.
 //
 // Error bound. Let u = 2^−53 and let m be the number of steps of the Horner
 // scheme. The local corrections of step k are at most u·(2|s_(k+1) w| + |s_k| +
@@ -145,86 +137,107 @@ func pair(a, aLow, c, cLow, b, bLow, d, dLow float64) (high, low float64) {
 //	|p − (s + sLow)| ≤ 4 m (2m + 5) u² p̃, |sLow| ≤ 5 m u p̃.
 //
 // The second half of a coefficient leaves u² p̃, and the product with ω adds
-// (8m + 10) u² p̃. A product of two such sums drops the product of the low parts,
-// 25 m² u², and rounds four sums of size 5 m u at most, 30 m u². Together
-// with both operands' errors a component of num·conj(den) is off by at most
-// bound·sizeNum·sizeDen, bound = (12 m (2m+5) + 25 m² + 80 m) u², which leaves
-// room for the terms of third order; for |den|² likewise.
+// (8m + 10) u² p̃: together at most K u² p̃ with K = 6 m (2m + 5) + 8 m + 10. Let
+//
+//	e = (size(num) + |q|·size(den))/|den|, k = size(den)/|den| ≥ 1.
+//
+// The plain quotient is off by (5m + 8) u e at most, and so is the correction.
+// The division of the residual by the high parts of den alone and its roundings
+// make it wrong by (10m + 12) u k of itself; the low terms in the residual add up
+// with (40m + 64) u² e; and the errors of num and den themselves count K u² e. So
+// the corrected quotient is off by at most
+//
+//	u² e·(K + 40 m + 64 + (5m + 8)(10m + 12) k).
 //
 // Underflow adds nothing that counts. An operation that underflows is off by
 // 2^−1074, which later steps multiply by |w|^k. Where |w| ≤ 1 that stays below
-// 2^−1060, and bound·size is above 2^−360; where |w| > 1, size is at least
-// 2^−axisSpan·|w|^(m−1), and 2^−1060·|w|^(m−1) is again far below bound·size.
+// 2^−1060, and u² times a size is above 2^−360; where |w| > 1, a size is at least
+// 2^−axisSpan·|w|^(m−1), and 2^−1060·|w|^(m−1) is again far below.
 func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
-	a, b, ok := r.parts(omega)
-	if !ok {
-		return 0, false, false
-	}
-	norm, normLow := pair(b.re, b.reLow, b.re, b.reLow, b.im, b.imLow, b.im, b.imLow)
-	errNorm := r.bound * b.size * b.size
-	if !(errNorm <= 0x1p-20*norm) {
-		return 0, false, false
-	}
-	errNum := r.bound * a.size * b.size
-	re, reLow := pair(a.re, a.reLow, b.re, b.reLow, a.im, a.imLow, b.im, b.imLow)
-	im, imLow := pair(a.im, a.imLow, b.re, b.reLow, -a.re, -a.reLow, b.im, b.imLow)
-	inverse := 1 / norm
-	x, reOK := roundPair(re, reLow, norm, normLow, inverse, errNum, errNorm)
-	y, imOK := roundPair(im, imLow, norm, normLow, inverse, errNum, errNorm)
-	return complex(x*r.factor, y*r.factor), reOK, imOK
-}
-
-// parts evaluates numerator and denominator; ok is false where the error bound
-// does not hold.
-func (r *axisRatio) parts(omega float64) (a, b axisValue, ok bool) {
 	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
-		return a, b, false
+		return 0, false, false
 	}
 	w := float64(omega * omega)
 	wl := -math.FMA(omega, omega, -w)
-	a = evaluate(r.num, omega, -w, wl)
-	b = evaluate(r.den, omega, -w, wl)
-	return a, b, a.size >= minSize && a.size <= maxSize && b.size >= minSize && b.size <= maxSize
+	a, aLow, b, bLow, above := evaluate(r.num, omega, -w, wl)
+	c, cLow, d, dLow, below := evaluate(r.den, omega, -w, wl)
+	if !(above >= minSize && above <= maxSize && below >= minSize && below <= maxSize) {
+		return 0, false, false
+	}
+	inverse := 1 / math.FMA(c, c, float64(d*d))
+	reciprocal := (math.Abs(c) + math.Abs(d)) * inverse // ≥ |den|/|den|²
+	k := float64(below * reciprocal)
+	if !(k <= 0x1p20) { // den may be 0
+		return 0, false, false
+	}
+	x := float64(math.FMA(a, c, float64(b*d)) * inverse)
+	y := float64(math.FMA(b, c, -float64(a*d)) * inverse)
+	restRe := residual(a, aLow, x, c, cLow, -y, d, dLow)
+	restIm := residual(b, bLow, y, c, cLow, x, d, dLow)
+	x, xLow := twoSum(x, float64(math.FMA(restRe, c, float64(restIm*d))*inverse))
+	y, yLow := twoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse))
+	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
+	off := float64(e * math.FMA(k, r.boundK, r.bound))
+	reOK = x == x+(xLow+off) && x == x+(xLow-off) && math.Abs(x) > 0x1p-300
+	imOK = y == y+(yLow+off) && y == y+(yLow-off) && math.Abs(y) > 0x1p-300
+	return complex(x*r.factor, y*r.factor), reOK, imOK
+}
+
+// residual is a − p·c − q·d, where that is small, for unevaluated sums a, c and
+// d.
+func residual(a, aLow, p, c, cLow, q, d, dLow float64) float64 {
+	pc := float64(p * c)
+	qd := float64(q * d)
+	s, e := twoSum(a, -pc)
+	low := (aLow + e) - (math.FMA(p, c, -pc) + math.FMA(q, d, -qd))
+	return (s - qd) + math.FMA(-q, dLow, math.FMA(-p, cLow, low))
 }
 
 // magnitude returns the absolute value at jω; ok tells that it is certainly
-// correctly rounded. The error of the ratio of squares is that of value, and a
-// square root halves it.
+// correctly rounded.
+//
+// Error bound, with the terms of value: a product of two unevaluated sums drops
+// the product of their low parts, 25 m² u², and rounds four sums of size 5 m u at
+// most, 30 m u²; with the errors of both operands, the sum of two squares is off
+// by (2 K + 25 m² + 80 m) u² size². The quotient of two such pairs adds 32 u² of
+// itself, and a square root halves it all.
 func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
-	a, b, ok := r.parts(omega)
-	if !ok {
+	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
 		return 0, false
 	}
-	above, aboveLow := pair(a.re, a.reLow, a.re, a.reLow, a.im, a.imLow, a.im, a.imLow)
-	below, belowLow := pair(b.re, b.reLow, b.re, b.reLow, b.im, b.imLow, b.im, b.imLow)
-	errAbove, errBelow := r.bound*a.size*a.size, r.bound*b.size*b.size
+	w := float64(omega * omega)
+	wl := -math.FMA(omega, omega, -w)
+	above, aboveLow, sizeAbove := squares(evaluate(r.num, omega, -w, wl))
+	below, belowLow, sizeBelow := squares(evaluate(r.den, omega, -w, wl))
+	if !(sizeAbove >= minSize && sizeAbove <= maxSize && sizeBelow >= minSize && sizeBelow <= maxSize) {
+		return 0, false
+	}
+	errAbove, errBelow := r.boundSquare*sizeAbove*sizeAbove, r.boundSquare*sizeBelow*sizeBelow
 	if !(errAbove <= 0x1p-20*above && errBelow <= 0x1p-20*below) {
 		return 0, false
 	}
-	square, squareLow, off := dividePair(above, aboveLow, below, belowLow, 1/below, errAbove, errBelow)
+	// The first quotient is off by 5 u at most, so that rest is at most
+	// 5 u·above, and its rounding, that of the correction and that of the last
+	// quotient are below 32 u² of the whole.
+	q := above / below
+	rest := math.FMA(-q, below, above)
+	square, squareLow := twoSum(q, (rest+math.FMA(-q, belowLow, aboveLow))/below)
+	off := float64(1.02*math.FMA(square, errBelow, errAbove)/below) + float64(0x1p-101*square)
 	root := math.Sqrt(square)
-	// root² + rest = square + squareLow up to u² square: one step of Newton's
-	rest := math.FMA(-root, root, square) + squareLow
-	high, low := twoSum(root, rest/(2*root))
+	// root² + rest = square + squareLow: one step of Newton's iteration
+	rest = math.FMA(-root, root, square) + squareLow
+	high, low := twoSum(root, rest/float64(2*root))
 	off = float64(0.51*off/root) + float64(0x1p-101*high)
-	return high * r.factor, high == high+(low+off) && high == high+(low-off) && high > 0x1p-200
+	return high * r.factor, high == high+(low+off) && high == high+(low-off) && high > 0x1p-300
 }
 
-// dividePair divides n by d into the sum of two float64 that is at most off from
-// the quotient. inverse is 1/d to a few units in the last place.
-func dividePair(n, nLow, d, dLow, inverse, errNum, errDen float64) (high, low, off float64) {
-	q := float64(n * inverse)
-	// q is off by 5 u at most, so that rest is at most 5 u·|n| and its rounding,
-	// that of the correction and that of the last product are below 32 u² of
-	// the quotient.
-	rest := math.FMA(-q, d, n)
-	high, low = twoSum(q, (rest+math.FMA(-q, dLow, nLow))*inverse)
-	size := math.Abs(high)
-	return high, low, float64(1.02*inverse*math.FMA(size, errDen, errNum)) + float64(0x1p-101*size)
-}
-
-// roundPair divides n by d and tells whether the rounding is certain.
-func roundPair(n, nLow, d, dLow, inverse, errNum, errDen float64) (q float64, ok bool) {
-	high, low, off := dividePair(n, nLow, d, dLow, inverse, errNum, errDen)
-	return high, high == high+(low+off) && high == high+(low-off) && math.Abs(high) > 0x1p-200
+// squares is re² + im² as a sum of two float64; it passes size on.
+func squares(re, reLow, im, imLow, size float64) (high, low, sameSize float64) {
+	p := float64(re * re)
+	q := float64(im * im)
+	s, e := twoSum(p, q)
+	t := math.FMA(2*re, reLow, math.FMA(re, re, -p))
+	u := math.FMA(2*im, imLow, math.FMA(im, im, -q))
+	high, low = twoSum(s, e+(t+u))
+	return high, low, size
 }
