@@ -49,6 +49,8 @@ type Number struct {
 	radius     scaled
 	separation scaled
 
+	pair *Number // the mirror image; nil until Roots returns, and if real
+
 	real      bool // proved real
 	imaginary bool // proved to have the real part 0
 	below     bool // has a negative imaginary part
@@ -188,25 +190,31 @@ func withConjugates(roots []Root) []Root {
 			pairs++
 		}
 	}
-	if pairs == 0 {
-		return roots
-	}
-	mirrored := make([]Number, pairs)
 	to := len(roots) + pairs
+	from := len(roots) - 1
 	roots = slices.Grow(roots, pairs)[:to]
-	for i := to - pairs - 1; i >= 0; i-- {
-		r := roots[i]
+	for ; from < to-1; from-- { // the ones before are real
+		r := roots[from]
 		if !r.Number.real {
-			pairs--
-			mirrored[pairs] = *r.Number
-			mirrored[pairs].mirror()
 			to--
-			roots[to] = Root{&mirrored[pairs], r.Multiplicity}
+			roots[to] = Root{r.Number.pairUp(), r.Multiplicity}
 		}
 		to--
 		roots[to] = r
 	}
 	return roots
+}
+
+// pairUp makes the mirror image the pair of x.
+func (x *Number) pairUp() *Number {
+	if x.pair == nil {
+		x.pair = new(Number)
+	}
+	*x.pair = *x
+	x.pair.pair = x
+	x.pair.below = !x.below
+	x.pair.value = complex(real(x.value), -imag(x.value))
+	return x.pair
 }
 
 // Value is the number, each component correctly rounded to nearest, ties to
@@ -235,14 +243,7 @@ func (x *Number) Conjugate() *Number {
 	if x.real {
 		return x
 	}
-	c := *x
-	c.mirror()
-	return &c
-}
-
-func (x *Number) mirror() {
-	x.below = !x.below
-	x.value = complex(real(x.value), -imag(x.value))
+	return x.pair
 }
 
 // Rat returns the number and true when it is rational, and nil and false

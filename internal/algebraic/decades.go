@@ -55,7 +55,13 @@ func (d *decades) near(e int) *floats {
 func triageDecades(p intpoly.Poly, w *work) ([]Number, bool) {
 	n := p.Degree()
 	d := newDecades(p)
-	re, im, exps := d.place()
+	re, im, exps := make([]float64, n), make([]float64, n), make([]int, n)
+	for i, s := range startingPoints(p) {
+		e := math.Ceil(s.logRadius)
+		sin, cos := math.Sincos(s.angle)
+		r := roughExp2(s.logRadius - e)
+		re[i], im[i], exps[i] = r*cos, r*sin, int(e)
+	}
 	if !d.approximate(re, im, exps) {
 		return nil, false
 	}
@@ -74,31 +80,6 @@ func triageDecades(p intpoly.Poly, w *work) ([]Number, bool) {
 		return nil, false
 	}
 	return certified(found, &factor{poly: p, degree: n}, w), true
-}
-
-// place returns the starting points, each with an exponent.
-func (d *decades) place() (re, im []float64, exps []int) {
-	n := len(d.hi) - 1
-	logs := make([]float64, n+1)
-	for i, v := range d.hi {
-		logs[i] = math.Inf(-1)
-		if v != 0 {
-			logs[i] = roughLog2(math.Abs(v)) + float64(d.exp[i])
-		}
-	}
-	hull := convexHull(logs, nil)
-	for h := 1; h < len(hull); h++ {
-		a, b := hull[h-1], hull[h]
-		r := (logs[a] - logs[b]) / float64(b-a)
-		e := math.Ceil(r)
-		for j := range b - a {
-			sin, cos := math.Sincos(2*math.Pi*(float64(j)/float64(b-a)+float64(h)/float64(n)) + 0.7)
-			re = append(re, roughExp2(r-e)*cos)
-			im = append(im, roughExp2(r-e)*sin)
-			exps = append(exps, int(e))
-		}
-	}
-	return re, im, exps
 }
 
 // unitRatio returns 2^(from−to), the factor from units of 2^from to units of

@@ -13,7 +13,7 @@ import (
 type floats struct {
 	hi, lo, size []float64
 	k            int
-	logs         []float64 // about log2|hi_i|, −Inf for 0
+	logs         []float64 // about log2|hi_i|, logOfZero for 0
 }
 
 // tiny exceeds every rounding error of an operation that underflows, 2^-1075,
@@ -36,30 +36,25 @@ func newFloats(p intpoly.Poly, buffer []float64) (f floats, ok bool) {
 	first, last := p.BitLen(0), p.BitLen(n)
 	f.k = (first - last) / n
 	m := 0
-	if f.k != 0 || p.MaxBitLen() > 64 {
+	if f.k != 0 || max(first, last) > 64 {
 		m = (first + last + n*f.k) / 2
 	}
 	for i := range n + 1 {
-		f.logs[i] = math.Inf(-1)
-		f.hi[i], f.lo[i], f.size[i] = 0, 0, tiny
-		if p.Sign(i) == 0 {
-			continue
-		}
 		e := i*f.k - m
-		if b := p.BitLen(i) + e; b > mostLog || b < -mostLog {
-			return f, false
-		}
 		var hi, lo float64
-		if v, ok := p.Int64(i); ok && -1<<53 <= v && v <= 1<<53 {
+		if v, ok := p.Int64(i); ok && -1<<53 <= v && v <= 1<<53 && max(e, -e) < mostLog {
 			if hi = float64(v); e != 0 {
 				hi = math.Ldexp(hi, e)
 			}
 		} else {
+			if b := p.BitLen(i) + e; b > mostLog || b < -mostLog {
+				return f, false
+			}
 			hi, lo = doubleDouble(p.Coefficient(i), e)
 		}
-		f.hi[i], f.lo[i] = hi, lo
-		f.size[i] = math.Abs(hi)*(1+0x1p-50) + tiny
-		f.logs[i] = roughLog2(math.Abs(hi))
+		size := math.Abs(hi)
+		f.hi[i], f.lo[i], f.size[i] = hi, lo, size*(1+0x1p-50)+tiny
+		f.logs[i] = roughLog2(size)
 	}
 	return f, true
 }
@@ -82,18 +77,11 @@ func doubleDouble(c *big.Int, e int) (hi, lo float64) {
 	return hi, math.Ldexp(float64(t.Int64()), e)
 }
 
-// roughLog2 is within 0.09 of log2 x for a positive normal x: the exponent and
-// the mantissa read as one number.
-func roughLog2(x float64) float64 { return float64(math.Float64bits(x))*0x1p-52 - 1023 }
-
-// roughExp2 is the inverse of roughLog2.
-func roughExp2(x float64) float64 { return math.Float64frombits(uint64((x + 1023) * 0x1p52)) }
-
 // place writes the starting points, or reports false where the terms at the
 // roots would leave the range of float64.
 func (f *floats) place(re, im []float64) bool {
 	n := len(f.hi) - 1
-	var buffer [65]int
+	var buffer [smallDegree + 1]int
 	hull := convexHull(f.logs, buffer[:0])
 	// Roots may be twice as large as the radii of the starting points, but
 	// hardly are; if values overflow, no bound holds and nothing is proved.
@@ -123,25 +111,6 @@ func (f *floats) place(re, im []float64) bool {
 		}
 	}
 	return true
-}
-
-// convexHull returns the indices of the upper convex hull of the points
-// (i, logs[i]).
-func convexHull(logs []float64, hull []int) []int {
-	for i, y := range logs {
-		if math.IsInf(y, -1) {
-			continue
-		}
-		for len(hull) > 1 {
-			a, b := hull[len(hull)-2], hull[len(hull)-1]
-			if (logs[b]-logs[a])*float64(i-a) > (y-logs[a])*float64(b-a) {
-				break
-			}
-			hull = hull[:len(hull)-1]
-		}
-		hull = append(hull, i)
-	}
-	return hull
 }
 
 // settled is the square of the relative correction below which the next one,

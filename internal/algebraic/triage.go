@@ -74,12 +74,19 @@ func (f *floats) refineAll(found []candidate) bool {
 	return true
 }
 
-// certified returns the numbers of separated candidates.
+// certified returns the numbers of separated candidates, with room for their
+// mirror images in the same allocation.
 func certified(found []candidate, f *factor, w *work) []Number {
-	numbers := make([]Number, len(found))
+	n := len(found)
+	numbers := make([]Number, n, f.degree)
+	images := numbers[n:f.degree]
 	for i := range numbers {
-		found[i].number(&numbers[i], f)
-		w.count(&numbers[i])
+		x := &numbers[i]
+		found[i].number(x, f)
+		w.count(x)
+		if !x.real {
+			x.pair, images = &images[0], images[1:]
+		}
 	}
 	return numbers
 }
