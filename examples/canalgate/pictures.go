@@ -54,7 +54,7 @@ func (r *results) draw(folder string) ([]string, error) {
 		for _, form := range []struct {
 			suffix string
 			write  func([]*plot.Plot) ([]byte, error)
-		}{{".png", png}, {".svg", svg}} {
+		}{{".png", asPNG}, {".svg", asSVG}} {
 			b, err := form.write(panels)
 			if err != nil {
 				return nil, err
@@ -69,7 +69,7 @@ func (r *results) draw(folder string) ([]string, error) {
 	return paths, nil
 }
 
-func png(panels []*plot.Plot) ([]byte, error) {
+func asPNG(panels []*plot.Plot) ([]byte, error) {
 	c := vgimg.NewWith(vgimg.UseWH(width, height), vgimg.UseDPI(130), vgimg.UseBackgroundColor(color.White))
 	stack(panels, draw.New(c))
 	var b bytes.Buffer
@@ -77,7 +77,7 @@ func png(panels []*plot.Plot) ([]byte, error) {
 	return b.Bytes(), err
 }
 
-func svg(panels []*plot.Plot) ([]byte, error) {
+func asSVG(panels []*plot.Plot) ([]byte, error) {
 	c := vgsvg.New(width, height)
 	stack(panels, draw.New(c))
 	var b bytes.Buffer
@@ -121,9 +121,9 @@ func (r *results) panels(a answers) ([]*plot.Plot, error) {
 		if err != nil {
 			return nil, err
 		}
-		band, what := 0.02*math.Abs(final), "±2 %"
+		band, what := 0.02*math.Abs(final), "within 2 % of the setpoint"
 		if final == 0 {
-			band, what = 0.1*math.Abs(peak), "a tenth of the largest move"
+			band, what = 0.1*math.Abs(peak), "within a tenth of the largest move"
 		}
 		level.band(final-band, final+band, end)
 		level.label(end, final-band, what+" ", slate, text.XRight, text.YTop, -2)
@@ -136,7 +136,7 @@ func (r *results) panels(a answers) ([]*plot.Plot, error) {
 		side, gap = text.YTop, -4
 	}
 	level.label(at, peak, note, water, text.XLeft, side, gap)
-	level.dimension(0, delay, fmt.Sprintf("dead time %g s", delay))
+	level.dimension(0, delay, fmt.Sprintf("dead time %g s", delay), peak < 0)
 
 	gate, err := newPanel("gate / mm", a.gate, wood, end)
 	if err != nil {
@@ -150,18 +150,16 @@ func (r *results) panels(a answers) ([]*plot.Plot, error) {
 		return nil, err
 	}
 	asked, at := a.current.extreme()
-	room := 1.4 * swing
-	valve.plot.Y.Min, valve.plot.Y.Max = -room, room
+	valve.low, valve.high = -1.4*swing, 1.4*swing // what lies beyond is cut off
 	valve.band(-swing, swing, end)
 	valve.label(end, swing, "what the valve can give ", slate, text.XRight, text.YTop, -3)
 	said := fmt.Sprintf("asks for %s mA at %.0f s", number(asked), at)
 	if math.Abs(asked) > swing {
-		said += ": beyond the valve, the linear result is not valid there"
+		said += ": beyond the valve, where the linear result is not valid"
 	}
 	valve.label(0.02*end, math.Copysign(0.62*swing, asked), said, iron, text.XLeft, text.YCenter, 0)
 	valve.plot.X.Label.Text = "t / s"
-	valve.plot.X.Tick.Label.Color = slate
-	gate.plot.X.Tick.Label.Color, level.plot.X.Tick.Label.Color = color.Transparent, color.Transparent
+	level.plot.X.Tick.Marker, gate.plot.X.Tick.Marker = evenTicks{bare: true}, evenTicks{bare: true}
 
 	var out []*plot.Plot
 	for _, p := range []*panel{level, gate, valve} {
@@ -175,11 +173,12 @@ func (r *results) panels(a answers) ([]*plot.Plot, error) {
 
 // panel is one picture of a stack.
 type panel struct {
-	plot   *plot.Plot
-	ground []plot.Plotter // below the curve
-	curve  plot.Plotter
-	labels []plot.Plotter
-	err    error
+	plot      *plot.Plot
+	low, high float64        // the range drawn
+	ground    []plot.Plotter // below the curve
+	curve     plot.Plotter
+	labels    []plot.Plotter
+	err       error
 }
 
 func newPanel(axis string, c curve, ink color.Color, end float64) (*panel, error) {
@@ -199,8 +198,7 @@ func newPanel(axis string, c curve, ink color.Color, end float64) (*panel, error
 	if room == 0 {
 		room = 1
 	}
-	p.plot.X.Min, p.plot.X.Max = 0, end
-	p.plot.Y.Min, p.plot.Y.Max = low-room, high+room
+	p.low, p.high = low-room, high+room
 	p.plot.Y.Label.Text = axis
 	for _, a := range []*plot.Axis{&p.plot.X, &p.plot.Y} {
 		a.Padding = 0
@@ -240,22 +238,26 @@ func (p *panel) label(x, y float64, what string, ink color.Color, across text.XA
 	p.labels = append(p.labels, l)
 }
 
-// dimension draws a dimension line near the lower edge, with its length in
-// words beside it.
-func (p *panel) dimension(from, to float64, what string) {
-	p.labels = append(p.labels, dimension{from, to, what, p.plot.X.Tick.Label})
+// dimension draws a dimension line near the edge where the curve is not, with
+// its length in words beside it.
+func (p *panel) dimension(from, to float64, what string, below bool) {
+	p.labels = append(p.labels, dimension{from, to, what, below, p.plot.X.Tick.Label})
 }
 
 type dimension struct {
 	from, to float64
 	what     string
+	below    bool // the curve is below, so that the line goes to the upper edge
 	style    draw.TextStyle
 }
 
-// Plot draws two arrows away from each other between two short end lines.
+// Plot draws a line with arrowheads between two short end lines.
 func (d dimension) Plot(c draw.Canvas, p *plot.Plot) {
 	toX, _ := p.Transforms(&c)
-	y := c.Max.Y - 4*vg.Millimeter
+	y := c.Min.Y + 3*vg.Millimeter
+	if d.below {
+		y = c.Max.Y - 3*vg.Millimeter
+	}
 	a, b := toX(d.from), toX(d.to)
 	thin := draw.LineStyle{Color: slate, Width: 0.6}
 	tick, arrow := vg.Length(4), vg.Length(3)
@@ -275,14 +277,15 @@ func (p *panel) finish() error {
 	p.plot.Add(p.ground...)
 	p.plot.Add(p.curve)
 	p.plot.Add(p.labels...)
+	p.plot.Y.Min, p.plot.Y.Max = p.low, p.high // Add widens them to the data
 	return p.err
 }
 
 // evenTicks marks about six multiples of 1, 2 or 5 times a power of ten.
-type evenTicks struct{}
+type evenTicks struct{ bare bool } // bare: without numbers
 
 // Ticks implements plot.Ticker.
-func (evenTicks) Ticks(low, high float64) []plot.Tick {
+func (e evenTicks) Ticks(low, high float64) []plot.Tick {
 	if !(high > low) {
 		return nil
 	}
@@ -295,7 +298,11 @@ func (evenTicks) Ticks(low, high float64) []plot.Tick {
 	}
 	var out []plot.Tick
 	for k := math.Ceil(low / step); k*step <= high; k++ {
-		out = append(out, plot.Tick{Value: k * step, Label: number(k * step)})
+		t := plot.Tick{Value: k*step + 0} // + 0 makes a 0 of −0
+		if t.Label = number(t.Value); e.bare {
+			t.Label = " "
+		}
+		out = append(out, t)
 	}
 	return out
 }
