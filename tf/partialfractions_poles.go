@@ -30,8 +30,8 @@ type expansion struct {
 	factors []factor
 	failure error
 
-	series sync.Once
-	growth growth
+	bounded sync.Once
+	growth  growth
 
 	stage sync.Once
 	quick *quick

@@ -188,7 +188,7 @@ type growth struct{ scale, rate int }
 // coefficients of the reciprocal are at most 1.5·ρ^k, and those of its product
 // with Σ b_j s^(−1−j) at most 1.5·ρ^k·Σ|b_j|ρ^−j.
 func (e *expansion) bound() growth {
-	e.series.Do(func() {
+	e.bounded.Do(func() {
 		n := e.den.Degree()
 		lead := e.den.BitLen(n) - 1 // lead ≥ 2^(…)
 		rate := -1 << 30

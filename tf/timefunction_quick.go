@@ -18,12 +18,10 @@ import (
 // and cosine within 2^−79, products and sums within 2^−98. Together that is
 // less than 2^−78.
 const (
-	quickError  = 0x1p-77
-	smallest    = 0x1p-800 // of results that the bound covers
-	largest     = 0x1p+1000
-	negligible  = 0x1p-860 // above e^−600
-	seriesTerms = 64
-	firstTerms  = 24 // of the series up to 1/16 of its range
+	quickError = 0x1p-77
+	smallest   = 0x1p-800 // of results that the bound covers
+	largest    = 0x1p+1000
+	negligible = 0x1p-860 // above e^−600
 )
 
 // double is the sum h + l of two float64, |l| ≤ ulp(h)/2.
@@ -33,15 +31,10 @@ type double struct{ h, l float64 }
 // by a power of 2, and results by scale, its inverse; it differs from 1 where
 // the coefficients are very large or small.
 type quick struct {
-	modes []mode
-	order int
-	scale float64
-	// Below until, the sum of the first n terms series[k]·t^k has an error of
-	// at most quickError·Σ sizes[k]·t^k + remainder(n)·(t/until)^n.
-	series    [seriesTerms]double
-	sizes     [seriesTerms]float64
-	until     float64
-	remainder [2]float64 // for all terms, and for firstTerms
+	modes  []mode
+	order  int
+	scale  float64
+	taylor taylorSeries
 }
 
 // mode is the part of one pole or of a cluster of poles:
@@ -83,7 +76,7 @@ func (e *expansion) prepare() *quick {
 				return
 			}
 			if q, ok := newQuick(parts); ok {
-				e.prepareSeries(q)
+				q.taylor.until = e.seriesRange(q)
 				e.quick = q
 				return
 			}
@@ -181,38 +174,6 @@ func midpoint(x ball.Real) float64 {
 	return math.Abs(v)
 }
 
-// prepareSeries fills in the series μ_k/k!; it stays unused where its
-// coefficients leave the range of the stage.
-func (e *expansion) prepareSeries(q *quick) {
-	g := e.bound()
-	until := 3 - g.rate // ρ·until = 8
-	_, down := math.Frexp(q.scale)
-	size := g.scale - (down - 1)
-	if until < -300 || until > 300 || size > 300 || size < -300 {
-		return
-	}
-	const prec = 256
-	mu := e.markov(seriesTerms, prec)
-	factorial := ball.FromInt64(1)
-	for k, v := range mu {
-		if k > 0 {
-			factorial = factorial.Mul(ball.FromInt64(int64(k)), prec)
-		}
-		c := v.Div(factorial, prec).MulPow2(1 - down)
-		d, ok := doubled(c, midpoint(c))
-		q.series[k], q.sizes[k] = d, math.Abs(d.h)
-		if !ok { // a parameter that is 0, or nearly so
-			q.series[k] = double{}
-			above, _ := c.Abs().Upper().Float64()
-			q.sizes[k] = above/quickError + 0x1p-1000
-		}
-	}
-	q.until = math.Ldexp(1, until)
-	// 2·2^scale·(ρ·until)^n/n! with 64! > 2^295 and 24! > 2^79.
-	q.remainder[0] = math.Ldexp(1, size+1+3*seriesTerms-295)
-	q.remainder[1] = math.Ldexp(1, size+1+3*firstTerms-79)
-}
-
 // quickAt returns the value at th + tl > 0 where the first stage decides it.
 // The time may have a relative error of 2^−104.
 func (e *expansion) quickAt(th, tl float64) (float64, bool) {
@@ -223,8 +184,8 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 	if q == nil {
 		return 0, false
 	}
-	if th < q.until/16 {
-		if v, ok := q.settle(q.near(th, tl, firstTerms)); ok {
+	if th < q.taylor.until/16 {
+		if v, ok := q.settle(e.series(q).near(th, tl, firstTerms)); ok {
 			return v, true
 		}
 	}
@@ -235,8 +196,8 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 	if v, ok := q.settle(sum, bound); ok {
 		return v, true
 	}
-	if th < q.until {
-		return q.settle(q.near(th, tl, seriesTerms))
+	if th < q.taylor.until {
+		return q.settle(e.series(q).near(th, tl, seriesTerms))
 	}
 	return 0, false
 }
@@ -291,28 +252,6 @@ func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
 		magnitude = float64(magnitude*th)*(1+0x1p-50) + c.magnitude
 	}
 	return a, b, magnitude
-}
-
-// near returns the first terms of the Taylor series about 0 and a bound of the
-// error.
-func (q *quick) near(th, tl float64, terms int) (double, float64) {
-	sum := q.series[terms-1]
-	magnitude := q.sizes[terms-1]
-	for k := terms - 2; k >= 0; k-- {
-		sum = product2(sum, th, tl).plus(q.series[k])
-		magnitude = float64(magnitude*th) + q.sizes[k]
-	}
-	ratio, rest := th/q.until, q.remainder[0]
-	eighth := ratio * ratio
-	eighth *= eighth
-	eighth *= eighth
-	power := float64(eighth*eighth) * eighth // 24th
-	if terms == firstTerms {
-		rest = q.remainder[1]
-	} else {
-		power = float64(power*power) * float64(eighth*eighth) // 64th
-	}
-	return sum, magnitude*quickError + rest*power*(1+0x1p-40)
 }
 
 // settle rounds sum where every number within bound of it rounds alike.

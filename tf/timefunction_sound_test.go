@@ -67,12 +67,12 @@ func TestQuickStageIsSound(t *testing.T) {
 			}
 			sum, bound, _ := q.far(x, 0)
 			check(sum, bound, "the sum of modes")
-			if x < q.until {
-				sum, bound := q.near(x, 0, seriesTerms)
+			if x < q.taylor.until {
+				sum, bound := e.series(q).near(x, 0, seriesTerms)
 				check(sum, bound, "the series")
 			}
-			if x < q.until/16 {
-				sum, bound := q.near(x, 0, firstTerms)
+			if x < q.taylor.until/16 {
+				sum, bound := e.series(q).near(x, 0, firstTerms)
 				check(sum, bound, "the short series")
 			}
 		}
