@@ -88,9 +88,11 @@ func axisTerms(p intpoly.Poly) (terms []axisTerm, exponent int, ok bool) {
 // ω·O, each as an unevaluated sum of two float64, and the same with the absolute
 // values of all terms, added up.
 func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, size float64) {
-	var e, eLow, eSize, o, oLow, oSize float64
+	t := &terms[0]
+	e, eLow, eSize := t.even, t.evenLow, math.Abs(t.even)
+	o, oLow, oSize := t.odd, t.oddLow, math.Abs(t.odd)
 	wa := math.Abs(wh)
-	for i := range terms {
+	for i := 1; i < len(terms); i++ {
 		t := &terms[i]
 		// p + (rounding error of p) = e·wh exactly; s + sLow = p + t.even exactly
 		p := float64(e * wh)
@@ -172,8 +174,8 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	}
 	x := float64(math.FMA(a, c, float64(b*d)) * inverse)
 	y := float64(math.FMA(b, c, -float64(a*d)) * inverse)
-	restRe := residual(a, aLow, x, c, cLow, -y, d, dLow)
-	restIm := residual(b, bLow, y, c, cLow, x, d, dLow)
+	restRe := residual(a, aLow, -x, c, cLow, y, d, dLow)
+	restIm := residual(b, bLow, -y, c, cLow, -x, d, dLow)
 	x, xLow := twoSum(x, float64(math.FMA(restRe, c, float64(restIm*d))*inverse))
 	y, yLow := twoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse))
 	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
@@ -183,14 +185,13 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	return complex(x*r.factor, y*r.factor), reOK, imOK
 }
 
-// residual is a − p·c − q·d, where that is small, for unevaluated sums a, c and
+// residual is a + p·c + q·d, where that is small, for unevaluated sums a, c and
 // d.
 func residual(a, aLow, p, c, cLow, q, d, dLow float64) float64 {
 	pc := float64(p * c)
 	qd := float64(q * d)
-	s, e := twoSum(a, -pc)
-	low := (aLow + e) - (math.FMA(p, c, -pc) + math.FMA(q, d, -qd))
-	return (s - qd) + math.FMA(-q, dLow, math.FMA(-p, cLow, low))
+	s, e := twoSum(a, pc)
+	return (s + qd) + math.FMA(q, dLow, math.FMA(p, cLow, e+aLow+(math.FMA(p, c, -pc)+math.FMA(q, d, -qd))))
 }
 
 // magnitude returns the absolute value at jω; ok tells that it is certainly

@@ -17,7 +17,7 @@
 // JunctionError.
 //
 //	pool := tf.MustParse("exp(-180 s) 1.12/(1493 s + 1) [mm -> mm]")
-//	fmt.Println(pool.StaticGain())
+//	fmt.Println(tf.Must(pool.StaticGain()), pool.DeadTime())
 package tf
 
 import (
