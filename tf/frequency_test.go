@@ -1,6 +1,7 @@
 package tf
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"testing"
@@ -29,16 +30,19 @@ func TestFrequencyStages(t *testing.T) {
 		name  string
 		block func() Continuous
 		most  float64 // largest share of points that the exact stage may get
+		near  float64 // where the points gather, or 0
 	}{
-		{"benchmark", func() Continuous { return frequencyInput(1 + r.intn(20)) }, 0.01},
-		{"random", func() Continuous { return Must(New(r.poly(1+r.intn(12)), r.poly(1+r.intn(12)))) }, 0.01},
-		{"even", func() Continuous { return Must(New(poly.MustParse("s^2 + 3"), poly.MustParse("s^4 + 7 s^2 + 11"))) }, 0.01},
-		{"imaginary", func() Continuous { return MustParse("s/(s^2 + 3)") }, 0.01},
+		{"benchmark", func() Continuous { return frequencyInput(1 + r.intn(20)) }, 0.01, 0},
+		{"random", func() Continuous { return Must(New(r.poly(1+r.intn(12)), r.poly(1+r.intn(12)))) }, 0.01, 0},
+		{"even", func() Continuous { return Must(New(poly.MustParse("s^2 + 3"), poly.MustParse("s^4 + 7 s^2 + 11"))) }, 0.01, 0},
+		{"imaginary", func() Continuous { return MustParse("s/(s^2 + 3)") }, 0.01, 0},
 		{"lightly damped", func() Continuous {
 			k := int64(1 + r.intn(1000))
 			return Must(New(ints(1, 1), ints(1000000*k, 1, 1000000))) // ζ near 1e-6
-		}, 0.05},
-		{"near cancellation", func() Continuous { return MustParse("(s^2 + 0.000001 s + 4)/((s^2 + 0.0000010001 s + 4) (s + 1)^5)") }, 0.05},
+		}, 0.05, 0},
+		{"at the resonance", func() Continuous { return MustParse("(s + 1)/(s^2 + 0.000002 s + 1)") }, 0.6, 1},
+		{"at the edge of stability", func() Continuous { return MustParse("(s + 3)/((s^2 + 1e-14 s + 2) (s + 1)^7)") }, 1, math.Sqrt2},
+		{"near cancellation", func() Continuous { return MustParse("(s^2 + 0.000001 s + 4)/((s^2 + 0.0000010001 s + 4) (s + 1)^5)") }, 0.05, 0},
 	}
 	for _, family := range families {
 		points, undecided := 0, 0
@@ -53,6 +57,9 @@ func TestFrequencyStages(t *testing.T) {
 				omega := math.Ldexp(float64(r.next()>>11), r.intn(14)-60)
 				if r.intn(3) == 0 {
 					omega = -omega
+				}
+				if family.near > 0 { // as near to the resonance as float64 goes, and less so
+					omega = family.near * (1 + float64(float64(r.intn(64)-32)*math.Ldexp(1, -20-r.intn(33))))
 				}
 				want, err := f.exactAt(omega)
 				if err != nil {
@@ -91,6 +98,65 @@ func BenchmarkFrequencyResponse(b *testing.B) {
 				}
 				if i++; i == 1000 {
 					i = 0
+				}
+			}
+		})
+	}
+}
+
+// FuzzFrequencyStages compares the first stage with the exact one.
+func FuzzFrequencyStages(f *testing.F) {
+	f.Add(int64(1), int64(2), int64(3), int64(4), int64(5), int64(6), 1.5)
+	f.Add(int64(1), int64(0), int64(-1), int64(1<<62), int64(1), int64(-1<<62), 1e-9)
+	f.Fuzz(func(t *testing.T, a, b, c, d, e, g int64, omega float64) {
+		function, err := New(ints(a, b, c, a), ints(d, e, g))
+		if err != nil || math.IsNaN(omega-omega) {
+			return
+		}
+		p := function.FrequencyFunction().p
+		if p.fast == nil {
+			return
+		}
+		want, err := p.exactAt(omega)
+		v, reOK, imOK := p.fast.value(omega)
+		if err != nil && (reOK || imOK) && !errors.Is(err, ErrRange) {
+			t.Fatalf("%v at %v: %v, exactly %v", function, omega, v, err)
+		}
+		if err == nil && (reOK && real(v) != real(want) || imOK && imag(v) != imag(want)) {
+			t.Fatalf("%v at %v: %v, exactly %v", function, omega, v, want)
+		}
+		size, err := p.exactMagnitude(omega)
+		if v, ok := p.fast.magnitude(omega); ok && (err != nil || v != size) {
+			t.Fatalf("magnitude of %v at %v: %v, exactly %v, %v", function, omega, v, size, err)
+		}
+	})
+}
+
+// BenchmarkFrequencyExact is the stage behind the first one.
+func BenchmarkFrequencyExact(b *testing.B) {
+	for _, n := range []int{4, 10, 20} {
+		b.Run(fmt.Sprintf("degree=%d", n), func(b *testing.B) {
+			f := frequencyInput(n).FrequencyFunction().p
+			for b.Loop() {
+				if _, err := f.exactAt(0.7345); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+// BenchmarkFrequencyRead is one reading of each kind of a loop with dead time.
+func BenchmarkFrequencyRead(b *testing.B) {
+	f := MustParse("exp(-180 s) 4.032 (1500 s + 1)/(1500 s (1493 s + 1) (15 s + 1))").FrequencyFunction()
+	for name, read := range map[string]func(float64) (float64, error){
+		"magnitude": f.Magnitude, "decibels": f.Decibels, "phase": f.Phase, "delay": f.GroupDelay,
+		"value": func(w float64) (float64, error) { v, err := f.At(w); return real(v), err },
+	} {
+		b.Run(name, func(b *testing.B) {
+			for b.Loop() {
+				if _, err := read(0.0024); err != nil {
+					b.Fatal(err)
 				}
 			}
 		})
