@@ -186,3 +186,9 @@ func (s *System) UnmarshalJSON(text []byte) error {
 	}
 	return err
 }
+
+// MarshalText is MarshalJSON, for formats that hold text.
+func (s *System) MarshalText() ([]byte, error) { return s.MarshalJSON() }
+
+// UnmarshalText is ParseSystem.
+func (s *System) UnmarshalText(text []byte) error { return s.UnmarshalJSON(text) }

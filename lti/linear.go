@@ -16,6 +16,7 @@ type value struct {
 	number    *big.Rat        // nil is 0
 	terms     map[derivative]*big.Rat
 	zero      bool // a literal 0, which has any dimension
+	degree    int  // bounds the factors in it, so that exponents of units stay small
 }
 
 // derivative is a signal by its index, and the order of its derivative.
@@ -34,6 +35,7 @@ const (
 	nonlinear = "a transfer function holds only for equations that are linear in the signals; " +
 		"replace the term by its slope at an operating point (linearise)"
 	maxRatBits = 1 << 16 // of a number in an equation
+	maxFactors = 1 << 12 // signals and constants in a product, powers counted out
 )
 
 func (e *evaluator) fail(n *node, format string, args ...any) (value, bool) {
@@ -73,7 +75,7 @@ func (e *evaluator) evaluate(n *node) (v value, ok bool) {
 func (e *evaluator) name(n *node) (value, bool) {
 	if i, ok := e.system.signalIndex(n.name); ok {
 		s := e.system.signals[i]
-		return value{dimension: s.Unit.Dimension().WithoutAngle(),
+		return value{dimension: s.Unit.Dimension().WithoutAngle(), degree: 1,
 			terms: map[derivative]*big.Rat{{i, 0}: big.NewRat(1, 1)}}, true
 	}
 	if i, ok := e.system.constantIndex(n.name); ok {
@@ -82,7 +84,7 @@ func (e *evaluator) name(n *node) (value, bool) {
 			return e.failWith(n, nil, "the constant is in %s, which counts cycles or degrees; an equation needs radians: write %s", symbol, inRadians(q))
 		}
 		number := q.Value()
-		return value{dimension: q.Unit().Dimension().WithoutAngle(), number: number.Mul(number, q.Unit().Scale())}, true
+		return value{dimension: q.Unit().Dimension().WithoutAngle(), degree: 1, number: number.Mul(number, q.Unit().Scale())}, true
 	}
 	return e.fail(n, "no signal or constant has this name; declared are %s", e.system.names())
 }
@@ -122,16 +124,22 @@ func (e *evaluator) add(n *node, a, b value) (value, bool) {
 		return e.failWith(n, &units.MismatchError{Found: found, Want: want},
 			"the term is in %s (in base units), the terms before it in %s", found, want)
 	}
-	sum := value{dimension: a.dimension, number: new(big.Rat).Add(a.rat(), b.rat()), terms: map[derivative]*big.Rat{}}
-	for _, v := range []value{a, b} {
-		for k, c := range v.terms {
-			if sum.terms[k] == nil {
-				sum.terms[k] = new(big.Rat)
-			}
-			sum.terms[k].Add(sum.terms[k], c)
-		}
+	// A value has one owner, so that the terms of a can take those of b: a long
+	// sum is linear work.
+	a.number = new(big.Rat).Add(a.rat(), b.rat())
+	if a.terms == nil {
+		a.terms = make(map[derivative]*big.Rat, len(b.terms))
 	}
-	return sum, true
+	a.degree = max(a.degree, b.degree)
+	grown := value{number: a.number, terms: make(map[derivative]*big.Rat, len(b.terms)), degree: a.degree}
+	for k, c := range b.terms {
+		if old := a.terms[k]; old != nil {
+			c = new(big.Rat).Add(old, c)
+		}
+		a.terms[k], grown.terms[k] = c, c
+	}
+	_, ok := e.bounded(n, grown)
+	return a, ok
 }
 
 func (v value) rat() *big.Rat {
@@ -143,7 +151,7 @@ func (v value) rat() *big.Rat {
 
 // times returns v·k, with d as the dimension of k.
 func (v value) times(k *big.Rat, d units.Dimension) value {
-	out := value{dimension: v.dimension.Mul(d), number: new(big.Rat).Mul(v.rat(), k), zero: v.zero}
+	out := value{dimension: v.dimension.Mul(d), number: new(big.Rat).Mul(v.rat(), k), zero: v.zero, degree: v.degree}
 	if len(v.terms) > 0 {
 		out.terms = make(map[derivative]*big.Rat, len(v.terms))
 		for t, c := range v.terms {
@@ -168,7 +176,7 @@ func (e *evaluator) product(n *node) (value, bool) {
 		case b.rat().Sign() == 0:
 			return e.fail(n.b, "a division by zero")
 		}
-		b = value{dimension: units.Dimension{}.Div(b.dimension), number: new(big.Rat).Inv(b.rat())}
+		b = value{dimension: units.Dimension{}.Div(b.dimension), number: new(big.Rat).Inv(b.rat()), degree: b.degree}
 	}
 	if !a.isConstant() && !b.isConstant() {
 		return e.fail(n, "a product of signals is not linear: %s", nonlinear)
@@ -177,6 +185,7 @@ func (e *evaluator) product(n *node) (value, bool) {
 		a, b = b, a
 	}
 	out := a.times(b.rat(), b.dimension)
+	out.degree += b.degree
 	out.zero = a.zero || b.zero
 	return e.bounded(n, out)
 }
@@ -189,6 +198,9 @@ func (e *evaluator) bounded(n *node, v value) (value, bool) {
 	}
 	if size > maxRatBits {
 		return e.failWith(n, ErrLimit, "a number of more than %d bits", maxRatBits)
+	}
+	if v.degree > maxFactors {
+		return e.failWith(n, ErrLimit, "a product of more than %d factors", maxFactors)
 	}
 	return v, true
 }
@@ -218,7 +230,8 @@ func (e *evaluator) power(n *node) (value, bool) {
 	for range k {
 		out = out.times(factor.number, factor.dimension)
 	}
-	return out, true
+	out.degree = a.degree * k
+	return e.bounded(n, out)
 }
 
 func (e *evaluator) derivative(n *node) (value, bool) {
@@ -229,7 +242,7 @@ func (e *evaluator) derivative(n *node) (value, bool) {
 	if a.isConstant() {
 		return e.fail(n, "the derivative of a constant; primes belong to signals")
 	}
-	out := value{dimension: a.dimension, terms: make(map[derivative]*big.Rat, len(a.terms))}
+	out := value{dimension: a.dimension, degree: a.degree, terms: make(map[derivative]*big.Rat, len(a.terms))}
 	for range n.order {
 		out.dimension = out.dimension.Div(second)
 	}

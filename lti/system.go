@@ -77,8 +77,16 @@ func (s *System) WithConstant(name, quantity string) (*System, error) {
 // in their declared units and under their names, for zero initial conditions.
 // The output may be a derivative of a signal, as in "level'". Which signal is
 // the input is chosen here and may differ from call to call: the equations must
-// determine all other signals from it. Further inputs, such as disturbances,
-// are named in held and are 0.
+// determine all other signals from it.
+//
+// Further inputs, such as disturbances, are 0. They may be named in held; where
+// they are not, they are the signals that no equation determines. The equations
+// are taken to determine, until there are as many signals as equations: the
+// output; then the signals that are differentiated somewhere; then those that
+// stand alone on the left side of an equation; then those alone on a right
+// side; then the others. Where one of these kinds would have to be split, the
+// choice is not obvious and an error asks for held. A signal that stands in no
+// equation plays no part.
 //
 // All other signals are eliminated exactly by Cramer's rule: the denominator
 // is the determinant of the equations and nothing is cancelled, so that modes
@@ -145,14 +153,9 @@ func (s *System) lookUp(names []string) ([]int, error) {
 // eliminate returns the numerator and the denominator from one signal to
 // another in coherent units.
 func (s *System) eliminate(input, output int, zero []int) (num, den intpoly.Poly, err error) {
-	var unknowns []int
-	for i := range s.signals {
-		if i != input && !slices.Contains(zero, i) {
-			unknowns = append(unknowns, i)
-		}
-	}
-	if len(unknowns) != len(s.rows) {
-		return num, den, s.miscounted(input, unknowns)
+	unknowns, err := s.unknowns(input, output, zero)
+	if err != nil {
+		return num, den, err
 	}
 	a, b := make([][]intpoly.Poly, len(s.rows)), make([]intpoly.Poly, len(s.rows))
 	for i, row := range s.rows {
@@ -174,20 +177,6 @@ func (s *System) eliminate(input, output int, zero []int) (num, den intpoly.Poly
 		return num, den, e
 	}
 	return num, den, err
-}
-
-// miscounted explains that the number of equations is not that of unknowns.
-func (s *System) miscounted(input int, unknowns []int) error {
-	e := &DeterminacyError{Equations: len(s.rows), Unknowns: s.namesOf(unknowns)}
-	list := strings.Join(e.Unknowns, ", ")
-	if missing := len(unknowns) - len(s.rows); missing > 0 {
-		e.Reason = fmt.Sprintf("%d equations for %d unknown signals (%s) with %s as the input: name %d further inputs to hold at 0, as in TransferFunction(in, out, %q), or add equations",
-			len(s.rows), len(unknowns), list, s.signals[input].Name, missing, e.Unknowns[len(e.Unknowns)-1])
-	} else {
-		e.Reason = fmt.Sprintf("%d equations for %d unknown signals (%s) with %s as the input: too many; leave %d out, or hold fewer signals at 0",
-			len(s.rows), len(unknowns), list, s.signals[input].Name, -missing)
-	}
-	return e
 }
 
 func (s *System) namesOf(indices []int) []string {

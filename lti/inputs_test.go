@@ -1,0 +1,144 @@
+package lti_test
+
+import (
+	"encoding/json"
+	"errors"
+	"strings"
+	"testing"
+
+	"github.com/qofs/qofs/lti"
+	"github.com/qofs/qofs/tf"
+)
+
+func record(signals, constants map[string]string, equations ...string) *lti.Equations {
+	e := lti.NewEquations()
+	for name, unit := range signals {
+		e.Signal(name, unit)
+	}
+	for name, quantity := range constants {
+		e.Constant(name, quantity)
+	}
+	for _, text := range equations {
+		e.Equation(text)
+	}
+	return e
+}
+
+// The inputs that are not named are those that the form of the equations says.
+func TestOtherInputsAreZero(t *testing.T) {
+	s := build(t, pool())
+	want(t, s, "offtake", "level", "-1/(5600 s + 3.75) [m^3/s -> m]")
+	want(t, s, "offtake", "inflow", "2.5/(5600 s + 3.75) [m^3/s -> m^3/s]")
+
+	// Two forces on two bodies; each stands alone on a right side.
+	bench := build(t, record(map[string]string{"x1": "mm", "x2": "mm", "f1": "N", "f2": "N"},
+		map[string]string{"m1": "2 kg", "m2": "3 kg", "k": "5 N/mm"},
+		"m1 x1'' + k (x1 - x2) = f1", "m2 x2'' + k (x2 - x1) = f2"))
+	for _, held := range [][]string{nil, {"f2"}} {
+		g, err := bench.TransferFunction("f1", "x2", held...)
+		if err != nil || !g.Equivalent(tf.MustParse("5000000/(s^2 (6 s^2 + 25000)) [N -> mm]")) {
+			t.Errorf("held %v: %v, %v", held, g, err)
+		}
+	}
+
+	// The ground moves a mounted body on which a force acts: x and z both are
+	// differentiated, so that the form does not say which one is an input.
+	mount := build(t, record(map[string]string{"x": "mm", "z": "mm", "f": "N"},
+		map[string]string{"m": "2 kg", "c": "3 N*s/m", "k": "5 N/m"}, "m x'' = c (z' - x') + k (z - x) + f"))
+	var open *lti.DeterminacyError
+	if g, err := mount.TransferFunction("f", "x"); err != nil || !g.Equivalent(tf.MustParse("1000/(2 s^2 + 3 s + 5) [N -> mm]")) {
+		t.Errorf("the output is determined before others: %v, %v", g, err)
+	}
+	want(t, mount, "z", "x", "(3 s + 5)/(2 s^2 + 3 s + 5) [mm -> mm]")
+	if _, err := s.TransferFunction("inflow", "level"); !errors.As(err, &open) || !strings.Contains(err.Error(), `TransferFunction("inflow", "level", "offtake")`) {
+		t.Errorf("opening or offtake might be the other input: %v", err)
+	}
+	want(t, s, "inflow", "level", "1/(5600 s + 1.25) [m^3/s -> m]", "offtake")
+}
+
+func TestSignalsInNoEquation(t *testing.T) {
+	s := build(t, record(map[string]string{"u": "1", "x": "1", "y": "1", "spare": "V"}, map[string]string{"T": "2 s", "none": "0"},
+		"T x' + x = u + none y"))
+	want(t, s, "u", "x", "1/(2 s + 1)")
+	for _, pair := range [][2]string{{"u", "spare"}, {"spare", "x"}, {"u", "y"}} {
+		var open *lti.DeterminacyError
+		if g, err := s.TransferFunction(pair[0], pair[1]); !errors.As(err, &open) || !strings.Contains(err.Error(), "stands in no equation") {
+			t.Errorf("%v: %v, %v", pair, g, err)
+		}
+	}
+}
+
+// Sources: Kirchhoff's laws on a ladder of two sections, solved by hand; the
+// furnace zone of two thermal nodes, whose steady states follow from the losses
+// alone.
+func TestNetworks(t *testing.T) {
+	ladder := build(t, record(map[string]string{"v": "V", "v1": "V", "v2": "V", "i1": "mA", "i2": "mA"},
+		map[string]string{"R": "2 kohm", "C": "50 uF"},
+		"v = R i1 + v1", "v1 = R i2 + v2", "i1 - i2 = C v1'", "i2 = C v2'"))
+	// RC = 0.1 s: 1/((RC s)^2 + 3 RC s + 1), the impedance 1/(R (…)) for i1.
+	want(t, ladder, "v", "v2", "1/(0.01 s^2 + 0.3 s + 1) [V -> V]")
+	want(t, ladder, "v", "i1", "(0.005 s^2 + 0.1 s)/(0.01 s^2 + 0.3 s + 1) [V -> mA]")
+
+	kiln := build(t, record(map[string]string{"power": "W", "element": "K", "load": "K", "leak": "W"},
+		map[string]string{"Ce": "18 kJ/K", "Cl": "60 kJ/K", "coupling": "0.0075 K/W", "loss": "0.12 K/W"},
+		"Ce element' = power - (element - load)/coupling", "Cl load' = (element - load)/coupling - leak", "leak = load/loss"))
+	for output, gain := range map[string]string{"element": "0.1275 K/W", "load": "0.12 K/W"} {
+		g, err := kiln.TransferFunction("power", output)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if k, err := g.StaticGain(); err != nil || k.String() != gain {
+			t.Errorf("%s: static gain %v, %v, want %s", output, k, err, gain)
+		}
+		poles, err := g.Poles()
+		if err != nil || len(poles) != 2 {
+			t.Fatal(poles, err)
+		}
+		// The scenario's time constants of 103.5 s and 9392 s.
+		for i, want := range []float64{103.5, 9392} {
+			if tau := -1 / real(poles[i].Value); !(tau > want*(1-5e-4) && tau < want*(1+5e-4)) {
+				t.Errorf("%s: time constant %g s, want %g s", output, tau, want)
+			}
+		}
+	}
+}
+
+func TestHostileEquations(t *testing.T) {
+	power := "a"
+	for range 8 {
+		power = "(" + power + ")^64"
+	}
+	var long strings.Builder
+	long.WriteString("x = y")
+	digits := strings.Repeat("7", 4000)
+	for i := range 200 {
+		long.WriteString(" + y/" + digits + string(rune('0'+i%10)) + string(rune('0'+i/10%10)) + "1")
+	}
+	for name, text := range map[string]string{
+		"exponents of units": power + " x = y", "digits": long.String(),
+		"factors": "x = " + strings.Repeat("a ", 4500) + "y",
+	} {
+		_, err := record(map[string]string{"x": "m", "y": "m"}, map[string]string{"a": "1 s"}, text).Build()
+		var q *lti.EquationError
+		if !errors.As(err, &q) || !errors.Is(err, lti.ErrLimit) {
+			t.Errorf("%s: %.200v, want an EquationError that wraps ErrLimit", name, err)
+		}
+	}
+}
+
+func TestTextForms(t *testing.T) {
+	s := build(t, pool())
+	text, err := s.MarshalText()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var back lti.System
+	if err := back.UnmarshalText(text); err != nil || back.String() != s.String() {
+		t.Errorf("%s reads back as %v, %v", text, &back, err)
+	}
+	// A value in a struct is the same JSON.
+	outer, err := json.Marshal(struct{ Plant *lti.System }{s})
+	if err != nil || string(outer) != `{"Plant":`+string(text)+`}` {
+		t.Errorf("%s, %v", outer, err)
+	}
+}
