@@ -31,7 +31,7 @@ type FrequencyFunction struct {
 // frequencyFunction is what a FrequencyFunction points to; it never changes.
 type frequencyFunction struct {
 	c    core
-	fast *axisRatio // nil where float64 does not reach, and with dead time
+	fast *axisRatio // of the rational part; nil where float64 does not reach
 
 	isReal, isImaginary bool // of the rational part, for all ω
 
@@ -52,9 +52,7 @@ func (f FrequencyFunction) data() *frequencyFunction {
 // FrequencyFunction returns g on the imaginary axis.
 func (g Continuous) FrequencyFunction() FrequencyFunction {
 	f := &frequencyFunction{c: g.c}
-	if g.c.delay == nil {
-		f.fast, _ = newAxisRatio(g.c.f)
-	}
+	f.fast, _ = newAxisRatio(g.c.f)
 	// num·conj(den) = (E O' − E' O)·jω + (E E' + ω² O O') with E(−ω²) and so on
 	e, o := g.c.f.Num().EvenOdd()
 	e2, o2 := g.c.f.Den().EvenOdd()
@@ -72,7 +70,7 @@ func (f FrequencyFunction) Unit() units.Unit { return f.data().c.gainUnit() }
 // component that is 0 for all ω is exactly 0. The errors are those of
 // Continuous.At.
 func (f FrequencyFunction) At(omega float64) (complex128, error) {
-	if f.p != nil && f.p.fast != nil {
+	if f.p != nil && f.p.fast != nil && f.p.c.delay == nil {
 		v, reOK, imOK := f.p.fast.value(omega)
 		if reOK && imOK {
 			return v, nil

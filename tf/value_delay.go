@@ -10,7 +10,7 @@ import (
 )
 
 const (
-	delayStartBits = 128
+	delayStartBits = 96
 	// delayLimitBits is the precision at which a value with dead time is given
 	// up. An argument of the cosine near 2^1024 alone takes 1024 bits.
 	delayLimitBits = 1 << 14
@@ -41,32 +41,37 @@ func (q *complexQuotient) delayed(t *big.Rat, x, y float64) (complex128, error) 
 		}
 		return 0, fmt.Errorf("tf: value with a factor exp(%.4g): %w", g, fault.ErrRange)
 	}
-	component := func(imaginary bool) (float64, error) {
-		if angle.Sign() == 0 && (imaginary && q.im.Sign() == 0 || !imaginary && q.re.Sign() == 0) {
-			return 0, nil
+	// Both components come from the same ball, which is computed once for a
+	// precision.
+	var z ball.Complex
+	var have uint
+	at := func(prec uint) ball.Complex {
+		if prec != have {
+			z, have = q.turned(growth, angle, prec), prec
 		}
-		return ball.Round(delayStartBits, delayLimitBits, func(prec uint) (ball.Real, error) {
-			a, b := ball.FromInt(q.re).Round(prec), ball.FromInt(q.im).Round(prec)
-			if angle.Sign() != 0 {
-				phi := ball.FromRat(angle, prec)
-				cos, sin := phi.Cos(prec), phi.Sin(prec)
-				if imaginary {
-					a, b = b, a.Neg()
-				}
-				a = a.Mul(cos, prec).Add(b.Mul(sin, prec), prec)
-			} else if imaginary {
-				a = b
-			}
-			e := ball.FromRat(growth, prec).Exp(prec)
-			return a.Mul(e, prec).Div(ball.FromInt(q.below).Round(prec), prec).MulPow2(q.exponent), nil
-		})
+		return z
 	}
-	re, err := component(false)
+	re, err := ball.Round(delayStartBits, delayLimitBits, func(prec uint) (ball.Real, error) { return at(prec).Re, nil })
 	if err != nil {
 		return 0, err
 	}
-	im, err := component(true)
+	im, err := ball.Round(delayStartBits, delayLimitBits, func(prec uint) (ball.Real, error) { return at(prec).Im, nil })
 	return complex(re, im), err
+}
+
+// turned is q·exp(growth − angle·i). A component that is exactly 0 is 0 in the
+// result.
+func (q *complexQuotient) turned(growth, angle *big.Rat, prec uint) ball.Complex {
+	re, im := ball.FromInt(q.re).Round(prec), ball.FromInt(q.im).Round(prec)
+	if angle.Sign() != 0 {
+		sin, cos := ball.FromRat(angle, prec).SinCos(prec)
+		re, im = re.Mul(cos, prec).Add(im.Mul(sin, prec), prec), im.Mul(cos, prec).Sub(re.Mul(sin, prec), prec)
+	}
+	scale := ball.FromInt(q.below).Round(prec)
+	if growth.Sign() != 0 {
+		scale = scale.Mul(ball.FromRat(growth, prec).Neg().Exp(prec), prec)
+	}
+	return ball.NewComplex(re.Div(scale, prec).MulPow2(q.exponent), im.Div(scale, prec).MulPow2(q.exponent))
 }
 
 // exactFloat is x as a rational number.
