@@ -4,6 +4,8 @@ import (
 	"math/big"
 	"math/rand/v2"
 	"testing"
+
+	"github.com/google/go-cmp/cmp"
 )
 
 // fromRoots multiplies random factors whose roots lie where the counts say.
@@ -57,8 +59,9 @@ func TestCountsOfKnownRoots(t *testing.T) {
 	random := rand.New(rand.NewPCG(3, 4))
 	for range 400 {
 		p, want := randomWithCounts(random, false)
-		if got, err := p.HalfPlane(); err != nil || got != want {
-			t.Fatalf("HalfPlane of %v = %+v, %v, want %+v", p, got, err, want)
+		got, err := p.HalfPlane()
+		if diff := cmp.Diff(want, got); err != nil || diff != "" {
+			t.Fatalf("HalfPlane of %v, %v:\n%s", p, err, diff)
 		}
 		p, want = randomWithCounts(random, true)
 		if got, err := p.UnitCircle(); err != nil || got != want {

@@ -105,7 +105,8 @@ func (x Real) MulPow2(k int) Real {
 	if !x.IsFinite() {
 		return x
 	}
-	k = min(max(k, -4*maxExponent), 4*maxExponent)
+	const most = 2*maxExponent + 2 // turns any midpoint out of its range
+	k = min(max(k, -most), most)
 	rad := x.rad.mulPow2(k)
 	if x.mid == nil {
 		return settle(nil, rad)

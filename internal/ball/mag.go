@@ -71,7 +71,7 @@ func (a mag) mulPow2(k int) mag {
 	if a.m == 0 || a.isInf() {
 		return a
 	}
-	k = min(max(k, -1<<31), 1<<31)
+	k = min(max(k, -1<<31), 1<<31-1)
 	return makeMag(uint64(a.m), int64(a.e)+int64(k))
 }
 

@@ -52,9 +52,7 @@ func combine(p, q Poly, mask uint64) Poly {
 	terms := max(p.terms(), q.terms())
 	w := make([]uint64, terms*n)
 	if n == 1 {
-		for i, x := range p.w {
-			w[i] = x
-		}
+		copy(w, p.w)
 		for i, x := range q.w {
 			w[i] += (x ^ mask) - mask
 		}

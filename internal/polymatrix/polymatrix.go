@@ -51,7 +51,7 @@ func Solve(a [][]intpoly.Poly, b []intpoly.Poly, column int) (num, den intpoly.P
 		degree += d
 	}
 	words := n * (bits + 8*(degree/max(n, 1)+1) + 8) / 64
-	if n > MaxSize || degree > MaxDegree || (degree+1)*n*n*n/3*(words+1)*(words+1) > maxWork {
+	if n > MaxSize || degree > MaxDegree || work(degree, n, words) > maxWork {
 		return num, den, fault.ErrLimit
 	}
 	order := unknownLast(n, column)
@@ -74,6 +74,11 @@ func Solve(a [][]intpoly.Poly, b []intpoly.Poly, column int) (num, den intpoly.P
 		xs, nums, dens = append(xs, x), append(nums, r), append(dens, d)
 	}
 	return interpolate(xs, nums), interpolate(xs, dens), nil
+}
+
+// work estimates the word multiplications of a solution.
+func work(degree, n, words int) int64 {
+	return int64(degree+1) * int64(n) * int64(n) * int64(n) / 3 * int64(words+1) * int64(words+1)
 }
 
 // unknownLast returns the columns in order with one of them moved to the end.

@@ -19,7 +19,7 @@ import (
 const (
 	maxDegree = lex.MaxDegree
 	maxBits   = 1 << 18 // of a coefficient
-	maxWork   = 1 << 28 // word multiplications over a whole text
+	maxWork   = 1 << 26 // word multiplications over a whole text
 )
 
 // Parse reads a whole text as a ratio of polynomials in a variable; where
