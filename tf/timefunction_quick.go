@@ -185,7 +185,7 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		return 0, false
 	}
 	if th < q.taylor.until/16 {
-		if v, ok := q.settle(e.series(q).near(th, tl, firstTerms)); ok {
+		if v, ok := q.settle(e.series(q).at(th, tl)); ok {
 			return v, true
 		}
 	}
@@ -197,7 +197,7 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		return v, true
 	}
 	if th < q.taylor.until {
-		return q.settle(e.series(q).near(th, tl, seriesTerms))
+		return q.settle(e.series(q).at(th, tl))
 	}
 	return 0, false
 }

@@ -152,7 +152,7 @@ func (s *sampler) time(k int) double {
 // one evaluates a single sample.
 func (s *sampler) one(y []float64, k int) error {
 	t := s.time(k - s.first)
-	v, ok := s.e.quickAt(t.h, t.l)
+	v, ok := s.quickly(t)
 	if !ok {
 		x := new(big.Rat).SetFloat64(s.dt)
 		x.Mul(x, big.NewRat(int64(k), 1))
@@ -166,6 +166,17 @@ func (s *sampler) one(y []float64, k int) error {
 	}
 	y[k] = v
 	return nil
+}
+
+// quickly is quickAt with the series first: what the table left undecided
+// cancels.
+func (s *sampler) quickly(t double) (float64, bool) {
+	if q := s.e.prepare(); q != nil && t.h < q.taylor.until && t.h > 0x1p-300 {
+		if v, ok := q.settle(s.e.series(q).at(t.h, t.l)); ok {
+			return v, true
+		}
+	}
+	return s.e.quickAt(t.h, t.l)
 }
 
 // fine is the number of rows of the table whose exponentials are computed;
@@ -197,22 +208,18 @@ func (s *sampler) tabulate(q *quick, count int) bool {
 	}
 	round := math.Ldexp(1.5, 52-s.slice)
 	for l := range s.scales {
-		size := 0.0
-		column := values[l*s.block:][:s.block]
-		for _, v := range column {
-			size = max(size, math.Abs(v.h))
-		}
+		size := s.scales[l]
 		if !(size < 0x1p300 && s.slack[l] < 0x1p300) {
 			return false
 		}
 		_, exponent := math.Frexp(max(size, 0x1p-300))
 		s.scales[l] = math.Ldexp(1, exponent)
 		down := math.Ldexp(1, -exponent)
-		for j, v := range column {
+		b, b1, b2 := s.column(l, s.block)
+		for j, v := range values[l*s.block:][:s.block] {
 			h := float64(v.h * down)
-			b1 := (h + round) - round
-			i := l*s.block + j
-			s.table[0][i], s.table[1][i], s.table[2][i] = h, b1, (h-b1)+float64(v.l*down)
+			slice := (h + round) - round
+			b[j], b1[j], b2[j] = h+float64(v.l*down), slice, (h-slice)+float64(v.l*down)
 		}
 	}
 	return true
@@ -222,28 +229,30 @@ func (s *sampler) tabulate(q *quick, count int) bool {
 // τ^k e^(στ) cos ωτ and τ^k e^(στ) sin ωτ at τ = j·dt. An exponential below
 // e^−600 is 0 there; slack keeps what it may be.
 func (s *sampler) columns(m *mode, values []double, column int) bool {
-	var near [fine][2]double
+	var near [fine]sliced
 	for j := range near {
-		var ok bool
-		if near[j][0], near[j][1], ok = m.exponential(s.step(j)); !ok {
+		c, d, ok := m.exponential(s.step(j))
+		if !ok {
 			return false
 		}
+		near[j] = sliceOf(c, d, s.slice)
 	}
-	var base [2]double
+	var base sliced
 	for j := range s.block {
 		tau := s.step(j)
 		if !(tau.h == 0 || tau.h > 0x1p-300 && tau.h < 0x1p300) {
 			return false
 		}
+		c, d, ok := double{}, double{}, true
 		if j%fine == 0 {
-			var ok bool
-			if base[0], base[1], ok = m.exponential(tau); !ok {
+			if c, d, ok = m.exponential(tau); !ok {
 				return false
 			}
-		}
-		c, d := base[0], base[1]
-		if j%fine != 0 {
-			c, d = rotate(base, near[j%fine])
+			base = sliceOf(c, d, s.slice)
+		} else if m.pair {
+			c, d = base.rotate(&near[j%fine])
+		} else {
+			c = base.times(&near[j%fine])
 		}
 		power := 1.0
 		for k := range m.amplitudes {
@@ -254,23 +263,42 @@ func (s *sampler) columns(m *mode, values []double, column int) bool {
 			}
 			l := column + k*m.width()
 			values[l*s.block+j] = c
+			s.scales[l] = max(s.scales[l], math.Abs(c.h)+math.Abs(d.h))
 			s.slack[l] = max(s.slack[l], float64(power*negligible)/quickError)
 			if m.pair {
 				values[(l+1)*s.block+j] = d
+				s.scales[l+1] = s.scales[l]
 			}
 		}
 	}
 	return true
 }
 
-// rotate returns the complex product x·y.
-func rotate(x, y [2]double) (re, im double) {
-	if x[1].h == 0 && y[1].h == 0 {
-		return product2(x[0], y[0].h, y[0].l), double{}
-	}
-	re = product2(x[0], y[0].h, y[0].l).plus(product2(double{-x[1].h, -x[1].l}, y[1].h, y[1].l))
-	im = product2(x[0], y[1].h, y[1].l).plus(product2(x[1], y[0].h, y[0].l))
+// sliced is a complex number c + jd, each part as float64 and, more precisely, as
+// a multiple of 2^−slice of the size of the number and a rest.
+type sliced struct{ c, c1, c2, d, d1, d2 float64 }
+
+func sliceOf(c, d double, slice int) sliced {
+	_, exponent := math.Frexp(max(math.Abs(c.h), math.Abs(d.h), 0x1p-900))
+	round := math.Ldexp(1.5, 52-slice+exponent)
+	c1, d1 := (c.h+round)-round, (d.h+round)-round
+	return sliced{c.h, c1, (c.h - c1) + c.l, d.h, d1, (d.h - d1) + d.l}
+}
+
+// rotate returns the complex product x·y within 2^−74.8 of its size: the
+// products of the slices and their sum are exact, what is left is below 2^−24 of
+// the size.
+func (x *sliced) rotate(y *sliced) (re, im double) {
+	re.h = float64(x.c1*y.c1) - float64(x.d1*y.d1)
+	re.l = (float64(x.c1*y.c2) + float64(x.c2*y.c)) - (float64(x.d1*y.d2) + float64(x.d2*y.d))
+	im.h = float64(x.c1*y.d1) + float64(x.d1*y.c1)
+	im.l = (float64(x.c1*y.d2) + float64(x.c2*y.d)) + (float64(x.d1*y.c2) + float64(x.d2*y.c))
 	return re, im
+}
+
+// times does so for real numbers.
+func (x *sliced) times(y *sliced) double {
+	return double{float64(x.c1 * y.c1), float64(x.c1*y.c2) + float64(x.c2*y.c)}
 }
 
 // step returns j·dt.
@@ -315,8 +343,8 @@ func (m *mode) exponential(t double) (c, d double, ok bool) {
 // c = e^(σt) cos ωt and d = e^(σt) sin ωt, a cos ω(t+τ) + b sin ω(t+τ) takes
 // a·c + b·d times the column of cos ωτ, and b·c − a·d times that of sin ωτ.
 //
-// Anchor and table are within 2^−77 of the sizes that they are bounded by: twice
-// what At is. The slices leave 2^−(slice+53) of the largest anchor for each
+// The anchor is within 2^−77 of its size, as At is, and the table within 2^−74.5
+// of the scales, which bound |cos| + |sin|; 4 scales allow for both. The slices leave 2^−(slice+53) of the largest anchor for each
 // of three products, sums included 4·order times as much.
 func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 	if !(t.h >= 0 && t.h < 0x1p300) {
@@ -360,7 +388,7 @@ func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 		a1 := (h + round) - round
 		s.anchor[l] = part{a1, (h - a1) + float64(v.l*s.scales[l])}
 	}
-	return 2*bound*quickError + math.Ldexp(float64(8*s.order), exponent-s.slice-53), true
+	return 8*bound*quickError + math.Ldexp(float64(8*s.order), exponent-s.slice-53), true
 }
 
 // shifted returns the coefficient of τ^k in Σ c_j (t+τ)^j, which is

@@ -7,9 +7,12 @@ import (
 	"github.com/qofs/qofs/internal/ball"
 )
 
+// So many terms are taken over the whole range, to a quarter, and to a
+// sixteenth of it.
 const (
-	seriesTerms = 64
-	firstTerms  = 24 // of the series up to 1/16 of its range
+	seriesTerms  = 64
+	quarterTerms = 36
+	firstTerms   = 24
 )
 
 // taylorSeries is Σ terms[k]·t^k about t = 0, with the exact Markov parameters
@@ -21,7 +24,7 @@ type taylorSeries struct {
 	once      sync.Once
 	terms     [seriesTerms]double
 	sizes     [seriesTerms]float64
-	remainder [2]float64 // for all terms, and for firstTerms
+	remainder [3]float64 // for all terms, for quarterTerms and for firstTerms
 }
 
 // seriesRange returns the until of the series, with ρ·until = 8 (see bound).
@@ -61,32 +64,37 @@ func (e *expansion) series(q *quick) *taylorSeries {
 				s.sizes[k] = above/quickError + 0x1p-1000
 			}
 		}
-		// 2·2^scale·(ρ·until)^n/n! with 64! > 2^295 and 24! > 2^79.
+		// 2·2^scale·(ρ·until)^n/n! with 64! > 2^295, 36! > 2^138 and 24! > 2^79.
 		size := e.seriesScale(q)
 		s.remainder[0] = math.Ldexp(1, size+1+3*seriesTerms-295)
-		s.remainder[1] = math.Ldexp(1, size+1+3*firstTerms-79)
+		s.remainder[1] = math.Ldexp(1, size+1+3*quarterTerms-138)
+		s.remainder[2] = math.Ldexp(1, size+1+3*firstTerms-79)
 	})
 	return s
 }
 
-// near returns the first terms of the Taylor series about 0 and a bound of the
-// error.
-func (s *taylorSeries) near(th, tl float64, terms int) (double, float64) {
+// at returns the series at th + tl ≤ until and a bound of its error.
+func (s *taylorSeries) at(th, tl float64) (double, float64) {
+	ratio := th / s.until
+	r4 := float64(ratio*ratio) * float64(ratio*ratio)
+	r12 := float64(r4*r4) * r4
+	r24 := float64(r12 * r12)
+	switch {
+	case ratio < 1.0/16:
+		return s.sum(th, tl, firstTerms, s.remainder[2]*r24)
+	case ratio < 1.0/4:
+		return s.sum(th, tl, quarterTerms, float64(s.remainder[1]*r24)*r12)
+	}
+	return s.sum(th, tl, seriesTerms, float64(s.remainder[0]*r24)*float64(r24*r12)*r4)
+}
+
+// sum adds a number of terms and bounds the error, given that of the rest.
+func (s *taylorSeries) sum(th, tl float64, terms int, rest float64) (double, float64) {
 	sum := s.terms[terms-1]
 	magnitude := s.sizes[terms-1]
 	for k := terms - 2; k >= 0; k-- {
 		sum = product2(sum, th, tl).plus(s.terms[k])
 		magnitude = float64(magnitude*th) + s.sizes[k]
 	}
-	ratio, rest := th/s.until, s.remainder[0]
-	eighth := ratio * ratio
-	eighth *= eighth
-	eighth *= eighth
-	power := float64(eighth*eighth) * eighth // 24th
-	if terms == firstTerms {
-		rest = s.remainder[1]
-	} else {
-		power = float64(power*power) * float64(eighth*eighth) // 64th
-	}
-	return sum, magnitude*quickError + rest*power*(1+0x1p-40)
+	return sum, magnitude*quickError + rest*(1+0x1p-40)
 }
