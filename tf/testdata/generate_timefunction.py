@@ -169,7 +169,7 @@ def spread(r, count, low, high):
 
 
 def functions(r):
-    for i in range(24):
+    for i in range(64):
         distinct = {}
         while sum((len(f) - 1) for f in distinct) < 1 + i % 8:
             f = (linear, quadratic, irreducible)[r.below(3)](r)
@@ -177,47 +177,47 @@ def functions(r):
         factors = [(list(f), 1) for f in distinct]
         n = sum(len(f) - 1 for f, _ in factors)
         yield Function("random", numerator(r, r.below(n)), factors), spread(r, 20, -3, 2)
-    for i in range(6):  # poles −a, −a−1e−12, …
+    for i in range(16):  # poles −a, −a−1e−12, …
         base = r.between(1, 5) * 10**12
-        factors = [([base + j, 10**12], 1) for j in range(2 + i % 4)]
+        factors = [([base + j, 10**12], 1 + i // 8) for j in range(2 + i % 4)]
         if i >= 3:
             factors.append(([base, r.between(0, 9), 10**12], 1))
         yield Function("cluster", numerator(r, 1), factors), spread(r, 16, -6, 2)
-    for i in range(3):  # complex pairs that differ by 1e−12
-        factors = [([5 * 10**12 + j, 2 * 10**12, 10**12], 1) for j in range(2 + i)]
+    for i in range(6):  # complex pairs that differ by 1e−12
+        factors = [([5 * 10**12 + j, 2 * 10**12, 10**12], 1) for j in range(2 + i % 5)]
         yield Function("cluster", numerator(r, 2), factors), spread(r, 16, -4, 2)
-    for i in range(4):
-        factors = [([10**max(k, 0), 10**max(-k, 0)], 1) for k in range(-7, 9, 1 + i)]
+    for i in range(6):
+        factors = [([10**max(k, 0), 10**max(-k, 0)], 1) for k in range(-7, 9, 1 + i % 5)]
         yield Function("stiff", numerator(r, r.below(len(factors))), factors), spread(r, 20, -10, 8)
-    for i in range(2):  # ζ = 1e−6, order 40
+    for i in range(5):  # ζ = 1e−6, order 40
         factors = [([10**6 * k * k, 2 * k, 10**6], 1) for k in range(1 + i, 21 + i)]
         yield Function("lightly damped", numerator(r, 39 - i), factors), spread(r, 15, -2, 5)
-    for m in (2, 3, 5, 8, 12):
+    for m in (2, 3, 4, 5, 6, 8, 9, 12, 16, 24):
         factors = [([r.between(1, 4), 1], m)]
         if m % 2 == 1:
             factors.append((quadratic(r), 1 + m // 2))
         yield Function("multiple", numerator(r, m - 1), factors), spread(r, 16, -3, 2)
     yield Function("multiple", [1], [([1, 1, 1], 8), ([0, 1], 3)]), spread(r, 16, -2, 2)
-    for i in range(6):
+    for i in range(12):
         factors = [(linear(r), 1 + i % 3), (quadratic(r), 1)]
         yield Function("near zero", numerator(r, i % 3), factors), [2.0**-k for k in (1070, 1000, 300, 80, 40, 27, 15, 9)] + spread(r, 8, -20, -3)
     for i in range(4):  # subnormal values and beyond
         factors = [([r.between(1, 9), 1], 1 + i), ([r.between(20, 90), 2, 1], 1)]
         yield Function("underflow", numerator(r, 1), factors), [700 + 3.0 * k for k in range(16)] + [1e5, 1e300]
-    for i in range(3):
+    for i in range(8):
         factors = [([r.between(2, 50), 0, 1], 1), ([r.between(1, 9), 1], 1)]
         yield Function("late", numerator(r, 2), factors), spread(r, 12, 5, 25)
-    for i in range(3):
-        factors = [([-r.between(1, 5), 1], 1 + i), ([r.between(5, 9), -1, 1], 1)]
-        yield Function("growing", numerator(r, 2), factors), spread(r, 12, -1, 2)
-    for i in range(4):  # zero and pole 1e−14 apart
+    for i in range(6):
+        factors = [([-r.between(1, 5), 1], 1 + i % 3), ([r.between(5, 9), -1, 1], 1)]
+        yield Function("growing", numerator(r, 2), factors), spread(r, 12, -1, 2) + [1e3, 1e6]
+    for i in range(8):  # zero and pole 1e−14 apart
         factors = [([10**14, 10**14], 1), ([r.between(2, 9), 1], 1), ([0, 1], 1)]
         yield Function("near cancellation", [10**14 + r.between(1, 9), 10**14], factors), spread(r, 14, -2, 2)
 
 
 def crossings(r):
     """The float64 nearest to a zero of the response, and its neighbours."""
-    for i in range(8):
+    for i in range(16):
         factors = [([r.between(10, 90), r.between(1, 3), 1], 1), (linear(r), 1)]
         f = Function("crossing", numerator(r, i % 3), factors)
         times = []
