@@ -8,6 +8,7 @@ import (
 
 	"github.com/qofs/qofs/lti"
 	"github.com/qofs/qofs/tf"
+	"github.com/qofs/qofs/units"
 )
 
 func record(signals, constants map[string]string, equations ...string) *lti.Equations {
@@ -140,5 +141,66 @@ func TestTextForms(t *testing.T) {
 	outer, err := json.Marshal(struct{ Plant *lti.System }{s})
 	if err != nil || string(outer) != `{"Plant":`+string(text)+`}` {
 		t.Errorf("%s, %v", outer, err)
+	}
+}
+
+// Every fault of an equation is reported, and the odd term out is the one that
+// is blamed, wherever it stands.
+func TestEveryTermIsJudged(t *testing.T) {
+	_, err := record(map[string]string{"x": "m", "y": "m", "z": "kg"}, map[string]string{"T": "2 s", "k": "3 1/s"},
+		"x' = k y - z + q + sin(y) - T k x + y'").Build()
+	joined, ok := err.(interface{ Unwrap() []error })
+	if !ok {
+		t.Fatal(err)
+	}
+	found := map[string]bool{}
+	for _, e := range joined.Unwrap() {
+		var q *lti.EquationError
+		if errors.As(e, &q) {
+			found[q.Term] = true
+		}
+	}
+	for _, term := range []string{"z", "q", "sin(y)", "T k x"} {
+		if !found[term] {
+			t.Errorf("no fault at %q in %v", term, err)
+		}
+	}
+	if len(found) != 4 {
+		t.Errorf("%d faults, want 4: %v", len(found), err)
+	}
+	_, err = record(map[string]string{"x": "m", "f": "N"}, map[string]string{"m": "2 kg*s", "c": "3 N*s/m", "k": "5 N/m"}, "m x'' + c x' + k x = f").Build()
+	var q *lti.EquationError
+	var mismatch *units.MismatchError
+	if !errors.As(err, &q) || q.Term != "m x''" || !errors.As(err, &mismatch) ||
+		!mismatch.Found.Equal(units.MustParse("N*s")) || !mismatch.Want.Equal(units.MustParse("N")) {
+		t.Errorf("%v, want a fault at the first term", err)
+	}
+}
+
+// Common practice: the function is that of the plant alone, whatever the input.
+// A step and a ramp through it give outputs whose transforms have it as their
+// ratio to the transform of the input.
+func TestIndependentOfTheInput(t *testing.T) {
+	g, err := build(t, pool()).TransferFunction("opening", "level")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, shape := range []string{"1/s", "1/s^2", "s/(s^2 + 4)"} {
+		laplace := tf.MustParse(shape)
+		in, err := tf.NewTimeFunction(laplace.Numerator(), laplace.Denominator(), g.Input())
+		if err != nil {
+			t.Fatal(err)
+		}
+		out, err := g.Response(in)
+		if err != nil {
+			t.Fatal(err)
+		}
+		ratio, err := tf.Inverse(in.Laplace())
+		if err == nil {
+			ratio, err = tf.Series(ratio, out.Laplace())
+		}
+		if err != nil || !ratio.Equivalent(g) {
+			t.Errorf("%s: output over input is %v, %v, want %v", shape, ratio, err, g)
+		}
 	}
 }

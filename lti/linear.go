@@ -258,32 +258,91 @@ func (e *evaluator) derivative(n *node) (value, bool) {
 
 var second = units.MustParse("s").Dimension()
 
-// linear returns left − right of the equation as a combination of signals.
+// term is a summand of an equation.
+type term struct {
+	node     *node
+	negative bool
+	value    value
+}
+
+// terms appends the summands of n.
+func terms(out []term, n *node, negative bool) []term {
+	switch n.kind {
+	case isSum, isDifference:
+		out = terms(out, n.a, negative)
+		return terms(out, n.b, negative != (n.kind == isDifference))
+	case isNegative:
+		return terms(out, n.a, !negative)
+	}
+	return append(out, term{node: n, negative: negative})
+}
+
+// linear returns left − right of the equation as a combination of signals. It
+// reports every term that has a fault, and every term whose dimension is not
+// that of most terms (of the first ones, where there is no majority).
 func (e *evaluator) linear() (map[derivative]*big.Rat, bool) {
-	left, okLeft := e.evaluate(e.equation.left)
-	right, okRight := e.evaluate(e.equation.right)
-	if !okLeft || !okRight {
-		return nil, false
+	var good []term
+	counts := map[units.Dimension]int{}
+	for _, t := range terms(terms(nil, e.equation.left, false), e.equation.right, true) {
+		v, ok := e.evaluate(t.node)
+		if !ok || v.zero {
+			continue
+		}
+		counts[v.dimension]++
+		if t.value = v; t.negative {
+			t.value = v.times(big.NewRat(-1, 1), units.Dimension{})
+		}
+		good = append(good, t)
 	}
-	whole := &node{from: 0, to: len(e.equation.text)}
-	v, ok := e.add(e.equation.right, left, right.times(big.NewRat(-1, 1), units.Dimension{}))
-	if !ok {
-		return nil, false
-	}
-	if v.rat().Sign() != 0 {
-		e.fail(whole, "a constant stands alone as a term; a linear model holds deviations from an operating point, in which it drops out: leave it away")
-		return nil, false
-	}
-	for t, c := range v.terms {
-		if c.Sign() == 0 {
-			delete(v.terms, t)
+	var model term // one of those with the dimension that most terms have
+	for _, t := range good {
+		if counts[t.value.dimension] > counts[model.value.dimension] || model.node == nil {
+			model = t
 		}
 	}
-	if len(v.terms) == 0 {
+	sum := value{zero: true}
+	for _, t := range good {
+		if t.value.dimension != model.value.dimension {
+			found, want := t.value.dimension.Unit(), model.value.dimension.Unit()
+			e.failWith(t.node, &units.MismatchError{Found: found, Want: want}, "the term is in %s (in base units), where %q is in %s",
+				found, e.equation.text[model.node.from:model.node.to], want)
+			continue
+		}
+		var ok bool
+		if sum, ok = e.add(t.node, sum, t.value); !ok {
+			return nil, false
+		}
+	}
+	if len(e.faults) > 0 {
+		return nil, false
+	}
+	return e.homogeneous(sum, good)
+}
+
+// homogeneous refuses an equation with a constant term, or without signals.
+func (e *evaluator) homogeneous(sum value, good []term) (map[derivative]*big.Rat, bool) {
+	whole := &node{from: 0, to: len(e.equation.text)}
+	if sum.rat().Sign() != 0 {
+		at := whole
+		for _, t := range good {
+			if t.value.rat().Sign() != 0 {
+				at = t.node
+				break
+			}
+		}
+		e.fail(at, "a constant stands alone as a term; a linear model holds deviations from an operating point, in which it drops out: leave it away")
+		return nil, false
+	}
+	for t, c := range sum.terms {
+		if c.Sign() == 0 {
+			delete(sum.terms, t)
+		}
+	}
+	if len(sum.terms) == 0 {
 		e.fail(whole, "the equation says nothing about any signal")
 		return nil, false
 	}
-	return v.terms, true
+	return sum.terms, true
 }
 
 // names lists what is declared, shortened.

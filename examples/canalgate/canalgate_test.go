@@ -189,7 +189,7 @@ func TestWrongInput(t *testing.T) {
 		target             any
 		says               []string
 	}{
-		{"constant", `"5600 m^2"`, `"5600 m^3"`, new(*lti.EquationError), []string{"pool:", "outflow level"}},
+		{"constant", `"5600 m^2"`, `"5600 m^3"`, new(*lti.EquationError), []string{"pool:", `"area level'" (offset 0)`, "m^4/s", "m^3/s"}},
 		{"gain", "400 mm/mA", "400 mm/V", new(*units.MismatchError), []string{"controller, gain", "mm/V", "mm/mA"}},
 		{"typing error", `"15 s"`, `"15 sek"`, new(*units.SyntaxError), []string{"transmitter, lag", "sek", "offset 3"}},
 		{"scale at a junction", `"gate": "mm"`, `"gate": "cm"`, new(*tf.JunctionError), []string{"1 cm is 10 mm"}},
