@@ -105,6 +105,14 @@ func (s *sample) bounds(n int, bound, slope float64) {
 // Rounding the value costs u|p|, the quotient at most 12u, and the bounds
 // themselves the rest of 16u.
 func (s *sample) newton() (re, im, err float64, ok bool) {
+	if size := max(math.Abs(s.dr), math.Abs(s.di)); size < 0x1p-400 || size > 0x1p400 {
+		_, e := math.Frexp(size) // a power of two, so that squares stay in range
+		for _, v := range []*float64{&s.pr, &s.pi, &s.dr, &s.di, &s.errValue, &s.errDeriv} {
+			*v = math.Ldexp(*v, -e)
+		}
+		s.errValue += tiny // for what that loses
+		s.errDeriv += tiny
+	}
 	q := s.dr*s.dr + s.di*s.di
 	d := math.Sqrt(q)*(1-0x1p-50) - s.errDeriv
 	if !(q > 0x1p-900 && q < 0x1p900 && d > 0) {

@@ -57,7 +57,7 @@ func triageDecades(p intpoly.Poly, w *work) ([]Number, bool) {
 	d := newDecades(p)
 	re, im, exps := make([]float64, n), make([]float64, n), make([]int, n)
 	for i, s := range startingPoints(p) {
-		e := math.Ceil(s.logRadius)
+		e := math.Round(s.logRadius)
 		sin, cos := math.Sincos(s.angle)
 		r := roughExp2(s.logRadius - e)
 		re[i], im[i], exps[i] = r*cos, r*sin, int(e)
@@ -97,7 +97,7 @@ func (d *decades) approximate(re, im []float64, exps []int) bool {
 	n := len(re)
 	done := make([]bool, n)
 	left := n
-	for sweep := 0; sweep < maxSweeps && left > 0; sweep++ {
+	for sweep := 0; sweep < maxSweeps+n/16 && left > 0; sweep++ {
 		for i := range re {
 			if done[i] {
 				continue
@@ -105,6 +105,10 @@ func (d *decades) approximate(re, im []float64, exps []int) bool {
 			x, y := re[i], im[i]
 			f := d.near(exps[i])
 			pr, pi, dr, di := f.horner(x, y)
+			if size := max(math.Abs(dr), math.Abs(di)); size < 0x1p-400 || size > 0x1p400 {
+				_, e := math.Frexp(size)
+				pr, pi, dr, di = math.Ldexp(pr, -e), math.Ldexp(pi, -e), math.Ldexp(dr, -e), math.Ldexp(di, -e)
+			}
 			sr, si := 0.0, 0.0
 			for k := range re {
 				if k != i {
@@ -127,9 +131,11 @@ func (d *decades) approximate(re, im []float64, exps []int) bool {
 				done[i] = true
 				left--
 			}
-			if _, e := math.Frexp(size); e < -8 || e > 8 {
-				x, y = math.Ldexp(x, -e/2), math.Ldexp(y, -e/2)
-				exps[i] += e / 2
+			// 1/2 ≤ |x + iy|² < 2, so that powers stay in range.
+			if _, e := math.Frexp(size); e < 0 || e > 1 {
+				e >>= 1
+				x, y = math.Ldexp(x, -e), math.Ldexp(y, -e)
+				exps[i] += e
 			}
 			re[i], im[i] = x, y
 		}

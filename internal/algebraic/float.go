@@ -129,7 +129,7 @@ func (f *floats) approximate(re, im []float64) bool {
 	}
 	left := n
 	c := f.hi
-	for range maxSweeps {
+	for range maxSweeps + n/16 {
 		for i := range re {
 			if done[i] {
 				continue

@@ -120,6 +120,10 @@ func TestReference(t *testing.T) {
 			}
 		}
 	}
+	// Well-conditioned polynomials stay in the first stage.
+	if f := families["random"]; f.decomposed+f.isolated != 0 || 100*f.refined > f.components {
+		t.Errorf("random: %d decomposed, %d isolated, %d of %d components refined", f.decomposed, f.isolated, f.refined, f.components)
+	}
 	var names []string
 	for name := range families {
 		names = append(names, name)

@@ -42,6 +42,9 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 		f.place(re, im)
 		f.approximate(re, im) // what failed has changed them
 	}
+	if overflown(re, im) {
+		return triageDecades(p, w)
+	}
 	if !f.approximateCompensated(re, im) {
 		return nil, false
 	}
@@ -53,6 +56,16 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 		return nil, false
 	}
 	return certified(found, &factor{poly: p, degree: n}, w), true
+}
+
+// overflown reports whether an approximation is infinite or not a number.
+func overflown(re, im []float64) bool {
+	for i := range re {
+		if d := (re[i] - re[i]) + (im[i] - im[i]); d != 0 {
+			return true
+		}
+	}
+	return false
 }
 
 // candidates returns the approximations on and above the real axis.
