@@ -186,3 +186,17 @@ func TestJunctionCheckIsFree(t *testing.T) {
 		t.Errorf("%v allocations for a check of signals", n)
 	}
 }
+
+// TestCompositionAllocatesNothing beyond what the rational function does.
+func TestCompositionAllocatesNothing(t *testing.T) {
+	forward, back := MustParse("(2 s + 1)/(s^2 + 4 s + 9) [V -> level: mm]"), MustParse("8/(15 s + 1) [mm -> V]")
+	bare := testing.AllocsPerRun(200, func() { forward.c.f.Feedback(back.c.f, 1) })
+	whole := testing.AllocsPerRun(200, func() {
+		if _, err := Feedback(forward, back); err != nil {
+			t.Fatal(err)
+		}
+	})
+	if whole > bare {
+		t.Errorf("%v allocations, %v in the rational function", whole, bare)
+	}
+}
