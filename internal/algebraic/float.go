@@ -120,7 +120,7 @@ const settled = 0x1p-36
 // approximate runs the simultaneous iteration in float64; it reports whether
 // every approximation settled. Nothing that it computes is relied on for more
 // than a good guess, so its rounding does not matter.
-func (f *floats) approximate(re, im []float64) bool {
+func (f *floats) approximate(re, im []float64, sweeps int) bool {
 	n := len(re)
 	var buffer [64]bool
 	done := buffer[:]
@@ -129,7 +129,7 @@ func (f *floats) approximate(re, im []float64) bool {
 	}
 	left := n
 	c := f.hi
-	for range maxSweeps + n/16 {
+	for range sweeps {
 		for i := range re {
 			if done[i] {
 				continue

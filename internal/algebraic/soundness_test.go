@@ -99,7 +99,7 @@ func TestCompensatedBounds(t *testing.T) {
 		case 1: // next to a root
 			re, im := make([]float64, n), make([]float64, n)
 			f.place(re, im)
-			f.approximate(re, im)
+			f.approximate(re, im, maxSweeps)
 			x, w = re[0], im[0]
 		}
 		v := f.at(x, w)
@@ -155,12 +155,18 @@ func TestDiscsHoldKnownRoots(t *testing.T) {
 		cases = 300
 	}
 	checked := 0
-	for range cases {
+	for i := range cases {
 		p := intpoly.FromInt64s(1)
-		type gaussian struct{ a, b int64 } // over 2^20
+		type gaussian struct {
+			a, b int64
+			e    int // of the unit
+		}
 		var known []gaussian
 		for range 1 + s.below(4) {
-			g := gaussian{s.signed(21), s.signed(21)}
+			g := gaussian{s.signed(21), s.signed(21), -20}
+			if i%4 == 0 { // sizes beyond float64
+				g.e += 150*s.below(7) - 450
+			}
 			if s.below(3) == 0 {
 				g.b = 0
 			}
@@ -169,9 +175,15 @@ func TestDiscsHoldKnownRoots(t *testing.T) {
 			}
 			g.b = max(g.b, -g.b)
 			known = append(known, g)
-			factor := intpoly.FromInt64s(-g.a, 1<<20)
+			factor := intpoly.FromInt64s(-g.a, 1)
 			if g.b != 0 {
 				factor = factor.Mul(factor).Add(intpoly.FromInt64s(g.b * g.b))
+			}
+			unit := new(big.Int).Lsh(big.NewInt(1), uint(max(g.e, -g.e)))
+			if g.e > 0 {
+				factor = factor.ScaleArgument(big.NewInt(1), unit)
+			} else {
+				factor = factor.ScaleArgument(unit, big.NewInt(1))
 			}
 			p = p.Mul(factor)
 		}
@@ -190,8 +202,8 @@ func TestDiscsHoldKnownRoots(t *testing.T) {
 			}
 			holding := func(center *point, radius scaled) bool {
 				for _, g := range known {
-					a := new(big.Float).SetMantExp(number(float64(g.a)), -20)
-					b := new(big.Float).SetMantExp(number(float64(g.b)), -20)
+					a := new(big.Float).SetMantExp(number(float64(g.a)), g.e)
+					b := new(big.Float).SetMantExp(number(float64(g.b)), g.e)
 					a.Sub(a, exactFloat(&center.re, center.e))
 					b.Sub(b, exactFloat(&center.im, center.e))
 					a.Mul(a, a)

@@ -6,10 +6,13 @@ import (
 	"github.com/qofs/qofs/internal/intpoly"
 )
 
-// maxSweeps bounds the iteration in float64. Simple roots take 5 to 12 sweeps;
-// multiple roots, on which the iteration is slow, are left to the exact
-// decomposition.
-const maxSweeps = 32
+// Sweeps of the iteration in float64, and one more for every 16 degrees. Simple
+// roots take 5 to 12; multiple roots, on which the iteration is slow, are left
+// to the exact decomposition.
+const (
+	firstSweeps = 16
+	maxSweeps   = 32
+)
 
 // smallDegree is the largest degree for which the workspace is on the stack.
 const smallDegree = 16
@@ -35,16 +38,19 @@ func triage(p intpoly.Poly, w *work) ([]Number, bool) {
 	if n > smallDegree {
 		found = make([]candidate, n)
 	}
-	if f.approximate(re, im) {
+	if f.approximate(re, im, firstSweeps+n/16) {
 		if found, ok := f.candidates(found, re, im); ok && f.refineAll(found) && separate(found, n) {
 			return certified(found, &factor{poly: p, degree: n}, w), true
 		}
-		f.place(re, im)
-		f.approximate(re, im) // what failed has changed them
 	}
 	if overflown(re, im) {
 		return triageDecades(p, w)
 	}
+	if !provedSquareFree(p) {
+		return nil, false
+	}
+	f.place(re, im)
+	f.approximate(re, im, maxSweeps+n/16)
 	if !f.approximateCompensated(re, im) {
 		return nil, false
 	}
