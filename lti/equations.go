@@ -17,8 +17,11 @@
 // multiplies, a name is a signal or a constant and never a unit, and a literal
 // is a pure number. Signals and constants may be in any units: the equation is
 // one between physical quantities, so that millimetres beside metres are
-// converted exactly. The radian is weightless there, as in the SI. Initial
-// conditions are zero; signals are deviations from an operating point.
+// converted exactly. The radian is weightless there, as in the SI. A constant in
+// a unit that counts cycles or degrees, such as Hz, is refused, because 2π gets
+// lost there; a signal may be in rpm or deg, which count as the radians that they
+// are. Initial conditions are zero; signals are deviations from an operating
+// point.
 package lti
 
 import (

@@ -3,6 +3,7 @@ package lti_test
 import (
 	"encoding/json"
 	"errors"
+	"fmt"
 	"strings"
 	"testing"
 
@@ -203,4 +204,59 @@ func TestIndependentOfTheInput(t *testing.T) {
 			t.Errorf("%s: output over input is %v, %v, want %v", shape, ratio, err, g)
 		}
 	}
+}
+
+// 1 rpm is 2π/60 rad/s, with the rational π of package units.
+func TestSignalInTurns(t *testing.T) {
+	s := build(t, record(map[string]string{"torque": "N*m", "speed": "rpm"}, map[string]string{"inertia": "3 kg*m^2", "drag": "2 N*m*s/rad"},
+		"inertia speed' + drag speed = torque"))
+	g, err := s.TransferFunction("torque", "speed")
+	if err != nil {
+		t.Fatal(err)
+	}
+	g, err = g.ConvertUnits(units.MustParse("N*m"), units.MustParse("rad/s"))
+	if err != nil || !g.Equivalent(tf.MustParse("1/(3 s + 2) [N*m -> rad/s]")) {
+		t.Errorf("%v, %v", g, err)
+	}
+}
+
+func ExampleParseSystem() {
+	tank, err := lti.ParseSystem(`{
+		"signals":   {"heating": "kW", "temperature": "K"},
+		"constants": {"capacity": "4.2 MJ/K", "loss": "0.35 kW/K"},
+		"equations": ["capacity temperature' + loss temperature = heating"]
+	}`)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	g, err := tank.TransferFunction("heating", "temperature")
+	fmt.Println(g, err)
+	colder, err := tank.WithConstant("loss", "0.42 kW/K")
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	g, err = colder.TransferFunction("heating", "temperature'")
+	fmt.Println(g, err)
+	// Output:
+	// 20/(84000 s + 7) [heating: kW -> temperature: K] <nil>
+	// 50 s/(210000 s + 21) [heating: kW -> temperature': K/s] <nil>
+}
+
+// Build tells all that is wrong at once.
+func ExampleEquations_Build() {
+	pool := lti.NewEquations()
+	pool.Signal("inflow", "m^3/s")
+	pool.Signal("level", "m")
+	pool.Constant("area", "5600 m^2")
+	pool.Constant("crest", "1.7 m^(1/2)/s")
+	pool.Equation("area level = inflow")
+	pool.Equation("inflow = area level level'")
+	_, err := pool.Build()
+	fmt.Println(err)
+	// Output:
+	// constant crest = "1.7 m^(1/2)/s": at offset 8 of "1.7 m^(1/2)/s": found "/", want a closing parenthesis
+	// equation 1, "area level = inflow", at "inflow" (offset 13): the term is in m^3/s (in base units), where "area level" is in m^3
+	// equation 2, "inflow = area level level'", at "area level level'" (offset 9): a product of signals is not linear: a transfer function holds only for equations that are linear in the signals; replace the term by its slope at an operating point (linearise)
 }

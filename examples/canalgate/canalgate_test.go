@@ -74,7 +74,7 @@ func TestSameAsSimulatedApproximant(t *testing.T) {
 func TestNearSimulatedDeadTime(t *testing.T) {
 	r := builtIn(t)
 	setpoint := simulation{setpoint: 0.05}
-	level, gate, _ := setpoint.run(5400)
+	level, gate, current := setpoint.run(5400)
 	t.Logf("setpoint: level %.2g, gate %.2g", furthest(level, r.following.level.values, 0), furthest(gate, r.following.gate.values, 0))
 	if d := furthest(level, r.following.level.values, 400); !(d < 0.2) {
 		t.Errorf("setpoint: level differs by %g mm after 400 s", d)
@@ -131,6 +131,8 @@ func TestNearSimulatedDeadTime(t *testing.T) {
 	v = said(`setpoint 50 mm asks for (\S+) mA at most \(at (\S+) s\)`)
 	near("first demand", v[0], 50*8e-3*400*0.8, 1e-9) // before anything moves
 	near("its time", v[1], 0, 0)
+	v = said(`BEYOND THE LIMITS for about (\S+) s`)
+	near("time beyond", v[0], curve{step: 1, values: current}.beyond(8), 1)
 }
 
 func TestReport(t *testing.T) {
@@ -261,6 +263,22 @@ func TestUnstable(t *testing.T) {
 		t.Fatal(err)
 	}
 	for _, want := range []string{"NOT stable", "GROWS", "settles nowhere"} {
+		if !strings.Contains(b.String(), want) {
+			t.Errorf("the report does not say %q", want)
+		}
+	}
+
+	// One that grows beyond every float64 still gets its report.
+	b.Reset()
+	file := filepath.Join(t.TempDir(), "canal.json")
+	text := strings.Replace(strings.Replace(canal, "400 mm/mA", "-4 km/mA", 1), "5400 s", "30 d", 1)
+	if err := os.WriteFile(file, []byte(text), 0o600); err != nil {
+		t.Fatal(err)
+	}
+	if err := run([]string{"-input", file, "-output", t.TempDir()}, &b); err != nil {
+		t.Fatal(err)
+	}
+	for _, want := range []string{"NOT stable", "none: setpoint step", tf.ErrRange.Error(), "drown"} {
 		if !strings.Contains(b.String(), want) {
 			t.Errorf("the report does not say %q", want)
 		}

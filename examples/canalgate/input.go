@@ -6,7 +6,6 @@ import (
 	"encoding/json"
 	"errors"
 	"fmt"
-	"math/big"
 	"strings"
 
 	"github.com/qofs/qofs/lti"
@@ -118,9 +117,6 @@ func readInput(text string) (*input, error) {
 	}
 	if in.spanLevel[0].Equal(in.spanLevel[1]) {
 		faults = append(faults, errors.New("transmitter, level: the span has no length"))
-	}
-	if c := in.duration.Value(); c.Cmp(big.NewRat(1_000_000, 1)) > 0 {
-		faults = append(faults, errors.New("duration: at most 1000000 s"))
 	}
 	return in, errors.Join(faults...)
 }

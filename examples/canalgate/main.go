@@ -59,7 +59,9 @@ func run(arguments []string, w io.Writer) error {
 	if err != nil {
 		return err
 	}
-	heading(w, "pictures")
+	if len(paths) > 0 {
+		heading(w, "pictures")
+	}
 	for _, p := range paths {
 		fmt.Fprintf(w, "  %s\n", p)
 	}

@@ -22,9 +22,9 @@ type curve struct {
 // answers are the three curves that follow from one step at one input.
 type answers struct{ level, gate, current curve }
 
-// gridStep is the grid in seconds on which overshoot, rise time and their kin
-// are read; they are good to about this step.
-const gridStep = 1.0
+// intervals is how many steps the duration has on the grid on which overshoot,
+// rise time and their kin are read; they are good to about one step.
+const intervals = 5400
 
 // answer computes the step responses of a loop in mm, mm and mA.
 func answer(l loop, height units.Quantity, duration units.Quantity) (answers, error) {
@@ -33,7 +33,7 @@ func answer(l loop, height units.Quantity, duration units.Quantity) (answers, er
 	if err != nil {
 		return a, err
 	}
-	n := int(seconds/gridStep) + 1
+	step := seconds / intervals
 	for _, c := range []struct {
 		to   *curve
 		g    tf.Continuous
@@ -47,11 +47,11 @@ func answer(l loop, height units.Quantity, duration units.Quantity) (answers, er
 		if err != nil {
 			return a, err
 		}
-		values, err := f.Sample(gridStep, n)
+		values, err := f.Sample(step, intervals+1)
 		if err != nil {
 			return a, err
 		}
-		*c.to = curve{f, gridStep, values}
+		*c.to = curve{f, step, values}
 	}
 	return a, nil
 }
@@ -66,7 +66,20 @@ func (c curve) extreme() (value, t float64) {
 	return value, t
 }
 
-// firstPast returns when the curve first reaches fraction·final.
+// beyond returns for how long the curve is further from 0 than limit, to about a
+// step.
+func (c curve) beyond(limit float64) float64 {
+	n := 0
+	for _, v := range c.values {
+		if math.Abs(v) > limit {
+			n++
+		}
+	}
+	return float64(n) * c.step
+}
+
+// firstPast returns when the curve first reaches fraction·final, NaN where it
+// never does.
 func (c curve) firstPast(final, fraction float64) float64 {
 	for i, v := range c.values {
 		if v/final >= fraction {
@@ -80,10 +93,14 @@ func (c curve) firstPast(final, fraction float64) float64 {
 	return math.NaN()
 }
 
-// settled returns from when on the curve stays within band of final.
+// settled returns from when on the curve stays within band of final, NaN where
+// it is outside at the end.
 func (c curve) settled(final, band float64) float64 {
 	for i := len(c.values) - 1; i >= 0; i-- {
 		if math.Abs(c.values[i]-final) > band {
+			if i == len(c.values)-1 {
+				return math.NaN()
+			}
 			return float64(i+1) * c.step
 		}
 	}

@@ -33,8 +33,12 @@ const (
 	height = 20 * vg.Centimeter
 )
 
-// draw writes the pictures as PNG and SVG and returns their absolute paths.
+// draw writes the pictures as PNG and SVG and returns their absolute paths; it
+// writes none where there are no step responses.
 func (r *results) draw(folder string) ([]string, error) {
+	if r.unanswered != nil {
+		return nil, nil
+	}
 	folder, err := filepath.Abs(folder)
 	if err != nil {
 		return nil, err
@@ -108,14 +112,14 @@ func (r *results) panels(a answers) ([]*plot.Plot, error) {
 	if err != nil {
 		return nil, err
 	}
-	end := float64(len(a.level.values)-1) * a.level.step
+	end := intervals * a.level.step
 
 	level, err := newPanel("level / mm", a.level, water, end)
 	if err != nil {
 		return nil, err
 	}
 	peak, at := a.level.extreme()
-	note := fmt.Sprintf("%s mm at %.0f s", number(peak), at)
+	note := fmt.Sprintf("%s mm at %s", number(peak), duration(at))
 	if q, err := a.level.function.FinalValue(); err == nil {
 		final, err := q.Float64()
 		if err != nil {
@@ -153,7 +157,7 @@ func (r *results) panels(a answers) ([]*plot.Plot, error) {
 	valve.low, valve.high = -1.4*swing, 1.4*swing // what lies beyond is cut off
 	valve.band(-swing, swing, end)
 	valve.label(end, swing, "what the valve can give ", slate, text.XRight, text.YTop, -3)
-	said := fmt.Sprintf("asks for %s mA at %.0f s", number(asked), at)
+	said := fmt.Sprintf("asks for %s mA at %s", number(asked), duration(at))
 	if math.Abs(asked) > swing {
 		said += ": beyond the valve, where the linear result is not valid"
 	}

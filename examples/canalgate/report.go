@@ -18,6 +18,7 @@ type results struct {
 	in                  *input
 	model, finer        *model
 	following, offtaken answers
+	unanswered          error // why there are no step responses
 }
 
 func compute(in *input) (*results, error) {
@@ -30,10 +31,9 @@ func compute(in *input) (*results, error) {
 		return nil, err
 	}
 	if r.following, err = answer(r.model.followed, in.setpointStep, in.duration); err != nil {
-		return nil, fmt.Errorf("setpoint step: %w", err)
-	}
-	if r.offtaken, err = answer(r.model.resisted, in.offtakeStep, in.duration); err != nil {
-		return nil, fmt.Errorf("offtake step: %w", err)
+		r.unanswered = fmt.Errorf("setpoint step: %w", err)
+	} else if r.offtaken, err = answer(r.model.resisted, in.offtakeStep, in.duration); err != nil {
+		r.unanswered = fmt.Errorf("offtake step: %w", err)
 	}
 	return r, nil
 }
@@ -152,7 +152,12 @@ func describe(m mode) string {
 }
 
 // duration writes a number of seconds with four digits.
-func duration(t float64) string { return fmt.Sprintf("%.4g s", t) }
+func duration(t float64) string {
+	if math.IsNaN(t) {
+		return "(not in the time shown)"
+	}
+	return fmt.Sprintf("%.4g s", t)
+}
 
 func (r *results) stability(w io.Writer) error {
 	heading(w, "stability")
@@ -197,17 +202,16 @@ func (r *results) gains(w io.Writer) error {
 
 func (r *results) responses(w io.Writer) error {
 	heading(w, "step responses, closed loop")
+	if r.unanswered != nil {
+		fmt.Fprintf(w, "  none: %v\n", r.unanswered)
+		return nil
+	}
 	fmt.Fprintf(w, "  setpoint %+v: level(t) =\n    %.4g\n\n", r.in.setpointStep, r.following.level.function)
 	fmt.Fprintf(w, "  offtake %+v: level(t) =\n    %.4g\n\n", r.in.offtakeStep, r.offtaken.level.function)
 	fmt.Fprintf(w, "  %8s   %-34s   %s\n", "", "after the setpoint step", "after the offtake step")
 	fmt.Fprintf(w, "  %8s   %10s %10s %12s   %10s %10s %12s\n", "t / s", "level / mm", "gate / mm", "valve / mA", "level / mm", "gate / mm", "valve / mA")
-	last := len(r.following.level.values) - 1
-	for _, t := range []int{0, 60, 180, 300, 450, 600, 900, 1200, 1800, 2700, 3600, 5400} {
-		i := int(float64(t) / gridStep)
-		if i > last {
-			break
-		}
-		fmt.Fprintf(w, "  %8d", t)
+	for _, i := range []int{0, 60, 180, 300, 450, 600, 900, 1200, 1800, 2700, 3600, intervals} {
+		fmt.Fprintf(w, "  %8.4g", float64(i)*r.following.level.step)
 		for _, a := range []answers{r.following, r.offtaken} {
 			fmt.Fprintf(w, "   %10.4g %10.4g %12.4g", a.level.values[i], a.gate.values[i], a.current.values[i])
 		}
@@ -225,11 +229,12 @@ func (r *results) readings(w io.Writer) {
 		fmt.Fprintf(w, "  Setpoint: the level settles nowhere: %v\n", err)
 	} else if final, err := q.Float64(); err == nil && final != 0 {
 		peak, at := level.extreme()
-		fmt.Fprintf(w, "  Setpoint: settles at %.4g mm; overshoot %.4g %% at %.0f s; rise from 10 to 90 %% in %.0f s; within 2 %% from %.0f s on.\n",
-			final, max(0, 100*(peak/final-1)), at, level.firstPast(final, 0.9)-level.firstPast(final, 0.1), level.settled(final, 0.02*math.Abs(final)))
+		fmt.Fprintf(w, "  Setpoint: settles at %.4g mm; overshoot %.4g %% at %s; rise from 10 to 90 %% in %s; within 2 %% from %s on.\n",
+			final, max(0, 100*(peak/final-1)), duration(at), duration(level.firstPast(final, 0.9)-level.firstPast(final, 0.1)),
+			duration(level.settled(final, 0.02*math.Abs(final))))
 	}
 	dip, at := r.offtaken.level.extreme()
-	fmt.Fprintf(w, "  Offtake:  the level moves by %.4g mm at most, at %.0f s", dip, at)
+	fmt.Fprintf(w, "  Offtake:  the level moves by %.4g mm at most, at %s", dip, duration(at))
 	if q, err := r.offtaken.level.function.FinalValue(); err == nil {
 		fmt.Fprintf(w, ", and returns to %.4g", q)
 	}
@@ -237,16 +242,20 @@ func (r *results) readings(w io.Writer) {
 	early := 0.0
 	seconds, _ := r.in.deadTime.Float64()
 	for i, v := range level.values {
-		if float64(i)*gridStep < seconds {
+		if float64(i)*level.step < seconds {
 			early = max(early, math.Abs(v))
 		}
 	}
-	fmt.Fprintf(w, "  Before the wave arrives at %.0f s nothing moves in truth; the approximant shows up to %.2g mm there.\n", seconds, early)
-	fmt.Fprintf(w, "  Times are read on a grid of %g s.\n", gridStep)
+	fmt.Fprintf(w, "  Before the wave arrives at %s nothing moves in truth; the approximant shows up to %.2g mm there.\n", duration(seconds), early)
+	fmt.Fprintf(w, "  Times are read on a grid of %s.\n", duration(level.step))
 }
 
 func (r *results) valve(w io.Writer) error {
 	heading(w, "demand on the valve")
+	if r.unanswered != nil {
+		fmt.Fprintln(w, "  not known without the step responses")
+		return nil
+	}
 	swing, err := r.in.valveSwing.Float64()
 	if err != nil {
 		return err
@@ -257,14 +266,14 @@ func (r *results) valve(w io.Writer) error {
 		a      answers
 	}{{"setpoint", r.in.setpointStep, r.following}, {"offtake", r.in.offtakeStep, r.offtaken}} {
 		peak, at := c.a.current.extreme()
-		fmt.Fprintf(w, "  %s %+v asks for %.4g mA at most (at %.0f s) about the rest of %v; the valve gives ±%v.\n", c.what, c.height, peak, at, r.in.valveRest, r.in.valveSwing)
+		fmt.Fprintf(w, "  %s %+v asks for %.4g mA at most (at %s) about the rest of %v; the valve gives ±%v.\n", c.what, c.height, peak, duration(at), r.in.valveRest, r.in.valveSwing)
 		if math.Abs(peak) <= swing {
 			fmt.Fprintf(w, "    Within the limits: the linear result holds as far as the valve is concerned.\n")
 			continue
 		}
 		share := new(big.Rat).SetFloat64(swing / math.Abs(peak))
 		most := units.NewQuantity(share.Mul(share, c.height.Value()), c.height.Unit())
-		fmt.Fprintf(w, "    BEYOND THE LIMITS: the linear result is not valid while the valve is at its stop.\n")
+		fmt.Fprintf(w, "    BEYOND THE LIMITS for about %s: the linear result is not valid while the valve is at its stop.\n", duration(c.a.current.beyond(swing)))
 		fmt.Fprintf(w, "    The largest step within them is %.3g; ramp the setpoint, or simulate with the limit.\n", most)
 	}
 	return nil
