@@ -52,12 +52,16 @@ func newExpansion(num, den intpoly.Poly) (*expansion, error) {
 	return e, nil
 }
 
-// rung is the principal parts at one working precision. Of a conjugate pair
+// rung is what is known at one working precision: the principal parts, and the
+// Markov parameters. Of a conjugate pair
 // only the upper pole is kept.
 type rung struct {
 	once  sync.Once
 	parts []principal
 	err   error
+
+	mutex sync.Mutex
+	mu    []ball.Real // Markov parameters, as many as were asked for
 }
 
 // principal is the principal part at one pole: coefficients[j] belongs to

@@ -45,7 +45,7 @@ func (e *expansion) at(t *big.Rat) (float64, error) {
 // enclosure returns a ball around the value at t > 0, computed on rung i.
 func (e *expansion) enclosure(t *big.Rat, i int, near bool) (ball.Real, error) {
 	if near {
-		return e.seriesAt(t, firstPrecision<<i), nil
+		return e.seriesAt(t, i), nil
 	}
 	parts, err := e.principals(i)
 	if err != nil {
@@ -216,42 +216,64 @@ func ceilDiv(a, b int) int {
 	return q
 }
 
-// nearZero reports whether ρ·t ≤ 1/2, where the Taylor series about 0 converges
-// at once and does not cancel as the terms do.
+// nearZero reports whether ρ·t is so small beside the relative degree that the
+// Taylor series about 0 cancels less than the terms do.
 func (e *expansion) nearZero(t *big.Rat) bool {
 	if e.den.Valuation() == e.den.Degree() {
 		return false
 	}
-	return log2Above(t)+e.bound().rate <= -1
+	limit := -1
+	if e.den.Degree()-e.num.Degree() > 2 {
+		limit = e.reachOf()
+	}
+	return log2Above(t)+e.bound().rate <= limit
 }
 
 // log2Above returns n with t < 2^n, for t > 0.
 func log2Above(t *big.Rat) int { return t.Num().BitLen() - t.Denom().BitLen() + 1 }
 
-// seriesAt returns Σ μ_k·t^k/k! with a bound of what is left out. The Markov
-// parameters μ_k come from the recurrence of num = den·Σ μ_k s^(−1−k); leading
-// ones that vanish are exact zeros.
-func (e *expansion) seriesAt(t *big.Rat, prec int) ball.Real {
+// seriesAt returns Σ μ_k·t^k/k! with a bound of what is left out, on rung i.
+func (e *expansion) seriesAt(t *big.Rat, i int) ball.Real {
+	prec := firstPrecision << i
 	work := uint(prec + 32)
 	n := e.den.Degree()
 	g := e.bound()
 	x := ball.FromRat(t, work)
+	// ρt ≤ 2^size. From the term on at which k + 2 ≥ 2ρt, the rest is at most
+	// 2^scale·Σ_{l>k} (ρt)^l/l! ≤ 2^scale·2·(ρt)^(k+1)/(k+1)!.
+	size := log2Above(t) + g.rate
+	least := n - 1
+	if size >= 0 {
+		least = max(least, 2<<size)
+	}
 	var mu []ball.Real
 	sum, power := ball.Real{}, ball.FromInt64(1) // power is t^k/k!
 	for k := 0; ; k++ {
-		mu = e.nextMarkov(mu, work)
+		if k >= len(mu) {
+			mu = e.ladder[i].parameters(e, 2*k+64, work)
+		}
 		sum = sum.Add(mu[k].Mul(power, work), work)
 		power = power.Mul(x, work).Div(ball.FromInt64(int64(k+1)), work)
-		// The rest is at most 2^scale·Σ_{l>k} (ρt)^l/l! ≤ 2^scale·2·(ρt)^(k+1)/(k+1)!,
-		// because ρt ≤ 1/2.
 		rest := new(big.Float).SetMantExp(power.Upper(), g.scale+1+g.rate*(k+1))
-		if k >= n-1 && (k > prec || small(rest, sum, prec)) {
+		if k >= least && (k > prec+least || small(rest, sum, prec)) {
 			return ball.NewReal(sum.Mid(), new(big.Float).SetPrec(64).SetMode(big.AwayFromZero).Add(sum.Radius(), rest))
 		}
 	}
 }
 
-// nextMarkov appends the next Markov parameter.
+// parameters returns at least count Markov parameters in balls of prec bits,
+// which belong to the rung.
+func (r *rung) parameters(e *expansion, count int, prec uint) []ball.Real {
+	r.mutex.Lock()
+	defer r.mutex.Unlock()
+	for len(r.mu) < count {
+		r.mu = e.nextMarkov(r.mu, prec)
+	}
+	return r.mu
+}
+
+// nextMarkov appends the next Markov parameter, by the recurrence of
+// num = den·Σ μ_k s^(−1−k); leading ones that vanish are exact zeros.
 func (e *expansion) nextMarkov(mu []ball.Real, prec uint) []ball.Real {
 	n, k := e.den.Degree(), len(mu)
 	v := ball.FromInt(e.num.Coefficient(n - 1 - k))

@@ -7,29 +7,42 @@ import (
 	"github.com/qofs/qofs/internal/ball"
 )
 
-// So many terms are taken over the whole range, to a quarter, and to a
-// sixteenth of it.
-const (
-	seriesTerms  = 64
-	quarterTerms = 36
-	firstTerms   = 24
-)
-
 // taylorSeries is Σ terms[k]·t^k about t = 0, with the exact Markov parameters
-// over k! as terms: there the modes cancel. Below until, the sum of the first n
-// terms has an error of at most quickError·Σ sizes[k]·t^k +
-// remainder(n)·(t/until)^n. It is filled when it is needed first.
+// over k! as terms: there the modes cancel. It serves up to until, and is filled
+// when it is needed first.
 type taylorSeries struct {
-	until     float64 // 0 where the series leaves the range of the stage
-	once      sync.Once
-	terms     [seriesTerms]double
-	sizes     [seriesTerms]float64
-	remainder [3]float64 // for all terms, for quarterTerms and for firstTerms
+	until float64 // 0 where the series leaves the range of the stage
+	reach float64 // ρ·until, see bound
+	once  sync.Once
+	terms []double
+	sizes []float64 // bounds of |terms|, with 1/quickError times their errors
+	tiers [3]tier   // up to 1, 1/4 and 1/16 of until
 }
 
-// seriesRange returns the until of the series, with ρ·until = 8 (see bound).
+// tier is how many terms are taken, and what is left out at until.
+type tier struct {
+	count     int
+	remainder float64
+}
+
+// maxSeriesTerms bounds the number of terms of the first stage.
+const maxSeriesTerms = 512
+
+// reachOf returns the exponent E of the range ρ·t ≤ 2^E in which the series is
+// preferred: the function begins with t^(r−1), r the relative degree, and the modes
+// cancel until t has grown to some r/ρ.
+func (e *expansion) reachOf() int {
+	r := e.den.Degree() - e.num.Degree()
+	reach := 3
+	for 1<<reach < 2*r && reach < 7 {
+		reach++
+	}
+	return reach
+}
+
+// seriesRange returns the until of the series.
 func (e *expansion) seriesRange(q *quick) float64 {
-	until := 3 - e.bound().rate
+	until := e.reachOf() - e.bound().rate
 	if size := e.seriesScale(q); until < -300 || until > 300 || size > 300 || size < -300 {
 		return 0
 	}
@@ -49,52 +62,75 @@ func exponentOf(power float64) int {
 func (e *expansion) series(q *quick) *taylorSeries {
 	s := &q.taylor
 	s.once.Do(func() {
-		const prec = 256
+		s.reach = math.Ldexp(1, e.reachOf())
+		count := 0
+		for i := range s.tiers {
+			s.tiers[i] = e.tier(s.reach, math.Ldexp(s.reach, -2*i), e.seriesScale(q))
+			count = max(count, s.tiers[i].count)
+		}
+		const prec = 512
 		factorial := ball.FromInt64(1)
-		for k, v := range e.markov(seriesTerms, prec) {
+		for k, v := range e.markov(count, prec) {
 			if k > 0 {
 				factorial = factorial.Mul(ball.FromInt64(int64(k)), prec)
 			}
 			c := v.Div(factorial, prec).MulPow2(-exponentOf(q.scale))
 			d, ok := doubled(c, midpoint(c))
-			s.terms[k], s.sizes[k] = d, math.Abs(d.h)
+			size := math.Abs(d.h)
 			if !ok { // a parameter that is 0, or nearly so
-				s.terms[k] = double{}
+				d = double{}
 				above, _ := c.Abs().Upper().Float64()
-				s.sizes[k] = above/quickError + 0x1p-1000
+				size = above/quickError + 0x1p-1000
 			}
+			s.terms, s.sizes = append(s.terms, d), append(s.sizes, size)
 		}
-		// 2·2^scale·(ρ·until)^n/n! with 64! > 2^295, 36! > 2^138 and 24! > 2^79.
-		size := e.seriesScale(q)
-		s.remainder[0] = math.Ldexp(1, size+1+3*seriesTerms-295)
-		s.remainder[1] = math.Ldexp(1, size+1+3*quarterTerms-138)
-		s.remainder[2] = math.Ldexp(1, size+1+3*firstTerms-79)
 	})
 	return s
+}
+
+// tier returns how many terms make the rest negligible at x = ρ·t, beside the
+// first term that matters, x^(r−1)/(r−1)!, and beside 1; and the bound of the rest
+// at until, 2·2^scale·reach^n/n!, which holds for n + 1 ≥ 2·reach (see seriesAt).
+func (e *expansion) tier(reach, x float64, scale int) tier {
+	first := e.den.Degree() - e.num.Degree() - 1
+	wanted, term := 0.0, 0.0 // logarithms
+	n := 1
+	remainder := math.Ldexp(1, scale+1) * reach
+	for ; n < maxSeriesTerms; n++ {
+		term += math.Log2(x / float64(n))
+		if n == first {
+			wanted = min(0, term)
+		}
+		if n >= first && float64(n+1) >= 2*reach && term < wanted-90 {
+			break
+		}
+		remainder *= reach / float64(n+1)
+	}
+	return tier{count: n, remainder: remainder * (1 + 0x1p-40)}
 }
 
 // at returns the series at th + tl ≤ until and a bound of its error.
 func (s *taylorSeries) at(th, tl float64) (double, float64) {
 	ratio := th / s.until
-	r4 := float64(ratio*ratio) * float64(ratio*ratio)
-	r12 := float64(r4*r4) * r4
-	r24 := float64(r12 * r12)
+	t := &s.tiers[0]
 	switch {
 	case ratio < 1.0/16:
-		return s.sum(th, tl, firstTerms, s.remainder[2]*r24)
+		t = &s.tiers[2]
 	case ratio < 1.0/4:
-		return s.sum(th, tl, quarterTerms, float64(s.remainder[1]*r24)*r12)
+		t = &s.tiers[1]
 	}
-	return s.sum(th, tl, seriesTerms, float64(s.remainder[0]*r24)*float64(r24*r12)*r4)
-}
-
-// sum adds a number of terms and bounds the error, given that of the rest.
-func (s *taylorSeries) sum(th, tl float64, terms int, rest float64) (double, float64) {
-	sum := s.terms[terms-1]
-	magnitude := s.sizes[terms-1]
-	for k := terms - 2; k >= 0; k-- {
+	rest := t.remainder
+	for n, power := t.count, ratio; n > 0; n >>= 1 {
+		if n&1 == 1 {
+			rest *= power
+		}
+		power *= power
+	}
+	sum := s.terms[t.count-1]
+	magnitude := s.sizes[t.count-1]
+	for k := t.count - 2; k >= 0; k-- {
 		sum = product2(sum, th, tl).plus(s.terms[k])
 		magnitude = float64(magnitude*th) + s.sizes[k]
 	}
-	return sum, magnitude*quickError + rest*(1+0x1p-40)
+	return sum, magnitude*quickError + rest*(1+0x1p-40) + 0x1p-1000
 }
