@@ -45,7 +45,7 @@ func newAxisRatio(f ratfun.Func) (r *axisRatio, ok bool) {
 	if r.den, d, ok = axisTerms(den); !ok {
 		return nil, false
 	}
-	if k := e - d; k < -800 || k > 800 {
+	if k := e - d; k < -400 || k > 400 { // a quotient between 2^−600 and 2^500 stays normal
 		return nil, false
 	}
 	r.factor = math.Ldexp(1, e-d)
@@ -154,7 +154,9 @@ func twoSum(a, b float64) (s, e float64) {
 // Underflow adds nothing that counts. An operation that underflows is off by
 // 2^−1074, which later steps multiply by |w|^k. Where |w| ≤ 1 that stays below
 // 2^−1060, and u² times a size is above 2^−360; where |w| > 1, a size is at least
-// 2^−axisSpan·|w|^(m−1), and 2^−1060·|w|^(m−1) is again far below.
+// 2^−axisSpan·|w|^(m−1), and 2^−1060·|w|^(m−1) is again far below. The bound
+// itself is above 2^−106·minSize/maxSize, so that a component that passes the
+// test of its rounding is far from underflow.
 func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
 		return 0, false, false
@@ -163,7 +165,7 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	wl := -math.FMA(omega, omega, -w)
 	a, aLow, b, bLow, above := evaluate(r.num, omega, -w, wl)
 	c, cLow, d, dLow, below := evaluate(r.den, omega, -w, wl)
-	if !(above >= minSize && above <= maxSize && below >= minSize && below <= maxSize) {
+	if !(above >= minSize && below >= minSize && above+below <= maxSize) {
 		return 0, false, false
 	}
 	inverse := 1 / math.FMA(c, c, float64(d*d))
@@ -180,8 +182,8 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	y, yLow := twoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse))
 	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
 	off := float64(e * math.FMA(k, r.boundK, r.bound))
-	reOK = x == x+(xLow+off) && x == x+(xLow-off) && math.Abs(x) > 0x1p-300
-	imOK = y == y+(yLow+off) && y == y+(yLow-off) && math.Abs(y) > 0x1p-300
+	reOK = x == x+(xLow+off) && x == x+(xLow-off)
+	imOK = y == y+(yLow+off) && y == y+(yLow-off)
 	return complex(x*r.factor, y*r.factor), reOK, imOK
 }
 
@@ -210,7 +212,7 @@ func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
 	wl := -math.FMA(omega, omega, -w)
 	above, aboveLow, sizeAbove := squares(evaluate(r.num, omega, -w, wl))
 	below, belowLow, sizeBelow := squares(evaluate(r.den, omega, -w, wl))
-	if !(sizeAbove >= minSize && sizeAbove <= maxSize && sizeBelow >= minSize && sizeBelow <= maxSize) {
+	if !(sizeAbove >= minSize && sizeBelow >= minSize && sizeAbove+sizeBelow <= maxSize) {
 		return 0, false
 	}
 	errAbove, errBelow := r.boundSquare*sizeAbove*sizeAbove, r.boundSquare*sizeBelow*sizeBelow

@@ -42,6 +42,8 @@ func TestFrequencyStages(t *testing.T) {
 		}, 0.05, 0},
 		{"at the resonance", func() Continuous { return MustParse("(s + 1)/(s^2 + 0.000002 s + 1)") }, 0.6, 1},
 		{"at the edge of stability", func() Continuous { return MustParse("(s + 3)/((s^2 + 1e-14 s + 2) (s + 1)^7)") }, 1, math.Sqrt2},
+		{"large gain", func() Continuous { return MustParse("1e115 (s + 3)/(s^2 + s + 2)") }, 0.01, 0},
+		{"small gain", func() Continuous { return MustParse("1e-115 (s^2 + 3)/(s^2 + s + 3)") }, 1, math.Sqrt(3)},
 		{"near cancellation", func() Continuous { return MustParse("(s^2 + 0.000001 s + 4)/((s^2 + 0.0000010001 s + 4) (s + 1)^5)") }, 0.05, 0},
 	}
 	for _, family := range families {

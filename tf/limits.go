@@ -31,7 +31,7 @@ func (e *NoLimitError) Error() string { return e.Theorem + ": " + e.Reason }
 // Source: the theorem is common practice, e.g. Doetsch, Introduction to the
 // Theory and Application of the Laplace Transformation, 1974.
 func (g Continuous) InitialValue() (units.Quantity, error) {
-	unit := g.c.gainUnit().Div(units.MustParse("s"))
+	unit := g.c.gainUnit().Div(second)
 	if g.c.delay != nil {
 		return units.NewQuantity(nil, unit), nil
 	}
@@ -83,7 +83,7 @@ func (g Continuous) FinalValue() (units.Quantity, error) {
 	if err != nil {
 		return units.Quantity{}, err
 	}
-	return units.NewQuantity(v, g.c.gainUnit().Div(units.MustParse("s"))), nil
+	return units.NewQuantity(v, g.c.gainUnit().Div(second)), nil
 }
 
 // FinalValue returns the limit for k → ∞ of the sequence f_k whose z-transform

@@ -197,7 +197,7 @@ func unitAdvice(found, wanted units.Unit) string {
 
 // seconds is a time as an exact number of seconds.
 func seconds(t units.Quantity) (*big.Rat, error) {
-	s, err := t.ConvertTo(units.MustParse("s"))
+	s, err := t.ConvertTo(second)
 	if err != nil {
 		return nil, err
 	}
@@ -226,10 +226,10 @@ var ErrNegativeDeadTime = errors.New("a dead time must not be negative")
 
 // DeadTime is the dead time, a number of seconds.
 func (g Continuous) DeadTime() units.Quantity {
-	return units.NewQuantity(g.c.delaySeconds(), units.MustParse("s"))
+	return units.NewQuantity(g.c.delaySeconds(), second)
 }
 
 // Period is the sampling period, a number of seconds.
 func (g Discrete) Period() units.Quantity {
-	return units.NewQuantity(g.c.periodSeconds(), units.MustParse("s"))
+	return units.NewQuantity(g.c.periodSeconds(), second)
 }
