@@ -16,14 +16,15 @@ type axisTerm struct{ even, evenLow, odd, oddLow float64 }
 // with compensation. It is immutable.
 type axisRatio struct {
 	num, den []axisTerm // highest power first
-	factor   float64    // a power of two
+	unit     float64    // a power of two: ω is evaluated as ω·unit
+	factor   float64    // a power of two: the ratio of what was scaled
 	// Multiples of 2^−106 for the error bounds of value and magnitude.
 	bound, boundK, boundSquare float64
 }
 
 // Binary exponents within which the error bound of value holds: a coefficient
-// that is not 0 is at least 2^−axisSpan after scaling, and both |ω| and the
-// sizes of numerator and denominator lie between minSize and maxSize.
+// that is not 0 is at least 2^−axisSpan after scaling, and both |ω|, scaled,
+// and the sizes of numerator and denominator lie between minSize and maxSize.
 const (
 	axisSpan = 150
 	minSize  = 0x1p-250
@@ -37,12 +38,16 @@ func newAxisRatio(f ratfun.Func) (r *axisRatio, ok bool) {
 	if num.IsZero() || max(num.Degree(), den.Degree()) > 1000 {
 		return nil, false
 	}
-	r = &axisRatio{}
+	balance := balancingPower(den)
+	if den.Degree() == 0 {
+		balance = balancingPower(num)
+	}
+	r = &axisRatio{unit: math.Ldexp(1, -balance)}
 	var e, d int
-	if r.num, e, ok = axisTerms(num); !ok {
+	if r.num, e, ok = axisTerms(num, balance); !ok {
 		return nil, false
 	}
-	if r.den, d, ok = axisTerms(den); !ok {
+	if r.den, d, ok = axisTerms(den, balance); !ok {
 		return nil, false
 	}
 	if k := e - d; k < -400 || k > 400 { // a quotient between 2^−600 and 2^500 stays normal
@@ -58,20 +63,35 @@ func newAxisRatio(f ratfun.Func) (r *axisRatio, ok bool) {
 	return r, true
 }
 
-// axisTerms scales the coefficients by a power of two, 2^−exponent, and splits
-// them into two float64 each.
-func axisTerms(p intpoly.Poly) (terms []axisTerm, exponent int, ok bool) {
-	exponent = p.MaxBitLen()
+// balancingPower is the power h for which the highest and the lowest coefficient
+// of p(2^h x) are of about the same size; |h| ≤ 500.
+func balancingPower(p intpoly.Poly) int {
+	low, top := p.Valuation(), p.Degree()
+	if top <= low {
+		return 0
+	}
+	return max(-500, min((p.BitLen(low)-p.BitLen(top))/(top-low), 500))
+}
+
+// axisTerms scales the coefficients of p(2^balance x) by a power of two,
+// 2^−exponent, and splits them into two float64 each.
+func axisTerms(p intpoly.Poly, balance int) (terms []axisTerm, exponent int, ok bool) {
+	exponent = math.MinInt
+	for i := range p.Degree() + 1 {
+		if p.Sign(i) != 0 {
+			exponent = max(exponent, p.BitLen(i)+i*balance)
+		}
+	}
 	terms = make([]axisTerm, p.Degree()/2+1)
 	for i := range p.Degree() + 1 {
 		if p.Sign(i) == 0 {
 			continue
 		}
-		if p.BitLen(i) < exponent-axisSpan+1 {
+		if p.BitLen(i)+i*balance < exponent-axisSpan+1 {
 			return nil, 0, false
 		}
 		c := new(big.Float).SetInt(p.Coefficient(i))
-		c.SetMantExp(c, -exponent)
+		c.SetMantExp(c, i*balance-exponent)
 		high, _ := c.Float64()
 		low, _ := c.Sub(c, new(big.Float).SetFloat64(high)).Float64()
 		if t := &terms[len(terms)-1-i/2]; i%2 == 0 {
@@ -158,6 +178,7 @@ func twoSum(a, b float64) (s, e float64) {
 // itself is above 2^−106·minSize/maxSize, so that a component that passes the
 // test of its rounding is far from underflow.
 func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
+	omega *= r.unit
 	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
 		return 0, false, false
 	}
@@ -205,6 +226,7 @@ func residual(a, aLow, p, c, cLow, q, d, dLow float64) float64 {
 // by (2 K + 25 m² + 80 m) u² size². The quotient of two such pairs adds 32 u² of
 // itself, and a square root halves it all.
 func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
+	omega *= r.unit
 	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
 		return 0, false
 	}

@@ -44,6 +44,11 @@ func TestFrequencyStages(t *testing.T) {
 		{"at the edge of stability", func() Continuous { return MustParse("(s + 3)/((s^2 + 1e-14 s + 2) (s + 1)^7)") }, 1, math.Sqrt2},
 		{"large gain", func() Continuous { return MustParse("1e115 (s + 3)/(s^2 + s + 2)") }, 0.01, 0},
 		{"small gain", func() Continuous { return MustParse("1e-115 (s^2 + 3)/(s^2 + s + 3)") }, 1, math.Sqrt(3)},
+		{"stiff", func() Continuous {
+			return MustParse("(s + 1e9)/((s + 1e-7) (s + 3) (s + 2e4) (s^2 + 1e5 s + 7e15) (s + 3e8))")
+		}, 0.01, 7e6},
+		{"fast", func() Continuous { return MustParse("1e60/(s + 1e6)^10") }, 0.01, 3e6},
+		{"slow", func() Continuous { return MustParse("1/(1e7 s + 1)^10") }, 0.01, 2e-7},
 		{"near cancellation", func() Continuous { return MustParse("(s^2 + 0.000001 s + 4)/((s^2 + 0.0000010001 s + 4) (s + 1)^5)") }, 0.05, 0},
 	}
 	for _, family := range families {
