@@ -1,6 +1,7 @@
 package algebraic
 
 import (
+	"fmt"
 	"strings"
 	"testing"
 )
@@ -21,6 +22,24 @@ func BenchmarkFamily(b *testing.B) {
 			inputs := families[name]
 			for i := 0; b.Loop(); i++ {
 				Roots(inputs[i%len(inputs)].poly)
+			}
+		})
+	}
+}
+
+// BenchmarkEnclosure refines one root of a polynomial of degree 8.
+func BenchmarkEnclosure(b *testing.B) {
+	s := stream(1)
+	roots, err := Roots(s.poly(8, 32))
+	if err != nil {
+		b.Fatal(err)
+	}
+	for _, bits := range []uint{64, 128, 256, 1024, 8192} {
+		b.Run(fmt.Sprintf("bits=%d", bits), func(b *testing.B) {
+			for i := 0; b.Loop(); i++ {
+				if _, err := roots[i%len(roots)].Number.Enclosure(bits); err != nil {
+					b.Fatal(err)
+				}
 			}
 		})
 	}

@@ -101,7 +101,7 @@ func (f *floats) place(re, im []float64) bool {
 		r := roughExp2((f.logs[a] - f.logs[b]) / float64(b-a))
 		sin, cos := math.Sincos(2*math.Pi*float64(h)/float64(n) + 0.7)
 		stepSin, stepCos := 0.0, -1.0
-		if b-a != 2 {
+		if b-a > 2 {
 			stepSin, stepCos = math.Sincos(2 * math.Pi / float64(b-a))
 		}
 		for range b - a {

@@ -35,8 +35,10 @@ func (x *Number) disc(bits uint, w *work) (disc, error) {
 	}
 	e := d.order()
 	target := e - int(bits)
-	// A point rounded to the working precision stays within two radii.
-	working := uint(max(128, e-d.radius.e+18))
+	// A step doubles the digits and loses some to rounding; a point rounded to
+	// the working precision stays within two radii.
+	known := e - d.radius.e
+	working := uint(max(128, known+18, min(2*known, int(bits))+64))
 	var ev evaluation
 	for d.radius.m != 0 && d.radius.e > target {
 		if working > 16*(MaxPrecision+MaxBits) {
