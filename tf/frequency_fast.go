@@ -9,8 +9,9 @@ import (
 )
 
 // axisTerm is one coefficient of the even and one of the odd part of a
-// polynomial p(jω) = E(−ω²) + jω·O(−ω²), each the sum of two float64.
-type axisTerm struct{ even, evenLow, odd, oddLow float64 }
+// polynomial p(jω) = E(−ω²) + jω·O(−ω²), each the sum of two float64, and their
+// absolute values.
+type axisTerm struct{ even, evenLow, evenSize, odd, oddLow, oddSize float64 }
 
 // axisRatio evaluates a ratio of polynomials on the imaginary axis in float64
 // with compensation. It is immutable.
@@ -95,9 +96,9 @@ func axisTerms(p intpoly.Poly, balance int) (terms []axisTerm, exponent int, ok 
 		high, _ := c.Float64()
 		low, _ := c.Sub(c, new(big.Float).SetFloat64(high)).Float64()
 		if t := &terms[len(terms)-1-i/2]; i%2 == 0 {
-			t.even, t.evenLow = high, low
+			t.even, t.evenLow, t.evenSize = high, low, math.Abs(high)
 		} else {
-			t.odd, t.oddLow = high, low
+			t.odd, t.oddLow, t.oddSize = high, low, math.Abs(high)
 		}
 	}
 	return terms, exponent, true
@@ -109,10 +110,20 @@ func axisTerms(p intpoly.Poly, balance int) (terms []axisTerm, exponent int, ok 
 // values of all terms, added up.
 func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, size float64) {
 	t := &terms[0]
-	e, eLow, eSize := t.even, t.evenLow, math.Abs(t.even)
-	o, oLow, oSize := t.odd, t.oddLow, math.Abs(t.odd)
+	e, eLow, eSize := t.even, t.evenLow, t.evenSize
+	o, oLow, oSize := t.odd, t.oddLow, t.oddSize
 	wa := math.Abs(wh)
-	for i := 1; i < len(terms); i++ {
+	first := 1
+	if o == 0 && len(terms) > 1 { // an even degree: the odd part begins later
+		t = &terms[1]
+		p := float64(e * wh)
+		s, sLow := twoSum(p, t.even)
+		eLow = math.FMA(eLow, wh, math.FMA(e, wl, math.FMA(e, wh, -p))+(sLow+t.evenLow))
+		eSize = math.FMA(eSize, wa, t.evenSize)
+		e, o, oLow, oSize = s, t.odd, t.oddLow, t.oddSize
+		first = 2
+	}
+	for i := first; i < len(terms); i++ {
 		t := &terms[i]
 		// p + (rounding error of p) = e·wh exactly; s + sLow = p + t.even exactly
 		p := float64(e * wh)
@@ -121,7 +132,7 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 		v := s - p
 		sLow := (p - (s - v)) + (t.even - v)
 		eLow = math.FMA(eLow, wh, math.FMA(e, wl, pLow)+(sLow+t.evenLow))
-		eSize = math.FMA(eSize, wa, math.Abs(t.even))
+		eSize = math.FMA(eSize, wa, t.evenSize)
 		e = s
 
 		p = float64(o * wh)
@@ -130,7 +141,7 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 		v = s - p
 		sLow = (p - (s - v)) + (t.odd - v)
 		oLow = math.FMA(oLow, wh, math.FMA(o, wl, pLow)+(sLow+t.oddLow))
-		oSize = math.FMA(oSize, wa, math.Abs(t.odd))
+		oSize = math.FMA(oSize, wa, t.oddSize)
 		o = s
 	}
 	im = float64(o * omega)
