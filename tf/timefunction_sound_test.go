@@ -93,6 +93,9 @@ func randomDifficult(r *rand.Rand) ratfun.Func {
 	case 2:
 		return randomCluster(r)
 	}
+	if r.IntN(6) == 0 {
+		return randomProper(r, 12+r.IntN(20))
+	}
 	return f
 }
 
