@@ -26,6 +26,7 @@ package lti
 
 import (
 	"errors"
+	"fmt"
 	"math/big"
 	"unicode"
 
@@ -61,7 +62,9 @@ func (e *Equations) Constant(name, quantity string) {
 	e.constants = append(e.constants, declaration{name, quantity})
 }
 
-// Equation adds an equation, such as "m x” + c x' + k x = f".
+// Equation adds an equation, such as
+//
+//	m x'' + c x' + k x = f
 func (e *Equations) Equation(text string) { e.texts = append(e.texts, text) }
 
 // Constant is a named quantity of a System.
@@ -143,6 +146,9 @@ func (s *System) link(faulty map[string]bool) []error {
 		e := &evaluator{number: i + 1, equation: q, system: s}
 		s.rows[i], _ = e.linear()
 		faults = append(faults, e.faults...)
+		if len(faults) >= maxFaults {
+			return append(faults[:maxFaults], fmt.Errorf("more than %d faults: %w", maxFaults-1, ErrLimit))
+		}
 	}
 	return faults
 }

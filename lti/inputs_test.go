@@ -118,13 +118,28 @@ func TestHostileEquations(t *testing.T) {
 	}
 	for name, text := range map[string]string{
 		"exponents of units": power + " x = y", "digits": long.String(),
-		"factors": "x = " + strings.Repeat("a ", 4500) + "y",
+		"constant": "x' = " + strings.Repeat("7", 3000) + " b y",
+		"factors":  "x = " + strings.Repeat("a ", 4500) + "y",
 	} {
-		_, err := record(map[string]string{"x": "m", "y": "m"}, map[string]string{"a": "1 s"}, text).Build()
+		_, err := record(map[string]string{"x": "m", "y": "m"}, map[string]string{"a": "1 s", "b": "3 1/s"}, text).Build()
 		var q *lti.EquationError
 		if !errors.As(err, &q) || !errors.Is(err, lti.ErrLimit) {
 			t.Errorf("%s: %.200v, want an EquationError that wraps ErrLimit", name, err)
 		}
+	}
+}
+
+// The number of faults is bounded, so that a text cannot make a report that
+// fills the memory.
+func TestManyFaults(t *testing.T) {
+	e := lti.NewEquations()
+	for range 20 {
+		e.Equation(strings.Repeat("q + ", 30) + "q = 0")
+	}
+	_, err := e.Build()
+	joined, ok := err.(interface{ Unwrap() []error })
+	if !ok || len(joined.Unwrap()) != 101 || !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("%.200v", err)
 	}
 }
 
@@ -137,6 +152,9 @@ func TestTextForms(t *testing.T) {
 	var back lti.System
 	if err := back.UnmarshalText(text); err != nil || back.String() != s.String() {
 		t.Errorf("%s reads back as %v, %v", text, &back, err)
+	}
+	if len(back.Signals()) != 4 || back.Constants()[3].Value.String() != "5600 m^2" || back.Equations()[0] != "inflow = kq opening - backwater level" {
+		t.Errorf("%v", &back)
 	}
 	// A value in a struct is the same JSON.
 	outer, err := json.Marshal(struct{ Plant *lti.System }{s})

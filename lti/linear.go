@@ -34,7 +34,8 @@ type evaluator struct {
 const (
 	nonlinear = "a transfer function holds only for equations that are linear in the signals; " +
 		"replace the term by its slope at an operating point (linearise)"
-	maxRatBits = 1 << 16 // of a number in an equation
+	maxRatBits = 1 << 13 // of a number in an equation
+	maxFaults  = 100     // reported by Build in the terms of equations
 	maxFactors = 1 << 12 // signals and constants in a product, powers counted out
 )
 
@@ -43,6 +44,9 @@ func (e *evaluator) fail(n *node, format string, args ...any) (value, bool) {
 }
 
 func (e *evaluator) failWith(n *node, err error, format string, args ...any) (value, bool) {
+	if len(e.faults) >= maxFaults {
+		return value{}, false
+	}
 	e.faults = append(e.faults, &EquationError{Number: e.number, Equation: e.equation.text, Term: e.equation.text[n.from:n.to],
 		Offset: n.from, Reason: fmt.Sprintf(format, args...), Err: err})
 	return value{}, false
@@ -84,7 +88,10 @@ func (e *evaluator) name(n *node) (value, bool) {
 			return e.failWith(n, nil, "the constant is in %s, which counts cycles or degrees; an equation needs radians: write %s", symbol, inRadians(q))
 		}
 		number := q.Value()
-		return value{dimension: q.Unit().Dimension().WithoutAngle(), degree: 1, number: number.Mul(number, q.Unit().Scale())}, true
+		return e.bounded(n, value{dimension: q.Unit().Dimension().WithoutAngle(), degree: 1, number: number.Mul(number, q.Unit().Scale())})
+	}
+	if len(e.faults) >= maxFaults {
+		return value{}, false
 	}
 	return e.fail(n, "no signal or constant has this name; declared are %s", e.system.names())
 }
