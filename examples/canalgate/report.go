@@ -117,6 +117,8 @@ func (r *results) modes(w io.Writer) error {
 	for _, m := range modes {
 		fmt.Fprintf(w, "  %s\n", describe(m))
 	}
+	fmt.Fprintf(w, "  A mode is said to move when it is elsewhere by more than 1 %% with degree %d instead of %d.\n",
+		r.in.approximantDegree+2, r.in.approximantDegree)
 	return nil
 }
 
@@ -176,6 +178,7 @@ func (r *results) stability(w io.Writer) error {
 		fmt.Fprintf(w, "  Padé degree %d: %s: of %d poles %d decay, %d stay, %d grow (counted exactly)\n", c.degree, verdict,
 			counts.Inside+counts.On+counts.Outside, counts.Inside, counts.On, counts.Outside)
 	}
+	fmt.Fprintln(w, "  The counts are exact for the approximants; they do not prove the loop with the dead time itself.")
 	return nil
 }
 
