@@ -19,10 +19,11 @@ type taylorSeries struct {
 	tiers [3]tier   // up to 1, 1/4 and 1/16 of until
 }
 
-// tier is how many terms are taken, and what is left out at until.
+// tier is how many terms are taken, and what is left out at until. From the
+// index tail on the terms are so small that float64 serves for them.
 type tier struct {
-	count     int
-	remainder float64
+	count, tail int
+	remainder   float64
 }
 
 // maxSeriesTerms bounds the number of terms of the first stage.
@@ -84,13 +85,36 @@ func (e *expansion) series(q *quick) *taylorSeries {
 			}
 			s.terms, s.sizes = append(s.terms, d), append(s.sizes, size)
 		}
+		for i := range s.tiers {
+			s.findTail(&s.tiers[i], math.Ldexp(s.until, -2*i))
+		}
 	})
 	return s
 }
 
+// findTail sets the tail of a tier for times up to last: its terms are together
+// below 2^−36 of the sum of all, at last and therefore at every earlier time, so
+// that computing with them in float64, three roundings a term of at most 512,
+// adds less than 2^−36·2^−42 = 2^−78 of the sum to the error.
+func (s *taylorSeries) findTail(t *tier, last float64) {
+	total, power := 0.0, 1.0
+	powers := make([]float64, t.count)
+	for k := range powers {
+		powers[k] = s.sizes[k] * power
+		total += powers[k]
+		power *= last
+	}
+	t.tail = t.count
+	for rest := 0.0; t.tail > 1; t.tail-- {
+		if rest += powers[t.tail-1]; !(rest <= total*0x1p-37) {
+			return
+		}
+	}
+}
+
 // tier returns how many terms make the rest negligible at x = ρ·t, beside the
 // first term that matters, x^(r−1)/(r−1)!, and beside 1; and the bound of the rest
-// at until, 2·2^scale·reach^n/n!, which holds for n + 1 ≥ 2·reach (see seriesAt).
+// at until, 2·2^scale·reach^n/n!, which holds at x for n + 1 ≥ 2x (see seriesAt).
 func (e *expansion) tier(reach, x float64, scale int) tier {
 	first := e.den.Degree() - e.num.Degree() - 1
 	wanted, term := 0.0, 0.0 // logarithms
@@ -101,7 +125,7 @@ func (e *expansion) tier(reach, x float64, scale int) tier {
 		if n == first {
 			wanted = min(0, term)
 		}
-		if n >= first && float64(n+1) >= 2*reach && term < wanted-90 {
+		if n >= first && float64(n+1) >= 2*x && term < wanted-90 {
 			break
 		}
 		remainder *= reach / float64(n+1)
@@ -126,9 +150,13 @@ func (s *taylorSeries) at(th, tl float64) (double, float64) {
 		}
 		power *= power
 	}
-	sum := s.terms[t.count-1]
-	magnitude := s.sizes[t.count-1]
-	for k := t.count - 2; k >= 0; k-- {
+	tail, magnitude, k := 0.0, 0.0, t.count-1
+	for ; k >= t.tail; k-- {
+		tail = float64(tail*th) + s.terms[k].h
+		magnitude = float64(magnitude*th) + s.sizes[k]
+	}
+	sum := double{h: tail}
+	for ; k >= 0; k-- {
 		sum = product2(sum, th, tl).plus(s.terms[k])
 		magnitude = float64(magnitude*th) + s.sizes[k]
 	}
