@@ -214,8 +214,9 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	y, yLow := twoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse))
 	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
 	off := float64(e * math.FMA(k, r.boundK, r.bound))
-	reOK = x == x+(xLow+off) && x == x+(xLow-off)
-	imOK = y == y+(yLow+off) && y == y+(yLow-off)
+	// Both ends round alike; then they round to x, which is fl(x + xLow).
+	reOK = x+(xLow+off) == x+(xLow-off)
+	imOK = y+(yLow+off) == y+(yLow-off)
 	return complex(x*r.factor, y*r.factor), reOK, imOK
 }
 
@@ -264,7 +265,7 @@ func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
 	rest = math.FMA(-root, root, square) + squareLow
 	high, low := twoSum(root, rest/float64(2*root))
 	off = float64(0.51*off/root) + float64(0x1p-101*high)
-	return high * r.factor, high == high+(low+off) && high == high+(low-off) && high > 0x1p-300
+	return high * r.factor, high+(low+off) == high+(low-off) && high > 0x1p-300
 }
 
 // squares is re² + im² as a sum of two float64; it passes size on.
