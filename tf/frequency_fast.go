@@ -113,18 +113,18 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 	e, eLow, eSize := t.even, t.evenLow, t.evenSize
 	o, oLow, oSize := t.odd, t.oddLow, t.oddSize
 	wa := math.Abs(wh)
-	first := 1
-	if o == 0 && len(terms) > 1 { // an even degree: the odd part begins later
-		t = &terms[1]
+	rest := terms[1:]
+	if o == 0 && len(rest) > 0 { // an even degree: the odd part begins later
+		t = &rest[0]
 		p := float64(e * wh)
 		s, sLow := twoSum(p, t.even)
 		eLow = math.FMA(eLow, wh, math.FMA(e, wl, math.FMA(e, wh, -p))+(sLow+t.evenLow))
 		eSize = math.FMA(eSize, wa, t.evenSize)
 		e, o, oLow, oSize = s, t.odd, t.oddLow, t.oddSize
-		first = 2
+		rest = rest[1:]
 	}
-	for i := first; i < len(terms); i++ {
-		t := &terms[i]
+	for i := range rest {
+		t := &rest[i]
 		// p + (rounding error of p) = e·wh exactly; s + sLow = p + t.even exactly
 		p := float64(e * wh)
 		pLow := math.FMA(e, wh, -p)
