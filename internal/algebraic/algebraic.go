@@ -6,6 +6,23 @@
 // and a disc that contains this root and no other. Everything else about it is
 // computed on demand and is a function of the number alone, so that the same
 // question has the same answer on every machine.
+//
+// Roots works in stages; a later one runs only for what an earlier one leaves
+// open, and work counts how often each was needed:
+//
+//	triage      float64 approximations (float.go), one compensated value a root
+//	            (compensated.go), disjoint discs (triage.go); with an exponent
+//	            for every root where sizes span too many decades (decades.go)
+//	decomposed  exact square-free decomposition, unless a gcd modulo a prime
+//	            shows that there is nothing to decompose (squarefree.go)
+//	isolated    the iteration in fixed point of growing precision (isolate.go)
+//	refined     Newton steps in fixed point from an isolating disc, until a
+//	            component rounds unambiguously (refine.go, round.go)
+//	decided     algebra, where a component may lie exactly on a rounding
+//	            boundary or be 0 (exact.go)
+//
+// No stage depends on how the machine rounds a product and a sum together:
+// guesses are proved, and bounds hold for fused and separate operations.
 package algebraic
 
 import (
