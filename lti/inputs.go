@@ -44,9 +44,8 @@ func (s *System) determinations() []determination {
 	return out
 }
 
-// unknowns returns the signals that the equations determine once input is given
-// and the signals in zero are 0, as many as there are equations; see
-// TransferFunction for the rule.
+// unknowns returns the signals that the equations must determine: all but the
+// input, those held at 0, and those in no equation.
 func (s *System) unknowns(input, output int, zero []int) ([]int, error) {
 	signs := s.determinations()
 	for _, i := range []int{input, output} {
@@ -55,38 +54,37 @@ func (s *System) unknowns(input, output int, zero []int) ([]int, error) {
 				Reason: fmt.Sprintf("%s stands in no equation", s.signals[i].Name)}
 		}
 	}
-	signs[output] = isDifferentiated + 1
 	var rest []int
 	for i := range s.signals {
 		if i != input && !slices.Contains(zero, i) && signs[i] != isAbsent {
 			rest = append(rest, i)
 		}
 	}
-	strongest := slices.Clone(rest)
-	slices.SortStableFunc(strongest, func(i, j int) int { return int(signs[j] - signs[i]) })
-	n := len(s.rows)
-	switch {
-	case len(rest) < n, len(rest) > n && signs[strongest[n-1]] == signs[strongest[n]]:
-		return nil, s.miscounted(input, output, rest, strongest)
-	case len(rest) > n:
-		strongest = strongest[:n]
-		slices.Sort(strongest)
-		return strongest, nil
+	if len(rest) != len(s.rows) {
+		signs[output] = isDifferentiated + 1 // never proposed as an input
+		return nil, s.miscounted(input, output, rest, zero, signs)
 	}
 	return rest, nil
 }
 
 // miscounted explains that the number of equations is not that of unknowns.
-// The weakest of the unknowns is the likeliest input.
-func (s *System) miscounted(input, output int, unknowns, strongest []int) error {
+// Which further signals are inputs is asked, not guessed; the proposal names
+// those that the form of the equations says the least about.
+func (s *System) miscounted(input, output int, unknowns, zero []int, signs []determination) error {
 	e := &DeterminacyError{Equations: len(s.rows), Unknowns: s.namesOf(unknowns)}
 	counts := fmt.Sprintf("%d equations for %d unknown signals (%s) with %s as the input",
 		len(s.rows), len(unknowns), strings.Join(e.Unknowns, ", "), s.signals[input].Name)
-	if missing := len(unknowns) - len(s.rows); missing > 0 {
-		e.Reason = fmt.Sprintf("%s: name %d further inputs to hold at 0, as in TransferFunction(%q, %q, %q), or add equations",
-			counts, missing, s.signals[input].Name, s.signals[output].Name, s.signals[strongest[len(strongest)-1]].Name)
-	} else {
+	missing := len(unknowns) - len(s.rows)
+	if missing < 0 {
 		e.Reason = fmt.Sprintf("%s: too many; leave %d out, or hold fewer signals at 0", counts, -missing)
+		return e
 	}
+	weakest := slices.Clone(unknowns)
+	slices.SortStableFunc(weakest, func(i, j int) int { return int(signs[i] - signs[j]) })
+	call := fmt.Sprintf("TransferFunction(%q, %q", s.signals[input].Name, s.signals[output].Name)
+	for _, name := range s.namesOf(append(slices.Clone(zero), weakest[:missing]...)) {
+		call += fmt.Sprintf(", %q", name)
+	}
+	e.Reason = fmt.Sprintf("%s: name %d further inputs to hold at 0, perhaps %s), or add equations", counts, missing, call)
 	return e
 }

@@ -79,14 +79,9 @@ func (s *System) WithConstant(name, quantity string) (*System, error) {
 // the input is chosen here and may differ from call to call: the equations must
 // determine all other signals from it.
 //
-// Further inputs, such as disturbances, are 0. They may be named in held; where
-// they are not, they are the signals that no equation determines. The equations
-// are taken to determine, until there are as many signals as equations: the
-// output; then the signals that are differentiated somewhere; then those that
-// stand alone on the left side of an equation; then those alone on a right
-// side; then the others. Where one of these kinds would have to be split, the
-// choice is not obvious and an error asks for held. A signal that stands in no
-// equation plays no part.
+// Further inputs, such as disturbances, are named in held and are 0. Which
+// signals they are is never guessed: where the equations leave some open, the
+// error proposes a call. A signal that stands in no equation plays no part.
 //
 // All other signals are eliminated exactly by Cramer's rule: the denominator
 // is the determinant of the equations and nothing is cancelled, so that modes
