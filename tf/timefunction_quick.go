@@ -76,7 +76,7 @@ func (e *expansion) prepare() *quick {
 				return
 			}
 			if q, ok := newQuick(parts); ok {
-				q.taylor.until = e.seriesRange(q)
+				q.taylor.until, q.taylor.scale = e.seriesRange()
 				e.quick = q
 				return
 			}
@@ -185,7 +185,7 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 		return 0, false
 	}
 	if th < q.taylor.until/16 {
-		if v, ok := q.settle(e.series(q).at(th, tl)); ok {
+		if v, ok := q.near(e, th, tl); ok {
 			return v, true
 		}
 	}
@@ -193,11 +193,11 @@ func (e *expansion) quickAt(th, tl float64) (float64, bool) {
 	if isZero && q.scale <= 1 {
 		return 0, true
 	}
-	if v, ok := q.settle(sum, bound); ok {
+	if v, ok := settle(sum, bound, q.scale); ok {
 		return v, true
 	}
 	if th < q.taylor.until {
-		return q.settle(e.series(q).at(th, tl))
+		return q.near(e, th, tl)
 	}
 	return 0, false
 }
@@ -254,8 +254,15 @@ func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
 	return a, b, magnitude
 }
 
-// settle rounds sum where every number within bound of it rounds alike.
-func (q *quick) settle(sum double, bound float64) (float64, bool) {
+// near returns the value of the series where that decides it.
+func (q *quick) near(e *expansion, th, tl float64) (float64, bool) {
+	s := e.series(q)
+	return s.settle(s.at(th, tl))
+}
+
+// settle rounds sum, times scale, where every number within bound of it rounds
+// alike.
+func settle(sum double, bound, scale float64) (float64, bool) {
 	size := math.Abs(sum.h)
 	if !(size > smallest && size < largest) {
 		return 0, false
@@ -263,16 +270,16 @@ func (q *quick) settle(sum double, bound float64) (float64, bool) {
 	bound += size * 0x1p-100
 	v := sum.h + (sum.l - bound)
 	ok := v == sum.h+(sum.l+bound)
-	if q.scale != 1 {
-		return q.unscaled(v, ok)
+	if scale != 1 {
+		return scaledBack(v, ok, scale)
 	}
 	return v, ok
 }
 
-// unscaled returns v times the scale; it fails where that is no normal number,
+// scaledBack returns v times the scale; it fails where that is no normal number,
 // because it would be rounded again.
-func (q *quick) unscaled(v float64, ok bool) (float64, bool) {
-	v *= q.scale
+func scaledBack(v float64, ok bool, scale float64) (float64, bool) {
+	v *= scale
 	size := math.Abs(v)
 	return v, ok && size > 0x1p-1020 && size < largest
 }

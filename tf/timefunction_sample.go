@@ -172,7 +172,7 @@ func (s *sampler) one(y []float64, k int) error {
 // cancels.
 func (s *sampler) quickly(t double) (float64, bool) {
 	if q := s.e.prepare(); q != nil && t.h < q.taylor.until && t.h > 0x1p-300 {
-		if v, ok := q.settle(s.e.series(q).at(t.h, t.l)); ok {
+		if v, ok := q.near(s.e, t.h, t.l); ok {
 			return v, true
 		}
 	}
@@ -390,7 +390,7 @@ func (m *mode) shifted(k int, t double) (a, b double, magnitude float64) {
 // unscaleAll scales the decided values and returns how many stay decided.
 func (q *quick) unscaleAll(out []float64) (decided int) {
 	for k, v := range out {
-		v, ok := q.unscaled(v, v != 0)
+		v, ok := scaledBack(v, v != 0, q.scale)
 		if !ok {
 			v = 0
 		} else {

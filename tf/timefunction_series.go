@@ -13,6 +13,7 @@ import (
 type taylorSeries struct {
 	until float64 // 0 where the series leaves the range of the stage
 	reach float64 // ρ·until, see bound
+	scale float64 // of results, like that of quick
 	once  sync.Once
 	terms []double
 	sizes []float64 // bounds of |terms|, with 1/quickError times their errors
@@ -41,17 +42,17 @@ func (e *expansion) reachOf() int {
 	return reach
 }
 
-// seriesRange returns the until of the series.
-func (e *expansion) seriesRange(q *quick) float64 {
-	until := e.reachOf() - e.bound().rate
-	if size := e.seriesScale(q); until < -300 || until > 300 || size > 300 || size < -300 {
-		return 0
+// seriesRange returns the until of the series and the scale of its results.
+func (e *expansion) seriesRange() (until, scale float64) {
+	exponent, size := e.reachOf()-e.bound().rate, e.bound().scale
+	if exponent < -300 || exponent > 300 || size > 1000 || size < -1000 {
+		return 0, 1
 	}
-	return math.Ldexp(1, until)
+	if size < -200 || size > 200 {
+		return math.Ldexp(1, exponent), math.Ldexp(1, size)
+	}
+	return math.Ldexp(1, exponent), 1
 }
-
-// seriesScale is the scale of the growth as q scales it.
-func (e *expansion) seriesScale(q *quick) int { return e.bound().scale - exponentOf(q.scale) }
 
 // exponentOf returns n for 2^n.
 func exponentOf(power float64) int {
@@ -66,7 +67,7 @@ func (e *expansion) series(q *quick) *taylorSeries {
 		s.reach = math.Ldexp(1, e.reachOf())
 		count := 0
 		for i := range s.tiers {
-			s.tiers[i] = e.tier(s.reach, math.Ldexp(s.reach, -2*i), e.seriesScale(q))
+			s.tiers[i] = e.tier(s.reach, math.Ldexp(s.reach, -2*i), e.bound().scale-exponentOf(s.scale))
 			count = max(count, s.tiers[i].count)
 		}
 		const prec = 512
@@ -75,7 +76,7 @@ func (e *expansion) series(q *quick) *taylorSeries {
 			if k > 0 {
 				factorial = factorial.Mul(ball.FromInt64(int64(k)), prec)
 			}
-			c := v.Div(factorial, prec).MulPow2(-exponentOf(q.scale))
+			c := v.Div(factorial, prec).MulPow2(-exponentOf(s.scale))
 			d, ok := doubled(c, midpoint(c))
 			size := math.Abs(d.h)
 			if !ok { // a parameter that is 0, or nearly so
@@ -131,6 +132,11 @@ func (e *expansion) tier(reach, x float64, scale int) tier {
 		remainder *= reach / float64(n+1)
 	}
 	return tier{count: n, remainder: remainder * (1 + 0x1p-40)}
+}
+
+// settle rounds what at returns.
+func (s *taylorSeries) settle(sum double, bound float64) (float64, bool) {
+	return settle(sum, bound, s.scale)
 }
 
 // at returns the series at th + tl ≤ until and a bound of its error.
