@@ -101,11 +101,14 @@ func Excerpt(text string, offset int) string {
 	const side = 40
 	offset = max(0, min(offset, len(text)))
 	from, to := max(0, offset-side), min(len(text), offset+side)
-	for from > 0 && !utf8.RuneStart(text[from]) {
-		from--
-	}
-	for to < len(text) && !utf8.RuneStart(text[to]) {
-		to++
+	// Whole characters, where there are any: text may be no UTF-8 at all.
+	for range utf8.UTFMax - 1 {
+		if from > 0 && !utf8.RuneStart(text[from]) {
+			from--
+		}
+		if to < len(text) && !utf8.RuneStart(text[to]) {
+			to++
+		}
 	}
 	s := text[from:to]
 	if from > 0 {

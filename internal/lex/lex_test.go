@@ -58,7 +58,7 @@ func FuzzTokens(f *testing.F) {
 		tokens, err := Tokens(text)
 		var syntax *SyntaxError
 		if err != nil {
-			if !errors.As(err, &syntax) || len(err.Error()) > 2000 {
+			if !errors.As(err, &syntax) || len(err.Error()) > 1000 {
 				t.Fatalf("error %v", err)
 			}
 			return
