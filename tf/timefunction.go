@@ -116,9 +116,11 @@ func (f TimeFunction) Signal() units.Signal { return f.signal }
 //
 // The error is ErrNotFinite for a NaN or an infinity, ErrRange where the value
 // is too large for a float64, and ErrLimit where 65536 bits of working precision
-// do not decide the rounding. No input with that end is known: by the theorem
-// of Lindemann and Weierstrass a value at a rational time is transcendental
-// or an exactly known rational, so that it cannot lie on a boundary.
+// do not decide the rounding. By the theorem of Lindemann and Weierstrass a
+// value at a rational time is transcendental, or a rational number that is known
+// exactly, so that no value lies on a boundary of rounding for ever; ErrLimit is
+// left to values such as 1 + 2^−53 + e^(−t) at t = 10^6, where a constant lies
+// exactly between two float64 and all that decides is below 2^−65536.
 func (f TimeFunction) At(t float64) (float64, error) {
 	if math.IsNaN(t) || math.IsInf(t, 0) {
 		return 0, fmt.Errorf("tf: time %v: %w", t, fault.ErrNotFinite)

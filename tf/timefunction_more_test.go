@@ -132,3 +132,24 @@ func TestTimeFunctionShared(t *testing.T) {
 	}
 	group.Wait()
 }
+
+// TestTimeFunctionLimit is the one kind of input that is known to need ErrLimit,
+// and its neighbours that do not.
+func TestTimeFunctionLimit(t *testing.T) {
+	tie := big.NewRat(1<<53+1, 1<<53)
+	// tie/s + 1/(s + 1)
+	f := timeFunctionOf(t, []*big.Rat{tie, new(big.Rat).Add(tie, big.NewRat(1, 1))}, whole(0, 1, 1))
+	for _, c := range []struct {
+		t    float64
+		want error
+	}{{40, nil}, {1000, nil}, {20000, nil}, {1e6, fault.ErrLimit}} {
+		y, err := f.At(c.t)
+		if !errors.Is(err, c.want) || err == nil && c.t > 100 && y != 1+0x1p-52 {
+			t.Errorf("at %v: %v, %v", c.t, y, err)
+		}
+	}
+	g := timeFunctionOf(t, whole(1, 2), whole(0, 1, 1)) // 1 + e^−t
+	if y, err := g.At(1e300); y != 1 || err != nil {
+		t.Errorf("1 + e^−t at 1e300: %v, %v", y, err)
+	}
+}
