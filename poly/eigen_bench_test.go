@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"testing"
 
+	"github.com/qofs/qofs/internal/peerinput"
 	"github.com/qofs/qofs/poly"
 	"gonum.org/v1/gonum/mat"
 )
@@ -11,28 +12,13 @@ import (
 // degrees of the benchmarks of roots.
 var rootDegrees = []int{4, 8, 16, 32, 64}
 
-// randomPolynomials returns polynomials with 32-bit coefficients and random
-// signs from the generator splitmix64 (Steele, Lea & Flood 2014).
+// randomPolynomials returns the 32 polynomials of a degree, with 32-bit
+// coefficients.
 func randomPolynomials(degree int) [][]int64 {
 	out := make([][]int64, 32)
 	for j := range out {
-		state := uint64(1000003*degree + 101*32 + j)
-		next := func() uint64 {
-			state += 0x9e3779b97f4a7c15
-			z := state
-			z = (z ^ z>>30) * 0xbf58476d1ce4e5b9
-			z = (z ^ z>>27) * 0x94d049bb133111eb
-			return z ^ z>>31
-		}
-		for k := range degree + 1 {
-			v := int64(next() & (1<<32 - 1))
-			if k == degree {
-				v |= 1
-			}
-			if next()&1 == 1 {
-				v = -v
-			}
-			out[j] = append(out[j], v)
+		for _, c := range peerinput.Coefficients(degree, 32, j) {
+			out[j] = append(out[j], c.Int64())
 		}
 	}
 	return out

@@ -1,0 +1,263 @@
+package intpoly
+
+import (
+	"math/big"
+	legacy "math/rand"
+	"math/rand/v2"
+	"testing"
+)
+
+func one(k uint) *big.Int { return new(big.Int).Lsh(big.NewInt(1), k) }
+
+// edge returns a number near the border of a limb, or any other.
+func edge(r *rand.Rand) *big.Int {
+	k := []uint{0, 1, 31, 32, 62, 63, 64, 65, 127, 128, 191, 192, 255, 256, 320}[r.IntN(15)]
+	v := one(k)
+	switch r.IntN(6) {
+	case 0:
+		v.Sub(v, big.NewInt(1))
+	case 1:
+		v.Add(v, big.NewInt(1))
+	case 2:
+		v = new(big.Int).Rand(newLegacy(r), one(k+1))
+	case 3:
+		v.SetInt64(0)
+	}
+	if r.IntN(2) == 0 {
+		v.Neg(v)
+	}
+	return v
+}
+
+// coefficients returns random coefficients: small ones, ones at the borders of
+// limbs, sparse ones.
+func coefficients(r *rand.Rand, terms int) []*big.Int {
+	c := make([]*big.Int, terms)
+	kind := r.IntN(4)
+	for i := range c {
+		switch kind {
+		case 0:
+			c[i] = big.NewInt(r.Int64N(2001) - 1000)
+		case 1:
+			c[i] = big.NewInt(int64(r.Uint64()))
+		case 2:
+			c[i] = edge(r)
+		default:
+			c[i] = new(big.Int)
+			if r.IntN(4) == 0 {
+				c[i] = edge(r)
+			}
+		}
+	}
+	return c
+}
+
+func same(p Poly, q naive) bool {
+	if p.Degree() != q.Degree() {
+		return false
+	}
+	for i := range q.c {
+		if p.Coefficient(i).Cmp(q.c[i]) != 0 {
+			return false
+		}
+	}
+	// the representation must be the smallest
+	return p.n == limbsNeeded(q)
+}
+
+func limbsNeeded(q naive) int {
+	n := 0
+	for _, c := range q.c {
+		x := c
+		if c.Sign() < 0 {
+			x = new(big.Int).Not(c)
+		}
+		n = max(n, x.BitLen()/64+1)
+	}
+	return n
+}
+
+// pair is a polynomial in both representations.
+type pair struct {
+	p Poly
+	q naive
+}
+
+func newPair(c []*big.Int) pair { return pair{FromBigs(c...), naiveBigs(c...)} }
+
+func checkPair(t *testing.T, a, b pair, k *big.Int) {
+	t.Helper()
+	for name, x := range map[string]struct {
+		got  Poly
+		want naive
+	}{
+		"Add": {a.p.Add(b.p), a.q.Add(b.q)}, "Sub": {a.p.Sub(b.p), a.q.Sub(b.q)}, "Neg": {a.p.Neg(), a.q.Neg()},
+		"Mul": {a.p.Mul(b.p), a.q.Mul(b.q)}, "Square": {a.p.Mul(a.p), a.q.Mul(a.q)}, "MulInt": {a.p.MulInt(k), a.q.MulInt(k)},
+		"Derivative": {a.p.Derivative(), a.q.Derivative()}, "Reverse": {a.p.Reverse(), a.q.Reverse()},
+		"SumOfProducts":        {SumOfProducts(a.p, b.p, b.p, b.p, 1), a.q.Mul(b.q).Add(b.q.Mul(b.q))},
+		"DifferenceOfProducts": {SumOfProducts(a.p, a.p, b.p, a.p, -1), a.q.Mul(a.q).Sub(b.q.Mul(a.q))},
+		"MulPower":             {a.p.MulPower(3), a.q.MulPower(3)}, "QuoPower": {a.p.QuoPower(a.p.Valuation()), a.q.QuoPower(a.q.Valuation())},
+		"zero sum": {a.p.Sub(a.p), naive{}}, "QuoInt": {a.p.MulInt(big.NewInt(-12)).QuoInt(big.NewInt(-12)), a.q},
+	} {
+		if !same(x.got, x.want) {
+			t.Fatalf("%s of %v and %v (k = %v): %v", name, a.q.c, b.q.c, k, x.got.bigs())
+		}
+	}
+	even, odd := a.p.EvenOdd()
+	evenWant, oddWant := a.q.EvenOdd()
+	content, primitive := a.p.Primitive()
+	contentWant, primitiveWant := a.q.Primitive()
+	if !same(even, evenWant) || !same(odd, oddWant) || content.Cmp(contentWant) != 0 || !same(primitive, primitiveWant) {
+		t.Fatalf("parts of %v", a.q.c)
+	}
+	if a.p.AtInt(k).Cmp(a.q.AtInt(k)) != 0 || a.p.AtRat(k, big.NewInt(7)).Cmp(a.q.AtRat(k, big.NewInt(7))) != 0 || a.p.MaxBitLen() != a.q.MaxBitLen() {
+		t.Fatalf("value or size of %v", a.q.c)
+	}
+	for i := -1; i <= a.q.Degree()+1; i++ {
+		v, ok := a.p.Int64(i)
+		c := a.q.Coefficient(i)
+		if a.p.Sign(i) != a.q.Sign(i) || a.p.BitLen(i) != a.q.BitLen(i) || ok != c.IsInt64() || ok && v != c.Int64() {
+			t.Fatalf("coefficient %d of %v", i, a.q.c)
+		}
+	}
+	if a.p.Equal(b.p) != a.q.Equal(b.q) || a.p.ContentIsOne() != (contentWant.CmpAbs(big.NewInt(1)) == 0) {
+		t.Fatalf("comparison of %v and %v", a.q.c, b.q.c)
+	}
+	if g := a.p.CommonWord(720720); !a.p.IsZero() && new(big.Int).GCD(nil, nil, big.NewInt(720720), a.q.Content()).Cmp(new(big.Int).SetUint64(g)) != 0 {
+		t.Fatalf("common divisor %d of %v", g, a.q.c)
+	}
+}
+
+func TestAgainstOracle(t *testing.T) {
+	r := rand.New(rand.NewPCG(1, 2))
+	for range 3000 {
+		a, b := newPair(coefficients(r, r.IntN(9))), newPair(coefficients(r, r.IntN(9)))
+		before := FromBigs(a.q.c...)
+		checkPair(t, a, b, edge(r))
+		if !a.p.Equal(before) {
+			t.Fatal("an operand was changed")
+		}
+	}
+}
+
+// Long factors, of equal and of very unequal length, take the ways of
+// Karatsuba.
+func TestLongProducts(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 4))
+	rounds := 30
+	if testing.Short() {
+		rounds = 6
+	}
+	for range rounds {
+		m, n := 1+r.IntN(420), 1+r.IntN(420)
+		if r.IntN(2) == 0 {
+			m, n = 1+r.IntN(80), 1+r.IntN(80)
+		}
+		a, b := newPair(coefficients(r, m)), newPair(coefficients(r, n))
+		if !same(a.p.Mul(b.p), a.q.Mul(b.q)) {
+			t.Fatalf("product of %d and %d terms", m, n)
+		}
+		if !same(SumOfProducts(a.p, b.p, a.p, a.p, -1), a.q.Mul(b.q).Sub(a.q.Mul(a.q))) {
+			t.Fatalf("difference of products of %d and %d terms", m, n)
+		}
+	}
+}
+
+func TestDivisionAgainstOracle(t *testing.T) {
+	r := rand.New(rand.NewPCG(5, 6))
+	for range 1500 {
+		a, b := newPair(coefficients(r, 1+r.IntN(7))), newPair(coefficients(r, 1+r.IntN(7)))
+		if b.p.IsZero() {
+			continue
+		}
+		quo, rem, k := a.p.PseudoQuoRem(b.p)
+		quoWant, remWant, kWant := a.q.PseudoQuoRem(b.q)
+		if !same(quo, quoWant) || !same(rem, remWant) || k != kWant {
+			t.Fatalf("pseudo-division of %v by %v", a.q.c, b.q.c)
+		}
+		product := a.p.Mul(b.p)
+		if q, ok := product.QuoExact(b.p); !ok || !q.Equal(a.p) {
+			t.Fatalf("%v times %v over %v is %v, %v", a.q.c, b.q.c, b.q.c, q.bigs(), ok)
+		}
+		spoiled := product.Add(FromInt64s(0, 1))
+		q, ok := spoiled.QuoExact(b.p)
+		qWant, okWant := naiveBigs(spoiled.bigs()...).QuoExact(b.q)
+		if ok != okWant || ok && !same(q, qWant) {
+			t.Fatalf("%v over %v is %v, %v", spoiled.bigs(), b.q.c, q.bigs(), ok)
+		}
+	}
+	if _, ok := FromInt64s(1, 1).QuoExact(Poly{}); ok {
+		t.Error("a division by 0")
+	}
+	// Both ends even: the leading and the lowest coefficient have no inverse
+	// modulo a power of two.
+	a, b := FromInt64s(4, 3, 2), FromInt64s(6, 1, 8)
+	if q, ok := a.Mul(b).QuoExact(b); !ok || !q.Equal(a) {
+		t.Errorf("even ends: %v, %v", q.bigs(), ok)
+	}
+}
+
+func TestGCDAgainstOracle(t *testing.T) {
+	r := rand.New(rand.NewPCG(7, 8))
+	prime := new(big.Int).Sub(one(62), big.NewInt(57)) // the first one used
+	for i := range 600 {
+		a, b := newPair(coefficients(r, 1+r.IntN(6))), newPair(coefficients(r, 1+r.IntN(6)))
+		c := newPair(coefficients(r, 1+r.IntN(4)))
+		if i%5 == 0 { // leading coefficients that the prime divides
+			c = newPair(append(coefficients(r, 2), prime))
+		}
+		for _, d := range []pair{{a.p, a.q}, {c.p, c.q}} {
+			p, q := pair{a.p.Mul(d.p), a.q.Mul(d.q)}, pair{b.p.Mul(d.p), b.q.Mul(d.q)}
+			if got, want := p.p.GCD(q.p), p.q.GCD(q.q); !same(got, want) {
+				t.Fatalf("gcd of %v and %v is %v, want %v", p.q.c, q.q.c, got.bigs(), want.c)
+			}
+		}
+		got, want := a.p.Mul(c.p).Mul(c.p).SquareFree(), a.q.Mul(c.q).Mul(c.q).SquareFree()
+		if len(got) != len(want) {
+			t.Fatalf("square-free factors of %v", a.q.Mul(c.q).Mul(c.q).c)
+		}
+		for k := range got {
+			if !same(got[k].Poly, want[k].Poly) || got[k].Multiplicity != want[k].Multiplicity {
+				t.Fatalf("square-free factor %d of %v", k, a.q.Mul(c.q).Mul(c.q).c)
+			}
+		}
+	}
+	// x + P and x share a root modulo the first prime P, but not in truth.
+	if g := FromBigs(prime, big.NewInt(1)).Mul(FromInt64s(1, 1)).GCD(FromInt64s(0, 1).Mul(FromInt64s(1, 1))); !g.Equal(FromInt64s(1, 1)) {
+		t.Errorf("an unlucky prime: %v", g.bigs())
+	}
+}
+
+func TestSubstitutionsAgainstOracle(t *testing.T) {
+	r := rand.New(rand.NewPCG(9, 10))
+	for range 300 {
+		a, b := newPair(coefficients(r, r.IntN(6))), newPair(coefficients(r, r.IntN(4)))
+		k, d := edge(r), big.NewInt(1+r.Int64N(50))
+		if !same(a.p.TaylorShift(k), a.q.TaylorShift(k)) || !same(a.p.ScaleArgument(k, d), a.q.ScaleArgument(k, d)) ||
+			!same(a.p.Compose(b.p), a.q.Compose(b.q)) || !same(b.p.Pow(5), b.q.Pow(5)) || a.p.Resultant(b.p).Cmp(a.q.Resultant(b.q)) != 0 {
+			t.Fatalf("substitution in %v: %v, %v, %v", a.q.c, b.q.c, k, d)
+		}
+	}
+}
+
+func FuzzArithmetic(f *testing.F) {
+	f.Add(uint64(1), uint8(3), uint8(4))
+	f.Fuzz(func(t *testing.T, seed uint64, m, n uint8) {
+		r := rand.New(rand.NewPCG(seed, 1))
+		a, b := newPair(coefficients(r, int(m%40))), newPair(coefficients(r, int(n%40)))
+		checkPair(t, a, b, edge(r))
+		if m%40 < 8 && n%40 < 8 {
+			if !same(a.p.GCD(b.p), a.q.GCD(b.q)) {
+				t.Fatalf("gcd of %v and %v", a.q.c, b.q.c)
+			}
+		}
+		if !b.p.IsZero() {
+			if q, ok := a.p.Mul(b.p).QuoExact(b.p); !ok || !q.Equal(a.p) {
+				t.Fatalf("%v times and over %v", a.q.c, b.q.c)
+			}
+		}
+	})
+}
+
+// newLegacy adapts the source for big.Int.Rand.
+func newLegacy(r *rand.Rand) *legacy.Rand { return legacy.New(legacy.NewSource(r.Int64())) }
