@@ -293,15 +293,3 @@ func (p Poly) Reverse() Poly {
 	}
 	return trim(w, p.n)
 }
-
-// part returns the coefficients from … to−1 as a polynomial of its own.
-func (p Poly) part(from, to int) Poly {
-	w := p.w[min(from*p.n, len(p.w)):min(to*p.n, len(p.w))]
-	for len(w) > 0 && isZero(w[len(w)-p.n:]) {
-		w = w[:len(w)-p.n]
-	}
-	if len(w) == 0 {
-		return Poly{}
-	}
-	return Poly{w: w, n: p.n} // may have needless limbs; for internal use
-}

@@ -83,7 +83,7 @@ func (p Poly) AtRat(num, den *big.Int) *big.Int {
 func (p Poly) Compose(q Poly) Poly {
 	var v Poly
 	for i := p.Degree(); i >= 0; i-- {
-		v = v.Mul(q).Add(trimmed(p.part(i, i+1)))
+		v = v.Mul(q).Add(FromBigs(p.Coefficient(i)))
 	}
 	return v
 }

@@ -10,10 +10,10 @@ type magnitudes struct {
 	n        int
 }
 
-// room is how many limbs and coefficients the caller's stack holds.
+// room is what a caller's stack holds of magnitudes.
 const (
-	roomLimbs = 160
-	roomTerms = 40
+	roomLimbs = 72
+	roomTerms = 18
 )
 
 type room struct {
@@ -23,35 +23,38 @@ type room struct {
 
 // magnitudesOf returns the magnitudes of p, in r where they fit.
 func magnitudesOf(p Poly, r *room) magnitudes {
-	n := (p.span() + 64) / 64 // |−2^b| needs b + 1 bits
-	terms := p.terms()
+	n, terms := p.n, p.terms()
+	if p.span() <= 64*(n-1) && !p.hasMinimum() {
+		n-- // the top limbs are signs
+	}
 	m := magnitudes{n: n}
 	if terms*n <= roomLimbs && terms <= roomTerms {
 		m.w, m.negative = r.w[:terms*n], r.negative[:terms]
 	} else {
 		m.w, m.negative = make([]uint64, terms*n), make([]bool, terms)
 	}
-	// One limb less holds them when no coefficient is −2^(64 k).
-	for {
-		fits := true
-		for i := range terms {
-			c, x := m.w[i*n:(i+1)*n], p.at(i)
-			extend(c[:min(n, p.n)], x[:min(n, p.n)])
-			for k := p.n; k < n; k++ {
-				c[k] = signOf(x[p.n-1])
-			}
-			m.negative[i] = int64(x[p.n-1]) < 0
-			if m.negative[i] {
-				negate(c)
-			}
-			fits = fits && c[n-1] == 0
+	for i := range terms {
+		c, x := m.w[i*n:(i+1)*n], p.w[i*p.n:(i+1)*p.n]
+		sign := signOf(x[p.n-1])
+		m.negative[i] = sign != 0
+		carry := sign & 1
+		for k := range c {
+			c[k], carry = bits.Add64(x[k]^sign, 0, carry)
 		}
-		if !fits || n == 1 {
-			m.w, m.n = m.w[:terms*n], n
-			return m
-		}
-		n--
 	}
+	return m
+}
+
+// hasMinimum reports whether a coefficient is −2^(64 (n − 1)), whose magnitude
+// takes a limb more than those of its neighbours.
+func (p Poly) hasMinimum() bool {
+	for i := range p.terms() {
+		c := p.at(i)
+		if c[p.n-1] == ^uint64(0) && isZero(c[:p.n-1]) {
+			return true
+		}
+	}
+	return false
 }
 
 // wideSums computes a·b + sign·c·d into w, n limbs to a coefficient.
@@ -67,6 +70,10 @@ func wideSums(w []uint64, n int, a, b, c, d Poly, sign int) {
 
 // convolve adds the product of a and b to w, or subtracts it.
 func convolve(w []uint64, n int, a, b magnitudes, negative bool) {
+	if a.n == 4 && b.n == 4 {
+		convolve4(w, n, a, b, negative)
+		return
+	}
 	var store [2][24]uint64
 	size := a.n + b.n + 1 // one limb for the carries of a sum
 	var plus, minus []uint64
@@ -91,6 +98,27 @@ func convolve(w []uint64, n int, a, b magnitudes, negative bool) {
 			settle(w[k*n:(k+1)*n], minus, plus)
 		} else {
 			settle(w[k*n:(k+1)*n], plus, minus)
+		}
+	}
+}
+
+// convolve4 is convolve for magnitudes of four limbs.
+func convolve4(w []uint64, n int, a, b magnitudes, negative bool) {
+	la, lb := len(a.negative), len(b.negative)
+	for k := 0; k < la+lb-1; k++ {
+		var plus, minus [9]uint64
+		for i := max(0, k-lb+1); i <= min(k, la-1); i++ {
+			j := k - i
+			acc := &plus
+			if a.negative[i] != b.negative[j] {
+				acc = &minus
+			}
+			multiplyAdd4(acc, (*[4]uint64)(a.w[4*i:]), (*[4]uint64)(b.w[4*j:]))
+		}
+		if negative {
+			settle(w[k*n:(k+1)*n], minus[:], plus[:])
+		} else {
+			settle(w[k*n:(k+1)*n], plus[:], minus[:])
 		}
 	}
 }

@@ -5,10 +5,15 @@
 // factor and a denominator with a positive leading coefficient. Polynomial
 // factors that numerator and denominator have in common stay until LowestTerms
 // is asked to remove them. The zero value is 0/1.
+//
+// The contents of numerator and denominator are kept where they are known. By
+// Gauss's lemma the content of a product is the product of the contents, so
+// that most compositions need no greatest common divisor of coefficients.
 package ratfun
 
 import (
 	"math/big"
+	"math/bits"
 
 	"github.com/qofs/qofs/internal/intpoly"
 )
@@ -17,6 +22,8 @@ import (
 type Func struct {
 	_        [0]func()
 	num, den intpoly.Poly // den zero stands for 1
+	// contents of num and den where they are known and fit a word, else 0
+	numContent, denContent uint64
 }
 
 // New returns num/den without cancelling; ok is false where den is 0.
@@ -24,18 +31,65 @@ func New(num, den intpoly.Poly) (f Func, ok bool) {
 	if den.IsZero() {
 		return Func{}, false
 	}
-	if num.IsZero() {
-		_, den = den.Primitive()
-		return Func{den: den}, true
+	if den.Sign(den.Degree()) < 0 {
+		num, den = num.Neg(), den.Neg()
 	}
-	g := new(big.Int).GCD(nil, nil, num.Content(), den.Content())
-	if den.Leading().Sign() < 0 {
-		g.Neg(g)
-	}
-	return Func{num: num.QuoInt(g), den: den.QuoInt(g)}, true
+	return reduce(num, den, num.WordContent(), den.WordContent()), true
 }
 
-func must(num, den intpoly.Poly) Func { f, _ := New(num, den); return f }
+// reduce removes the common integer factor of num and den, whose contents are
+// given where they are known, else 0. The leading coefficient of den is
+// positive.
+func reduce(num, den intpoly.Poly, numContent, denContent uint64) Func {
+	if num.IsZero() {
+		_, den = den.Primitive()
+		return Func{den: den, denContent: 1}
+	}
+	var g uint64
+	switch {
+	case numContent == 1 || denContent == 1:
+		g = 1
+	case numContent != 0 && denContent != 0:
+		g = gcd(numContent, denContent)
+	case numContent != 0:
+		g = den.CommonWord(numContent)
+	case denContent != 0:
+		g = num.CommonWord(denContent)
+	default:
+		numContent, denContent = num.WordContent(), den.WordContent()
+		if numContent == 0 && denContent == 0 { // both longer than a word
+			return reduceLong(num, den)
+		}
+		return reduce(num, den, numContent, denContent)
+	}
+	if g != 1 {
+		num, den = num.QuoWord(g), den.QuoWord(g)
+		numContent, denContent = numContent/g, denContent/g
+	}
+	return Func{num: num, den: den, numContent: numContent, denContent: denContent}
+}
+
+func reduceLong(num, den intpoly.Poly) Func {
+	g := new(big.Int).GCD(nil, nil, num.Content(), den.Content())
+	num, den = num.QuoInt(g), den.QuoInt(g)
+	return Func{num: num, den: den, numContent: num.WordContent(), denContent: den.WordContent()}
+}
+
+func gcd(a, b uint64) uint64 {
+	for b != 0 {
+		a, b = b, a%b
+	}
+	return a
+}
+
+// times returns the content of a product, 0 where it is not known.
+func times(a, b uint64) uint64 {
+	hi, lo := bits.Mul64(a, b)
+	if hi != 0 {
+		return 0
+	}
+	return lo
+}
 
 // Num returns the numerator.
 func (f Func) Num() intpoly.Poly { return f.num }
@@ -48,38 +102,66 @@ func (f Func) Den() intpoly.Poly {
 	return f.den
 }
 
+// settled returns f with a denominator that is not left out.
+func (f Func) settled() Func {
+	if f.den.IsZero() {
+		f.den, f.denContent = intpoly.FromInt64s(1), 1
+	}
+	return f
+}
+
 // IsZero reports whether f is 0.
 func (f Func) IsZero() bool { return f.num.IsZero() }
 
 // Mul returns f·g.
-func (f Func) Mul(g Func) Func { return must(f.num.Mul(g.num), f.Den().Mul(g.Den())) }
+func (f Func) Mul(g Func) Func {
+	f, g = f.settled(), g.settled()
+	return reduce(f.num.Mul(g.num), f.den.Mul(g.den), times(f.numContent, g.numContent), times(f.denContent, g.denContent))
+}
 
 // Add returns f + g over the product of the denominators, even where they are
 // equal: two parallel blocks with the same poles hold each pole twice.
 func (f Func) Add(g Func) Func {
-	return must(f.num.Mul(g.Den()).Add(g.num.Mul(f.Den())), f.Den().Mul(g.Den()))
+	f, g = f.settled(), g.settled()
+	num := intpoly.SumOfProducts(f.num, g.den, g.num, f.den, 1)
+	return reduce(num, f.den.Mul(g.den), 0, times(f.denContent, g.denContent))
 }
 
 // Neg returns −f.
-func (f Func) Neg() Func { return Func{num: f.num.Neg(), den: f.den} }
+func (f Func) Neg() Func {
+	f.num = f.num.Neg()
+	return f
+}
 
 // Scale returns k·f.
 func (f Func) Scale(k *big.Rat) Func {
-	return must(f.num.MulInt(k.Num()), f.Den().MulInt(k.Denom()))
+	f = f.settled()
+	return reduce(f.num.MulInt(k.Num()), f.den.MulInt(k.Denom()), 0, 0)
 }
 
 // Inverse returns 1/f; ok is false where f is 0.
-func (f Func) Inverse() (Func, bool) { return New(f.Den(), f.num) }
+func (f Func) Inverse() (Func, bool) {
+	f = f.settled()
+	if f.num.IsZero() {
+		return Func{}, false
+	}
+	num, den := f.den, f.num
+	if den.Sign(den.Degree()) < 0 {
+		num, den = num.Neg(), den.Neg()
+	}
+	return Func{num: num, den: den, numContent: f.denContent, denContent: f.numContent}, true
+}
 
 // Feedback returns f/(1 + sign·f·g), sign = ±1: the loop with f forward and g
-// back. ok is false where 1 + sign·f·g is 0.
+// back, with negative feedback for sign = 1. ok is false where 1 + sign·f·g is
+// 0.
 func (f Func) Feedback(g Func, sign int) (Func, bool) {
-	num := f.num.Mul(g.Den())
-	loop := f.num.Mul(g.num)
-	if sign < 0 {
-		loop = loop.Neg()
+	f, g = f.settled(), g.settled()
+	num, den := intpoly.Loop(f.num, f.den, g.num, g.den, sign)
+	if den.IsZero() {
+		return Func{}, false
 	}
-	return New(num, f.Den().Mul(g.Den()).Add(loop))
+	return reduce(num, den, times(f.numContent, g.denContent), 0), true
 }
 
 // LowestTerms returns f with its common polynomial factor removed, and that
@@ -91,7 +173,7 @@ func (f Func) LowestTerms() (Func, intpoly.Poly) {
 	}
 	num, _ := f.num.QuoExact(g)
 	den, _ := f.Den().QuoExact(g)
-	return must(num, den), g
+	return reduce(num, den, f.numContent, f.denContent), g
 }
 
 // Equal reports whether f and g have the same numerator and denominator.
