@@ -15,7 +15,7 @@ const (
 )
 
 // bits bounds the size of a coefficient of p.
-func (p Poly) bits() int { return p.integer().MaxBitLen() + p.rational().Denominator().BitLen() }
+func (p Poly) bits() int { return p.integer().MaxBitLen() + p.rational().DenominatorBits() }
 
 // Pow returns p^n; p^0 is 1. The error is ErrLimit for a negative n, and where
 // the result could pass MaxDegree or MaxBits.
@@ -70,7 +70,11 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 	if err := p.boundPair(q); err != nil {
 		return Poly{}, err
 	}
-	return fromInteger(p.integer().GCD(q.integer())).Monic(), nil
+	g := fromInteger(p.integer().GCD(q.integer()))
+	if g.Degree() == 0 { // 1, as most are
+		return g, nil
+	}
+	return g.Monic(), nil
 }
 
 // boundPair is the bound that GCD, ExtendedGCD and Resultant share.

@@ -10,14 +10,20 @@ func (p Poly) Content() *big.Int {
 	if p.n == 1 {
 		return new(big.Int).SetUint64(p.wordContent())
 	}
+	// A coefficient of one word bounds the content by a word.
+	for i := range p.terms() {
+		if v, ok := p.Int64(i); ok && v != 0 {
+			return word(p.CommonWord(magnitude(uint64(v))))
+		}
+	}
 	g := new(big.Int)
 	var c big.Int
 	for i := range p.terms() {
+		if g.IsUint64() && g.Sign() != 0 {
+			return word(p.CommonWord(g.Uint64()))
+		}
 		load(&c, p.at(i))
 		g.GCD(nil, nil, g, c.Abs(&c))
-		if g.IsUint64() && g.Uint64() == 1 {
-			break
-		}
 	}
 	return g
 }

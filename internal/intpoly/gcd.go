@@ -20,16 +20,14 @@ func (p Poly) GCD(q Poly) Poly {
 	case q.IsZero():
 		return p.primitive()
 	case p.Degree() == 0 || q.Degree() == 0:
-		return FromInt64s(1)
+		return unit
 	}
-	field := modp.Prime(0)
 	var stack [272]uint64
-	image := imageOfGCD(&field, p, q, stack[:])
-	if len(image) == 1 {
-		return FromInt64s(1)
-	}
-	return modularGCD(p.primitive(), q.primitive())
+	return modularGCD(p, q, stack[:])
 }
+
+// unit is the polynomial 1.
+var unit = FromInt64s(1)
 
 // imageOfGCD returns a multiple of the greatest common divisor modulo a prime,
 // or nothing where the prime divides a leading coefficient. room is used where
@@ -40,34 +38,19 @@ func imageOfGCD(f *modp.Field, p, q Poly, room []uint64) []uint64 {
 		room = make([]uint64, m+n)
 	}
 	a, b := room[:m:m], room[m:m+n]
-	reduceInto(a, f, p)
-	reduceInto(b, f, q)
+	f.Images(a, p.w, p.n)
+	f.Images(b, q.w, q.n)
 	if a[m-1] == 0 || b[n-1] == 0 {
 		return nil
 	}
 	return f.GCD(a, b)
 }
 
-func reduceInto(a []uint64, f *modp.Field, p Poly) {
-	if p.n == 1 {
-		for i := range a {
-			a[i] = f.Residue(p.w[i : i+1])
-		}
-		return
-	}
-	for i := range a {
-		a[i] = f.Residue(p.at(i))
-	}
-}
-
-// modularGCD is GCD for primitive operands of positive degree.
-func modularGCD(p, q Poly) Poly {
-	lead := FromBigs(p.Leading()).commonInteger(FromBigs(q.Leading()))
+// modularGCD is GCD for operands of positive degree, with some room on the
+// caller's stack.
+func modularGCD(p, q Poly, room []uint64) Poly {
+	var lead Poly // the greatest common divisor of the leading coefficients
 	var c chinese
-	var room []uint64
-	if n := p.terms() + q.terms(); n <= 1<<12 {
-		room = make([]uint64, n)
-	}
 	for i := 0; ; i++ {
 		f := modp.Prime(i)
 		image := imageOfGCD(&f, p, q, room)
@@ -75,24 +58,25 @@ func modularGCD(p, q Poly) Poly {
 		case len(image) == 0:
 			continue // the prime divides a leading coefficient
 		case len(image) == 1:
-			return FromInt64s(1)
+			return unit
 		case c.terms > 0 && len(image) > c.terms:
 			continue // an unlucky prime
+		case len(image) < c.terms:
+			c = chinese{} // all primes so far were unlucky
+		}
+		if lead.IsZero() {
+			lead = leadingCommon(p, q)
 		}
 		// lead·image/lc(image), as plain residues
 		k := f.Mul(f.Inverse(image[len(image)-1]), f.Residue(lead.w))
 		for j, x := range image {
 			image[j] = f.Mul(x, k)
 		}
-		if len(image) < c.terms {
-			c = chinese{} // all primes so far were unlucky
-		}
 		c.add(&f, image)
-		g := c.symmetric()
-		if g.span() > c.bits()-8 && c.limbs > 0 {
-			continue // nearly as long as the modulus: not all of it yet
+		if !c.looksSmall() {
+			continue // as long as the modulus: not all of it yet
 		}
-		g = g.primitive()
+		g := c.symmetric().primitive()
 		if _, ok := p.QuoExact(g); !ok {
 			continue
 		}
@@ -102,15 +86,15 @@ func modularGCD(p, q Poly) Poly {
 	}
 }
 
-// commonInteger is the greatest common divisor of two constants.
-func (p Poly) commonInteger(q Poly) Poly {
+// leadingCommon is the greatest common divisor of the leading coefficients.
+func leadingCommon(p, q Poly) Poly {
+	x, y := p.at(p.Degree()), q.at(q.Degree())
 	if p.n == 1 && q.n == 1 {
-		g := gcdWord(magnitude(p.w[0]), magnitude(q.w[0]))
-		if g < 1<<63 {
+		if g := gcdWord(magnitude(x[0]), magnitude(y[0])); g < 1<<63 {
 			return FromInt64s(int64(g))
 		}
 	}
-	a, b := p.Coefficient(0), q.Coefficient(0)
+	a, b := p.Leading(), q.Leading()
 	return FromBigs(a.GCD(nil, nil, a.Abs(a), b.Abs(b)))
 }
 
@@ -127,6 +111,20 @@ func (c *chinese) bits() int {
 	return 64*(c.limbs-1) + bits.Len64(top)
 }
 
+// looksSmall reports whether the coefficients, taken between minus and plus
+// half the modulus, are likely to be shorter than it by some bits. Nothing
+// depends on the answer but time.
+func (c *chinese) looksSmall() bool {
+	m := c.modulus[c.limbs-1]
+	slack := m>>4 + 1
+	for i := c.limbs - 1; i < len(c.x); i += c.limbs {
+		if x := c.x[i]; x > slack && x < m-slack {
+			return false
+		}
+	}
+	return true
+}
+
 // add takes in the plain residues modulo another prime.
 func (c *chinese) add(f *modp.Field, residues []uint64) {
 	if c.limbs == 0 {
@@ -137,12 +135,15 @@ func (c *chinese) add(f *modp.Field, residues []uint64) {
 	}
 	n := c.limbs + 1
 	x := make([]uint64, c.terms*n)
-	inverse := f.Inverse(f.Stored(residue(c.modulus, f.P))) // stored
+	// Residues come multiplied by 2^(−64 limbs); grow undoes that.
+	grow := f.Grow(f.Stored(1), c.limbs)
+	residue := func(x []uint64) uint64 { return f.Mul(f.Image(x), grow) }
+	inverse := f.Inverse(f.Stored(residue(c.modulus)))
 	for i := range c.terms {
 		old, v := c.x[i*c.limbs:(i+1)*c.limbs], x[i*n:(i+1)*n]
 		copy(v, old)
 		// x + modulus·d, d = (residue − x)/modulus
-		d := f.Mul(f.Sub(residues[i], residue(old, f.P)), inverse)
+		d := f.Mul(f.Sub(residues[i], residue(old)), inverse)
 		v[c.limbs] = addProduct(v[:c.limbs], c.modulus, d)
 	}
 	modulus := make([]uint64, n)
@@ -160,15 +161,6 @@ func (c *chinese) shrink() {
 		copy(c.x[i*n:(i+1)*n], c.x[i*c.limbs:])
 	}
 	c.x, c.modulus, c.limbs = c.x[:c.terms*n], c.modulus[:n], n
-}
-
-// residue is an unsigned number modulo p.
-func residue(x []uint64, p uint64) uint64 {
-	var r uint64
-	for k := len(x) - 1; k >= 0; k-- {
-		_, r = bits.Div64(r, x[k], p)
-	}
-	return r
 }
 
 // addProduct adds x·d to z, of the same length, and returns the carry.

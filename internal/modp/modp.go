@@ -93,7 +93,13 @@ func (f *Field) Stored(x uint64) uint64 {
 func (f *Field) Residue(c []uint64) uint64 {
 	if len(c) == 1 {
 		x := int64(c[0])
-		r := uint64(x>>63^x) % f.P // |x|, or |x| − 1 for a negative x
+		r := uint64(x>>63 ^ x) // |x|, or |x| − 1 for a negative x; below 2^63 < 3 P
+		if r >= f.P {
+			r -= f.P
+		}
+		if r >= f.P {
+			r -= f.P
+		}
 		if x < 0 {
 			return f.P - 1 - r
 		}
@@ -108,6 +114,59 @@ func (f *Field) Residue(c []uint64) uint64 {
 		return f.P - 1 - r
 	}
 	return r
+}
+
+// Images writes the residues of numbers in two's complement, n limbs each, all
+// multiplied by 2^(−64 n): what a greatest common divisor up to a factor needs,
+// without a division. The slice out has as many numbers as w.
+func (f *Field) Images(out, w []uint64, n int) {
+	if n == 1 {
+		for i := range w {
+			out[i] = f.Residue(w[i : i+1])
+		}
+		return
+	}
+	scale := f.Shrink(1, n)
+	for i := range out {
+		c := w[i*n : (i+1)*n]
+		mask := uint64(int64(c[n-1]) >> 63)
+		var r uint64
+		for _, x := range c {
+			lo, carry := bits.Add64(r, x^mask, 0)
+			r = f.reduce(carry, lo)
+		}
+		if mask != 0 { // the limbs stood for −c − 1
+			r = f.Sub(f.Neg(r), scale)
+		}
+		out[i] = r
+	}
+}
+
+// Image returns the residue of an unsigned number times 2^(−64 n), n its limbs.
+func (f *Field) Image(c []uint64) uint64 {
+	var r uint64
+	for _, x := range c {
+		lo, carry := bits.Add64(r, x, 0)
+		r = f.reduce(carry, lo)
+	}
+	return r
+}
+
+// Shrink returns x·2^(−64 n).
+func (f *Field) Shrink(x uint64, n int) uint64 {
+	for range n {
+		x = f.reduce(0, x)
+	}
+	return x
+}
+
+// Grow returns x·2^(64 n).
+func (f *Field) Grow(x uint64, n int) uint64 {
+	square := f.Stored(f.one) // 2^128
+	for range n {
+		x = f.Mul(x, square)
+	}
+	return x
 }
 
 // GCD computes the greatest common divisor of two polynomials with ascending

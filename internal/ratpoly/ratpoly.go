@@ -74,6 +74,14 @@ func (p Poly) Denominator() *big.Int {
 	return new(big.Int).Set(p.den)
 }
 
+// DenominatorBits is the bit length of the denominator.
+func (p Poly) DenominatorBits() int {
+	if p.den == nil {
+		return 1
+	}
+	return p.den.BitLen()
+}
+
 // Coefficient returns the coefficient of x^i as a fresh number.
 func (p Poly) Coefficient(i int) *big.Rat {
 	return new(big.Rat).SetFrac(p.num.Coefficient(i), p.Denominator())
