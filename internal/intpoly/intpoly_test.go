@@ -1,6 +1,7 @@
 package intpoly
 
 import (
+	"fmt"
 	"math/big"
 	legacy "math/rand"
 	"math/rand/v2"
@@ -261,3 +262,57 @@ func FuzzArithmetic(f *testing.F) {
 
 // newLegacy adapts the source for big.Int.Rand.
 func newLegacy(r *rand.Rand) *legacy.Rand { return legacy.New(legacy.NewSource(r.Int64())) }
+
+// The float64 way of multiplying is exact up to its documented span, whatever
+// the signs and however long the factors.
+func TestFloatSumsAtTheirBound(t *testing.T) {
+	r := rand.New(rand.NewPCG(11, 12))
+	for i := range 400 {
+		m, n := minFloatTerms+r.IntN(100), minFloatTerms+r.IntN(100)
+		width := uint(maxFloatSpan-10) / 2
+		fill := func(terms int) []*big.Int {
+			c := make([]*big.Int, terms)
+			for j := range c {
+				c[j] = big.NewInt(int64(1)<<width - 1 - r.Int64N(3))
+				if i%3 == 1 && j%2 == 1 || i%3 == 2 && r.IntN(2) == 0 {
+					c[j].Neg(c[j])
+				}
+			}
+			return c
+		}
+		a, b := newPair(fill(m)), newPair(fill(n))
+		if !same(a.p.Mul(b.p), a.q.Mul(b.q)) || !same(SumOfProducts(a.p, b.p, b.p, b.p, -1), a.q.Mul(b.q).Sub(b.q.Mul(b.q))) {
+			t.Fatalf("%d by %d terms", m, n)
+		}
+	}
+}
+
+func BenchmarkThresholds(b *testing.B) {
+	for _, width := range []uint{32, 50, 128, 256} {
+		for _, terms := range []int{8, 16, 24, 32, 64, 128, 192, 256, 384} {
+			r := rand.New(rand.NewPCG(13, 14))
+			c, d := make([]*big.Int, terms), make([]*big.Int, terms)
+			for i := range c {
+				c[i], d[i] = new(big.Int).Rand(newLegacy(r), one(width)), new(big.Int).Rand(newLegacy(r), one(width))
+			}
+			p, q := FromBigs(c...), FromBigs(d...)
+			n := limbsFor(p.span() + q.span() + 10)
+			b.Run(fmt.Sprintf("width=%d/terms=%d/limbs=%d/direct", width, terms, n*terms), func(b *testing.B) {
+				w := make([]uint64, (2*terms-1)*n)
+				for b.Loop() {
+					clear(w)
+					if p.n == 1 {
+						addFloatSums(w, p.w, q.w, 1)
+					} else {
+						wideSums(w, n, p, q, Poly{}, Poly{}, 1)
+					}
+				}
+			})
+			b.Run(fmt.Sprintf("width=%d/terms=%d/limbs=%d/packed", width, terms, n*terms), func(b *testing.B) {
+				for b.Loop() {
+					longSum(p, q, Poly{}, Poly{}, n, 1)
+				}
+			})
+		}
+	}
+}

@@ -2,10 +2,15 @@ package intpoly
 
 import "math/bits"
 
-// kroneckerLimbs is from how many limbs on, that is terms of the shorter factor
-// times limbs of a result coefficient, a product goes through math/big.
-// BenchmarkThresholds measures around it.
-const kroneckerLimbs = 256
+// From how many limbs on, that is terms of the shorter factor times limbs of a
+// result coefficient, a product goes through math/big. BenchmarkThresholds
+// measures around these numbers; word-size factors and magnitudes of four limbs
+// have faster ways of their own.
+const (
+	kroneckerWord = 640
+	kroneckerFour = 200
+	kroneckerWide = 64
+)
 
 // Mul returns p·q.
 func (p Poly) Mul(q Poly) Poly { return SumOfProducts(p, q, Poly{}, Poly{}, 1) }
@@ -32,16 +37,35 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 		span = max(span, c.span()+d.span()+bits.Len(uint(min(c.terms(), d.terms())))) + 1
 	}
 	n := limbsFor(span)
-	if n*max(min(a.terms(), b.terms()), min(c.terms(), d.terms())) >= kroneckerLimbs {
+	words := max(a.n, b.n, c.n, d.n) == 1 && n <= 2
+	limbs := n * max(min(a.terms(), b.terms()), min(c.terms(), d.terms()))
+	if isLong(limbs, words, a, b) {
 		return longSum(a, b, c, d, n, sign)
 	}
 	w := make([]uint64, terms*n)
-	if max(a.n, b.n, c.n, d.n) == 1 && n <= 2 {
+	if words && n == 2 && span <= maxFloatSpan && limbs >= 2*minFloatTerms {
+		addFloatSums(w, a.w, b.w, 1)
+		if !c.IsZero() {
+			addFloatSums(w, c.w, d.w, sign)
+		}
+	} else if words {
 		wordSums(w, n, a.w, b.w, c.w, d.w, sign)
 	} else {
 		wideSums(w, n, a, b, c, d, sign)
 	}
 	return trim(w, n)
+}
+
+// isLong reports whether a product pays for packing.
+func isLong(limbs int, words bool, a, b Poly) bool {
+	four := func(p Poly) bool { s := p.span(); return s > 192 && s <= 256 }
+	switch {
+	case words:
+		return limbs >= kroneckerWord
+	case four(a) && four(b):
+		return limbs >= kroneckerFour
+	}
+	return limbs >= kroneckerWide && min(a.terms(), b.terms()) > 4
 }
 
 // wordSums computes a·b + sign·c·d for word-size coefficients into w, one or
