@@ -11,6 +11,7 @@ import (
 // dimension of a pure number.
 type Dimension struct {
 	exponents [len(baseSymbols)]int32
+	beyond    bool // past maxDimension: stays so
 }
 
 // The base dimensions, by index, and the symbols of their coherent units.
@@ -30,21 +31,39 @@ const (
 
 var baseSymbols = [...]string{"m", "kg", "s", "A", "K", "mol", "cd", "rad", "count", "LSB", "%"}
 
+// maxDimension bounds the exponents of a dimension: far past every unit within
+// MaxPower and MaxSymbols, and far from where int32 wraps.
+const maxDimension = 1 << 20
+
 // IsZero reports whether d is the dimension of a pure number.
 func (d Dimension) IsZero() bool { return d == Dimension{} }
 
-// Mul returns the dimension of a product.
+// Mul returns the dimension of a product. Past the exponent 2^20 it is the
+// dimension of no unit.
 func (d Dimension) Mul(e Dimension) Dimension {
+	if d.beyond || e.beyond {
+		return Dimension{beyond: true}
+	}
 	for i := range d.exponents {
 		d.exponents[i] += e.exponents[i]
+		if x := d.exponents[i]; x > maxDimension || x < -maxDimension {
+			return Dimension{beyond: true}
+		}
 	}
 	return d
 }
 
-// Div returns the dimension of a quotient.
+// Div returns the dimension of a quotient. Past the exponent 2^20 it is the
+// dimension of no unit.
 func (d Dimension) Div(e Dimension) Dimension {
+	if d.beyond || e.beyond {
+		return Dimension{beyond: true}
+	}
 	for i := range d.exponents {
 		d.exponents[i] -= e.exponents[i]
+		if x := d.exponents[i]; x > maxDimension || x < -maxDimension {
+			return Dimension{beyond: true}
+		}
 	}
 	return d
 }
@@ -57,6 +76,13 @@ func (d Dimension) WithoutAngle() Dimension {
 
 // Unit returns the coherent unit of d, spelled in base units.
 func (d Dimension) Unit() Unit {
+	if d.beyond {
+		return unbounded
+	}
+	return fromFactors(d.factors())
+}
+
+func (d Dimension) factors() []factor {
 	var fs []factor
 	for i, e := range d.exponents {
 		if e != 0 {
@@ -65,11 +91,19 @@ func (d Dimension) Unit() Unit {
 			fs = append(fs, f)
 		}
 	}
-	return fromFactors(fs)
+	return fs
 }
 
 // String spells the coherent unit of d: "m*kg/s^2", or "1".
-func (d Dimension) String() string { return d.Unit().String() }
+func (d Dimension) String() string {
+	switch {
+	case d.beyond:
+		return unbounded.String()
+	case d.IsZero():
+		return "1"
+	}
+	return spell(d.factors())
+}
 
 // spell writes factors as text that parses back: a product over one solidus.
 func spell(fs []factor) string {

@@ -58,8 +58,12 @@ func parseWith(text string, table map[string]*symbol) (Unit, error) {
 	if p.peek().Kind != lex.End {
 		return Unit{}, p.fault("the end of the unit")
 	}
-	return p.unit(fs, strings.TrimSpace(text)), nil
+	return p.unit(fs, 0)
 }
+
+// MaxText bounds the bytes of a text that is read as a unit, a quantity or a
+// signal.
+const MaxText = 1 << 14
 
 type parser struct {
 	text   string
@@ -69,6 +73,9 @@ type parser struct {
 }
 
 func newParser(text string, table map[string]*symbol) (*parser, error) {
+	if len(text) > MaxText {
+		return nil, lex.Fault(text, MaxText, fmt.Sprintf("a text of %d bytes", len(text)), fmt.Sprintf("at most %d", MaxText), ErrLimit)
+	}
 	tokens, err := lex.Tokens(text)
 	if err != nil {
 		return nil, err
@@ -83,13 +90,18 @@ func (p *parser) fault(want string) *SyntaxError {
 	return lex.Fault(p.text, t.Offset, t.Describe(), want, nil)
 }
 
-// unit makes the unit of the factors under the spelling that was read.
-func (p *parser) unit(fs []factor, spelling string) Unit {
+// unit makes the unit of the factors under the spelling that was read from the
+// byte offset on.
+func (p *parser) unit(fs []factor, offset int) (Unit, error) {
 	u := fromFactors(fs)
-	if u.d != nil {
-		u.d.spelling = spelling
+	if u.beyond() {
+		return Unit{}, lex.Fault(p.text, offset, "a unit past its bounds",
+			fmt.Sprintf("at most %d symbols to at most the power %d", MaxSymbols, MaxPower), ErrLimit)
 	}
-	return u
+	if u.d != nil {
+		u.d.spelling = strings.Join(strings.Fields(p.text[offset:]), " ")
+	}
+	return u, nil
 }
 
 // product reads term { [*] term } [ / term ].
@@ -135,7 +147,8 @@ func appendFactors(out, fs []factor, sign int) []factor {
 // startsTerm reports whether the next token can begin a term.
 func (p *parser) startsTerm() bool {
 	t := p.peek()
-	return t.Kind == lex.Name || t.Is("(") || t.Is("%") || t.Is("°") || t.Is("℃") || t.Is("℉")
+	_, known := p.table[t.Text] // %, °, ′
+	return t.Kind == lex.Name || t.Is("(") || t.Kind == lex.Operator && known
 }
 
 // term reads a symbol, a 1 or a parenthesis, and the power after it.
@@ -252,7 +265,7 @@ func lookUp(name string, table map[string]*symbol) (factor, bool) {
 		if !ok {
 			continue
 		}
-		if s, ok := table[name[cut:]]; ok && s.prefixes {
+		if s, ok := table[name[cut:]]; ok && s.prefixes && (e > 0 || !s.large) {
 			return factor{name, s, new(big.Rat).Mul(s.scale, power(big.NewRat(10, 1), e)), 1}, true
 		}
 	}
@@ -263,52 +276,4 @@ func lookUp(name string, table map[string]*symbol) (factor, bool) {
 func symbolFactor(name string) factor {
 	f, _ := lookUp(name, symbols)
 	return f
-}
-
-// suggest tells what to write instead of an unknown symbol.
-func suggest(name string, table map[string]*symbol) string {
-	if reason := refused[name]; reason != "" {
-		return reason
-	}
-	trimmed := strings.TrimRight(name, "0123456789")
-	if _, ok := lookUp(trimmed, table); ok && trimmed != name {
-		return fmt.Sprintf("%s^%s", trimmed, name[len(trimmed):])
-	}
-	if f, ok := lookUp(strings.TrimSuffix(name, "s"), table); ok && len(name) > 2 {
-		return fmt.Sprintf("%q, without a plural s", f.text)
-	}
-	best, distance := "", 2
-	for candidate := range table {
-		d := editDistance(name, candidate)
-		if d < distance || d == distance && d < 2 && candidate < best {
-			best, distance = candidate, d
-		}
-	}
-	if best != "" {
-		return fmt.Sprintf("perhaps %q", best)
-	}
-	return "a unit such as m, mm, kg, s, N, mA, degC, rad/s (SI symbols, case matters)"
-}
-
-// editDistance counts insertions, deletions and exchanges of bytes, up to 2.
-func editDistance(a, b string) int {
-	if len(a)-len(b) > 1 || len(b)-len(a) > 1 {
-		return 2
-	}
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
-	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			cost := 1
-			if a[i] == b[j] {
-				cost = 0
-			}
-			diagonal, row[j+1] = row[j+1], min(diagonal+cost, row[j]+1, row[j+1]+1)
-		}
-	}
-	return min(row[len(b)], 2)
 }

@@ -28,7 +28,7 @@ func NewQuantity(value *big.Rat, unit Unit) Quantity {
 
 // FromDuration returns d in seconds, exactly.
 func FromDuration(d time.Duration) Quantity {
-	return NewQuantity(big.NewRat(int64(d), int64(time.Second)), MustParse("s"))
+	return NewQuantity(big.NewRat(int64(d), int64(time.Second)), seconds)
 }
 
 func (q Quantity) rat() *big.Rat {
@@ -66,7 +66,27 @@ func (q Quantity) ConvertTo(u Unit) (Quantity, error) {
 	return NewQuantity(k.Mul(k, q.rat()), u), nil
 }
 
-// Add returns p + q in the unit of p. The error is a *MismatchError.
+// In returns the number of q in the unit u, converted exactly and rounded once,
+// correctly. The error is a *MismatchError, or ErrRange.
+func (q Quantity) In(u Unit) (float64, error) {
+	r, err := q.ConvertTo(u)
+	if err != nil {
+		return 0, err
+	}
+	return r.Float64()
+}
+
+// Compare returns −1, 0 or 1 as q is less than, equal to or greater than r. The
+// error is a *MismatchError.
+func (q Quantity) Compare(r Quantity) (int, error) {
+	r, err := r.ConvertTo(q.unit)
+	if err != nil {
+		return 0, err
+	}
+	return q.rat().Cmp(r.rat()), nil
+}
+
+// Add returns q + r in the unit of q. The error is a *MismatchError.
 func (q Quantity) Add(r Quantity) (Quantity, error) {
 	r, err := r.ConvertTo(q.unit)
 	if err != nil {
@@ -111,11 +131,9 @@ func ParseQuantity(text string) (Quantity, error) {
 	if err != nil {
 		return Quantity{}, err
 	}
-	if fs := q.unit.factors(); len(fs) == 1 && fs[0].exponent == 1 {
-		if _, ok := offsets[fs[0].text]; ok {
-			return Quantity{}, lex.Fault(text, strings.Index(text, fs[0].text), fmt.Sprintf("a bare %q", fs[0].text),
-				"K for a difference of temperatures, or ParseAbsolute for the temperature itself", nil)
-		}
+	if symbol, ok := q.unit.temperature(); ok {
+		return Quantity{}, lex.Fault(text, strings.Index(text, symbol), fmt.Sprintf("a bare %q", symbol),
+			"K for a difference of temperatures, or ParseAbsolute for the temperature itself", nil)
 	}
 	return q, nil
 }
@@ -138,19 +156,43 @@ var offsets = map[string]string{
 
 // ParseAbsolute reads a quantity that is meant absolutely: "900 degC" is
 // 1173.15 K, "32 degF" is 273.15 K. Units without a zero point of their own
-// are read as by ParseQuantity. The error is a *SyntaxError.
+// are read as by ParseQuantity. A temperature below 0 K is refused. The error
+// is a *SyntaxError.
 func ParseAbsolute(text string) (Quantity, error) {
 	q, err := parseQuantity(text)
 	if err != nil {
 		return Quantity{}, err
 	}
-	if fs := q.unit.factors(); len(fs) == 1 && fs[0].exponent == 1 {
-		if text, ok := offsets[fs[0].text]; ok {
-			v := rationalOfPi(text)
-			return NewQuantity(v.Add(v, new(big.Rat).Mul(q.rat(), q.unit.scaleRat())), MustParse("K")), nil
-		}
+	if symbol, ok := q.unit.temperature(); ok {
+		v := rationalOfPi(offsets[symbol])
+		q = NewQuantity(v.Add(v, new(big.Rat).Mul(q.rat(), q.unit.scaleRat())), kelvins)
+	}
+	if q.unit.Dimension() == kelvins.Dimension() && q.Sign() < 0 {
+		return Quantity{}, lex.Fault(text, 0, "a temperature below absolute zero", "at least 0 K", nil)
 	}
 	return q, nil
+}
+
+// MustParseAbsolute is ParseAbsolute for quantities written down in a program;
+// it panics on an error.
+func MustParseAbsolute(text string) Quantity {
+	q, err := ParseAbsolute(text)
+	if err != nil {
+		panic(err)
+	}
+	return q
+}
+
+var kelvins, seconds = MustParse("K"), MustParse("s")
+
+// temperature returns the symbol of a unit that is the degree of a temperature
+// scale with a zero point of its own, and whether u is one.
+func (u Unit) temperature() (symbol string, ok bool) {
+	if fs := u.factors(); len(fs) == 1 && fs[0].exponent == 1 {
+		_, ok = offsets[fs[0].text]
+		return fs[0].text, ok
+	}
+	return "", false
 }
 
 // parseQuantity reads [sign] number [/ number] [unit].
@@ -195,5 +237,9 @@ func parseQuantity(text string) (Quantity, error) {
 	if p.peek().Kind != lex.End {
 		return Quantity{}, p.fault("the end of the quantity")
 	}
-	return NewQuantity(v, p.unit(fs, strings.TrimSpace(text[t.Offset:]))), nil
+	u, err := p.unit(fs, t.Offset)
+	if err != nil {
+		return Quantity{}, err
+	}
+	return NewQuantity(v, u), nil
 }

@@ -9,6 +9,7 @@ type symbol struct {
 	scale     *big.Rat
 	prefixes  bool // takes SI prefixes
 	cycle     bool // counts cycles, turns or parts of one
+	large     bool // takes prefixes above 1 only
 }
 
 // Pi is the rational number that stands for π in conversions between cycles or
@@ -16,11 +17,12 @@ type symbol struct {
 // the continued fraction of π, within 1.42e-38 of it. It returns a fresh copy.
 func Pi() *big.Rat { return big.NewRat(2646693125139304345, 842468587426513207) }
 
-// row is a line of the table of units: symbols that mean the same, the base
-// exponents, and the scale as an exact rational, in units of π where pi is 1.
+// row is a line of the table of units: symbols that mean the same, the unit
+// that they are measured in, and the exact scale, in which a final π stands
+// for Pi.
 type row struct {
 	symbols  []string
-	base     string // in base symbols or in symbols of earlier rows
+	base     string // in symbols of earlier rows; empty for a base unit
 	scale    string
 	prefixes bool
 	cycle    bool
@@ -64,8 +66,8 @@ var siRows = []row{
 	{[]string{"d"}, "s", "86400", false, false},
 	{[]string{"au"}, "m", "149597870700", false, false},
 	{[]string{"deg", "°"}, "rad", "1/180π", false, true},
-	{[]string{"arcmin"}, "rad", "1/10800π", false, true},
-	{[]string{"arcsec"}, "rad", "1/648000π", false, true},
+	{[]string{"arcmin", "′"}, "rad", "1/10800π", false, true},
+	{[]string{"arcsec", "″"}, "rad", "1/648000π", false, true},
 	{[]string{"ha"}, "m^2", "10000", false, false},
 	{[]string{"L", "l"}, "m^3", "1/1000", true, false},
 	{[]string{"t"}, "kg", "1000", true, false},
@@ -101,6 +103,22 @@ var customaryRows = []row{
 	{[]string{"degF", "°F", "℉"}, "K", "5/9", false, false},
 	{[]string{"knot"}, "m/s", "1852/3600", false, false},
 	{[]string{"mph"}, "mi/h", "1", false, false},
+	{[]string{"inH2O"}, "Pa", "249.08891", false, false}, // conventional inch
+	{[]string{"mmH2O"}, "Pa", "9.80665", false, false},
+	{[]string{"cmH2O"}, "Pa", "98.0665", false, false},
+	{[]string{"ksi"}, "psi", "1000", false, false},
+	{[]string{"mil"}, "in", "1/1000", false, false},
+	{[]string{"slug"}, "lbf*s^2/ft", "1", false, false},
+	{[]string{"gn"}, "m/s^2", "9.80665", false, false}, // standard gravity
+	{[]string{"bbl"}, "gal", "42", false, false},       // of oil
+	{[]string{"gpm"}, "gal/min", "1", false, false},
+	{[]string{"cfm"}, "ft^3/min", "1", false, false},
+	{[]string{"cP"}, "Pa*s", "1/1000", false, false},
+	{[]string{"cSt"}, "mm^2/s", "1", false, false},
+	{[]string{"dyn"}, "N", "1/100000", false, false},
+	{[]string{"erg"}, "J", "1/10000000", false, false},
+	{[]string{"VA", "var"}, "V*A", "1", true, false},
+	{[]string{"degR"}, "K", "5/9", false, false},
 	{[]string{"rev"}, "rad", "2π", false, true},
 	{[]string{"rpm"}, "rev/min", "1", false, true},
 }
@@ -120,7 +138,11 @@ var refused = map[string]string{
 	"kt":  "knot for the speed, Gg for a thousand tonnes",
 	"cc":  "cm^3",
 	"sec": "s", "hr": "h", "HZ": "Hz", "hz": "Hz", "kph": "km/h", "Kg": "kg", "KG": "kg", "kw": "kW", "Kw": "kW",
-	"pct": "%", "celsius": "degC", "psig": "psi with an offset of its own: the algebra sees differences, which are in psi",
+	"pct": "%", "celsius": "degC", "PS": "hp for the horsepower of 550 ft*lbf/s, 735.49875 W for the metric one",
+	"ton": "t for 1000 kg, or a number of lb", "pt": "L or gal", "qt": "L or gal", "ppm": "the number itself, such as 1e-6",
+	"BTU": "Btu", "Cal": "kcal", "KPA": "kPa", "MPA": "MPa", "lbs": "lb", "ms2": "m/s^2", "RPM": "rpm", "degK": "K", "psia": "psi",
+	"barg": "bar: the algebra sees differences", "bara": "bar",
+	"psig": "psi with an offset of its own: the algebra sees differences, which are in psi",
 }
 
 var symbols = build()
@@ -142,7 +164,7 @@ func build() map[string]*symbol {
 			scale := rationalOfPi(r.scale)
 			scale.Mul(scale, u.scaleRat())
 			for _, name := range r.symbols {
-				table[name] = &symbol{name, u.Dimension(), scale, r.prefixes, r.cycle}
+				table[name] = &symbol{name, u.Dimension(), scale, r.prefixes, r.cycle, false}
 			}
 			if r.base == "" {
 				name := r.symbols[0]
@@ -162,6 +184,8 @@ func build() map[string]*symbol {
 	for _, name := range []string{"degC", "°C", "℃"} {
 		table[name].prefixes = false
 	}
+	// The SI Brochure knows kt and Mt; ct, pt and qt are other units.
+	table["t"].large = true
 	return table
 }
 

@@ -3,6 +3,7 @@ package units
 import (
 	"fmt"
 	"math/big"
+	"strconv"
 	"strings"
 )
 
@@ -29,17 +30,23 @@ func (u *Unit) UnmarshalText(text []byte) error {
 }
 
 // String returns the exact number and the unit: a finite decimal where there
-// is one, a fraction otherwise. It parses back, except that a bare temperature
-// in degC or degF is for ParseAbsolute to read.
+// is one, a fraction otherwise. It parses back to an equal quantity, within the
+// bounds of Parse. A number of bare degC or degF is a difference here and
+// written in K, because as text it would be taken for a temperature.
 func (q Quantity) String() string {
+	q = q.unambiguous()
 	s := exactRat(q.rat())
 	if q.unit.d == nil {
 		return s
 	}
-	if strings.HasPrefix(q.unit.String(), "1/") && strings.Contains(s, "/") {
-		return s + " (" + q.unit.String() + ")"
-	}
 	return s + " " + q.unit.String()
+}
+
+func (q Quantity) unambiguous() Quantity {
+	if _, ok := q.unit.temperature(); ok {
+		return NewQuantity(new(big.Rat).Mul(q.rat(), q.unit.scaleRat()), kelvins)
+	}
+	return q
 }
 
 // Format prints q by a verb:
@@ -49,6 +56,7 @@ func (q Quantity) String() string {
 func (q Quantity) Format(f fmt.State, verb rune) {
 	switch verb {
 	case 'g', 'e', 'f':
+		q = q.unambiguous()
 		v, _ := q.rat().Float64()
 		fmt.Fprintf(f, fmt.FormatString(f, verb), v)
 		if q.unit.d != nil {
@@ -73,15 +81,24 @@ func (q *Quantity) UnmarshalText(text []byte) error {
 	return err
 }
 
-// exactRat writes a rational number exactly.
+// exactRat writes a rational number exactly: as a decimal where that ends, with
+// an exponent where it would have many zeros.
 func exactRat(v *big.Rat) string {
-	if v.IsInt() {
-		return v.Num().String()
-	}
-	if n, exact := v.FloatPrec(); exact && n <= 30 {
+	n, exact := v.FloatPrec()
+	switch {
+	case !exact:
+		return v.String()
+	case n > 30:
+		digits := new(big.Rat).Mul(v, power(big.NewRat(10, 1), n))
+		return digits.Num().String() + "e-" + strconv.Itoa(n)
+	case n > 0:
 		return v.FloatString(n)
 	}
-	return v.String()
+	s := v.Num().String()
+	if t := strings.TrimRight(s, "0"); len(s)-len(t) > 30 {
+		return t + "e" + strconv.Itoa(len(s)-len(t))
+	}
+	return s
 }
 
 // shortRat writes a rational number for a message: exactly where that is

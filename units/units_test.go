@@ -29,8 +29,8 @@ func TestParseSpellings(t *testing.T) {
 func TestRefusals(t *testing.T) {
 	for _, c := range []struct{ text, says string }{
 		{"", "1 for a pure number"}, {"a/b c", "unknown unit"}, {"m/s kg", "parentheses"}, {"m/s/s", "parentheses"}, {"m/s*kg", "parentheses"},
-		{"dB", "decibels"}, {"meter", "SI symbols"}, {"m3", "m^3"}, {"Pascal", ""}, {"kw", "kW"}, {"m^1000000", "at most"}, {"m^65", "at most"},
-		{strings.Repeat("(", 10<<20), "at most"}, {"1e999999999 m", "exponent"}, {"mkg", ""}, {"m^", "whole number"}, {"(m", "closing"}, {"ksm", ""}, {"secs", ""},
+		{"dB", "decibels"}, {"meter", "its symbol, \"m\""}, {"m3", "m^3"}, {"Pascals", "\"Pa\""}, {"kPA", "\"kPa\""}, {"xyzzy", "SI symbols"}, {"pt", "gal"}, {"kw", "kW"}, {"m^1000000", "at most"}, {"m^65", "at most"},
+		{strings.Repeat("(", 10<<20), "at most"}, {"1e999999999 m", "exponent"}, {"mkg", ""}, {"m^", "whole number"}, {"(m", "closing"}, {"ksm", ""}, {"secs", "want s"}, {"seconds", "\"s\""}, {strings.Repeat("km^64 ", 40), "power 64"}, {strings.Repeat("m ", 9000), "16384"},
 	} {
 		_, err := Parse(c.text)
 		var syntax *SyntaxError
