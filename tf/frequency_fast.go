@@ -4,6 +4,7 @@ import (
 	"math"
 	"math/big"
 
+	"github.com/qofs/qofs/internal/dd"
 	"github.com/qofs/qofs/internal/intpoly"
 	"github.com/qofs/qofs/internal/ratfun"
 )
@@ -117,7 +118,7 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 	if o == 0 && len(rest) > 0 { // an even degree: the odd part begins later
 		t = &rest[0]
 		p := float64(e * wh)
-		s, sLow := twoSum(p, t.even)
+		s, sLow := split(dd.TwoSum(p, t.even))
 		eLow = math.FMA(eLow, wh, math.FMA(e, wl, math.FMA(e, wh, -p))+(sLow+t.evenLow))
 		eSize = math.FMA(eSize, wa, t.evenSize)
 		e, o, oLow, oSize = s, t.odd, t.oddLow, t.oddSize
@@ -148,12 +149,8 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 	return e, eLow, im, math.FMA(oLow, omega, math.FMA(o, omega, -im)), math.FMA(oSize, math.Abs(omega), eSize)
 }
 
-// twoSum returns s + e = a + b exactly, s = fl(a + b) (Knuth 1969).
-func twoSum(a, b float64) (s, e float64) {
-	s = a + b
-	v := s - a
-	return s, (a - (s - v)) + (b - v)
-}
+// split returns the two parts of a double-double.
+func split(x dd.DD) (hi, lo float64) { return x.Hi, x.Lo }
 
 // value returns the ratio at jω; reOK and imOK tell which component is certainly
 // the exact one correctly rounded.
@@ -210,8 +207,8 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	y := float64(math.FMA(b, c, -float64(a*d)) * inverse)
 	restRe := residual(a, aLow, -x, c, cLow, y, d, dLow)
 	restIm := residual(b, bLow, -y, c, cLow, -x, d, dLow)
-	x, xLow := twoSum(x, float64(math.FMA(restRe, c, float64(restIm*d))*inverse))
-	y, yLow := twoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse))
+	x, xLow := split(dd.TwoSum(x, float64(math.FMA(restRe, c, float64(restIm*d))*inverse)))
+	y, yLow := split(dd.TwoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse)))
 	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
 	off := float64(e * math.FMA(k, r.boundK, r.bound))
 	// Both ends round alike; then they round to x, which is fl(x + xLow).
@@ -225,7 +222,7 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 func residual(a, aLow, p, c, cLow, q, d, dLow float64) float64 {
 	pc := float64(p * c)
 	qd := float64(q * d)
-	s, e := twoSum(a, pc)
+	s, e := split(dd.TwoSum(a, pc))
 	return (s + qd) + math.FMA(q, dLow, math.FMA(p, cLow, e+aLow+(math.FMA(p, c, -pc)+math.FMA(q, d, -qd))))
 }
 
@@ -258,12 +255,12 @@ func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
 	// quotient are below 32 u² of the whole.
 	q := above / below
 	rest := math.FMA(-q, below, above)
-	square, squareLow := twoSum(q, (rest+math.FMA(-q, belowLow, aboveLow))/below)
+	square, squareLow := split(dd.TwoSum(q, (rest+math.FMA(-q, belowLow, aboveLow))/below))
 	off := float64(1.02*math.FMA(square, errBelow, errAbove)/below) + float64(0x1p-101*square)
 	root := math.Sqrt(square)
 	// root² + rest = square + squareLow: one step of Newton's iteration
 	rest = math.FMA(-root, root, square) + squareLow
-	high, low := twoSum(root, rest/float64(2*root))
+	high, low := split(dd.TwoSum(root, rest/float64(2*root)))
 	off = float64(0.51*off/root) + float64(0x1p-101*high)
 	return high * r.factor, high+(low+off) == high+(low-off) && high > 0x1p-300
 }
@@ -272,9 +269,9 @@ func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
 func squares(re, reLow, im, imLow, size float64) (high, low, sameSize float64) {
 	p := float64(re * re)
 	q := float64(im * im)
-	s, e := twoSum(p, q)
+	s, e := split(dd.TwoSum(p, q))
 	t := math.FMA(2*re, reLow, math.FMA(re, re, -p))
 	u := math.FMA(2*im, imLow, math.FMA(im, im, -q))
-	high, low = twoSum(s, e+(t+u))
+	high, low = split(dd.TwoSum(s, e+(t+u)))
 	return high, low, size
 }

@@ -5,6 +5,7 @@ import (
 	"math/big"
 
 	"github.com/qofs/qofs/internal/ball"
+	"github.com/qofs/qofs/internal/dd"
 )
 
 // Poles that lie close together have large residues of opposite sign, whose
@@ -97,7 +98,7 @@ func newCluster(group []principal, up int) (m mode, ok bool) {
 			center = complex(real(center), 0)
 		}
 	}
-	m.sigma, m.omega = double{h: real(center)}, double{h: imag(center)}
+	m.sigma, m.omega = double{Hi: real(center)}, double{Hi: imag(center)}
 	c := ball.FromComplex128(center)
 	var reach float64
 	var offsets []ball.Complex
@@ -156,11 +157,11 @@ func (m *mode) fill(moments []ball.Complex, reach float64, weight ball.Real) boo
 	until := 0.5 / reach * (1 - 0x1p-50)
 	// The tail matters up to the end of the stage or of the mode.
 	last := until
-	if s := math.Abs(m.sigma.h); s > 0 {
+	if s := math.Abs(m.sigma.Hi); s > 0 {
 		last = min(last, 600/s)
 	}
 	scale := last
-	if size := max(math.Abs(m.sigma.h), m.omega.h); size > 0 {
+	if size := max(math.Abs(m.sigma.Hi), m.omega.Hi); size > 0 {
 		scale = min(scale, 1/size)
 	}
 	if !(w < 0x1p900) || until > 0x1p300 {
@@ -176,7 +177,7 @@ func (m *mode) fill(moments []ball.Complex, reach float64, weight ball.Real) boo
 		a := amplitude{a: nearestDouble(v.Re), b: nearestDouble(v.Im)}
 		above, _ := v.Re.Radius().Float64()
 		beside, _ := v.Im.Radius().Float64()
-		a.magnitude = (math.Abs(a.a.h) + math.Abs(a.b.h)) * (1 + 0x1p-50)
+		a.magnitude = (math.Abs(a.a.Hi) + math.Abs(a.b.Hi)) * (1 + 0x1p-50)
 		errors[k] = above + beside
 		if k > 0 {
 			power *= scale
@@ -210,5 +211,5 @@ func nearestDouble(x ball.Real) double {
 	mid := x.Mid()
 	h, _ := mid.Float64()
 	l, _ := new(big.Float).Sub(mid, new(big.Float).SetFloat64(h)).Float64()
-	return double{h, l}
+	return dd.Pair(h, l)
 }

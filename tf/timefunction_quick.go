@@ -5,7 +5,7 @@ import (
 	"math/big"
 
 	"github.com/qofs/qofs/internal/ball"
-	"github.com/qofs/qofs/internal/exponential"
+	"github.com/qofs/qofs/internal/dd"
 )
 
 // The first stage: the same sum as in the certified stage, in double-double
@@ -24,8 +24,8 @@ const (
 	negligible = 0x1p-860 // above e^−600
 )
 
-// double is the sum h + l of two float64, |l| ≤ ulp(h)/2.
-type double struct{ h, l float64 }
+// double is the sum of two float64.
+type double = dd.DD
 
 // quick is what the first stage needs of an expansion. Everything is multiplied
 // by a power of 2, and results by scale, its inverse; it differs from 1 where
@@ -63,7 +63,7 @@ func doubled(x ball.Real, scale float64) (double, bool) {
 	l, _ := new(big.Float).Sub(mid, new(big.Float).SetFloat64(h)).Float64()
 	radius, _ := x.Radius().Float64()
 	ok := math.Abs(h) < 0x1p300 && scale > 0x1p-900 && radius <= scale*0x1p-106
-	return double{h, l}, ok
+	return dd.Pair(h, l), ok
 }
 
 // prepare derives the first stage from the lowest rung that suffices; nil
@@ -103,7 +103,7 @@ func newQuick(parts []principal) (*quick, bool) {
 		} else {
 			m, ok = newCluster(group, up)
 		}
-		if !ok || !inRange(m.sigma.h) || !inRange(m.omega.h) {
+		if !ok || !inRange(m.sigma.Hi) || !inRange(m.omega.Hi) {
 			return nil, false
 		}
 		q.order += len(m.amplitudes) * m.width()
@@ -137,7 +137,7 @@ func newMode(p principal, up int) (m mode, ok bool) {
 		var a amplitude
 		a.a, ok1 = doubled(re, size)
 		a.b, ok2 = doubled(im, size)
-		a.magnitude = (math.Abs(a.a.h) + math.Abs(a.b.h)) * (1 + 0x1p-50)
+		a.magnitude = (math.Abs(a.a.Hi) + math.Abs(a.b.Hi)) * (1 + 0x1p-50)
 		if !ok1 || !ok2 {
 			return m, false
 		}
@@ -213,28 +213,29 @@ func (q *quick) far(th, tl float64) (sum double, bound float64, isZero bool) {
 		if m.tail.until > 0 {
 			magnitude += m.tail.at(th)
 		}
-		x := product2(m.sigma, th, tl)
-		if x.h < -exponential.MaxExp {
+		x := m.sigma.Mul(dd.Pair(th, tl))
+		if x.Hi < -dd.MaxExp {
 			bound += magnitude * (negligible / quickError)
-			top = max(top, 1.44*x.h+math.Log2(magnitude)+1)
+			top = max(top, 1.44*x.Hi+math.Log2(magnitude)+1)
 			continue
 		}
-		if x.h > exponential.MaxExp {
+		if x.Hi > dd.MaxExp {
 			return double{}, math.Inf(1), false
 		}
 		top = math.Inf(1)
 		var decay double
-		decay.h, decay.l = exponential.Exp(x.h, x.l)
+		decay = dd.Exp(x)
 		if m.pair {
-			y := product2(m.omega, th, tl)
-			if y.h > exponential.MaxAngle {
+			y := m.omega.Mul(dd.Pair(th, tl))
+			if y.Hi > dd.MaxAngle {
 				return double{}, math.Inf(1), false
 			}
-			sh, sl, ch, cl := exponential.SinCos(y.h, y.l)
-			a = product2(a, ch, cl).plus(product2(b, sh, sl))
+			sin, cos := dd.SinCos(y)
+			sh, sl, ch, cl := sin.Hi, sin.Lo, cos.Hi, cos.Lo
+			a = a.Mul(dd.Pair(ch, cl)).AddLoose(b.Mul(dd.Pair(sh, sl)))
 		}
-		sum = sum.plus(product2(a, decay.h, decay.l))
-		bound += magnitude * decay.h
+		sum = sum.AddLoose(a.Mul(decay))
+		bound += magnitude * decay.Hi
 	}
 	return sum, bound * quickError, top+float64(len(q.modes)) < -1080
 }
@@ -245,9 +246,9 @@ func (m *mode) amplitudesAt(th, tl float64) (a, b double, magnitude float64) {
 	a, b, magnitude = m.amplitudes[last].a, m.amplitudes[last].b, m.amplitudes[last].magnitude
 	for k := last - 1; k >= 0; k-- {
 		c := &m.amplitudes[k]
-		a = product2(a, th, tl).plus(c.a)
+		a = a.Mul(dd.Pair(th, tl)).AddLoose(c.a)
 		if m.pair {
-			b = product2(b, th, tl).plus(c.b)
+			b = b.Mul(dd.Pair(th, tl)).AddLoose(c.b)
 		}
 		magnitude = float64(magnitude*th)*(1+0x1p-50) + c.magnitude
 	}
@@ -263,13 +264,13 @@ func (q *quick) near(e *expansion, th, tl float64) (float64, bool) {
 // settle rounds sum, times scale, where every number within bound of it rounds
 // alike.
 func settle(sum double, bound, scale float64) (float64, bool) {
-	size := math.Abs(sum.h)
+	size := math.Abs(sum.Hi)
 	if !(size > smallest && size < largest) {
 		return 0, false
 	}
 	bound += size * 0x1p-100
-	v := sum.h + (sum.l - bound)
-	ok := v == sum.h+(sum.l+bound)
+	v := sum.Hi + (sum.Lo - bound)
+	ok := v == sum.Hi+(sum.Lo+bound)
 	if scale != 1 {
 		return scaledBack(v, ok, scale)
 	}
@@ -282,23 +283,4 @@ func scaledBack(v float64, ok bool, scale float64) (float64, bool) {
 	v *= scale
 	size := math.Abs(v)
 	return v, ok && size > 0x1p-1020 && size < largest
-}
-
-// plus returns x + y with an error below 2^−103·(|x| + |y|).
-func (x double) plus(y double) double {
-	s := x.h + y.h
-	t := s - x.h
-	e := (x.h - (s - t)) + (y.h - t)
-	e += x.l + y.l
-	h := s + e
-	return double{h, e - (h - s)}
-}
-
-// product2 returns x·(yh + yl) with a relative error below 2^−102.
-func product2(x double, yh, yl float64) double {
-	p := float64(x.h * yh)
-	e := math.FMA(x.h, yh, -p)
-	e = math.FMA(x.h, yl, math.FMA(x.l, yh, e))
-	h := p + e
-	return double{h, e - (h - p)}
 }

@@ -6,7 +6,7 @@ import (
 	"math/big"
 	"math/bits"
 
-	"github.com/qofs/qofs/internal/exponential"
+	"github.com/qofs/qofs/internal/dd"
 	"github.com/qofs/qofs/internal/fault"
 )
 
@@ -62,10 +62,10 @@ func (f TimeFunction) firstSample(dt float64, n int) (int, double) {
 func doubleOf(r *big.Rat) double {
 	h, _ := r.Float64()
 	if math.IsInf(h, 0) {
-		return double{h, 0}
+		return dd.Pair(h, 0)
 	}
 	l, _ := new(big.Rat).Sub(r, new(big.Rat).SetFloat64(h)).Float64()
-	return double{h, l}
+	return dd.Pair(h, l)
 }
 
 // sampler evaluates on a grid. With t = anchor + j·dt every function
@@ -146,7 +146,7 @@ func (q *quick) longest() int {
 // time returns offset + k·dt with a relative error below 2^−104.
 func (s *sampler) time(k int) double {
 	p := float64(float64(k) * s.dt)
-	return s.offset.plus(double{p, math.FMA(float64(k), s.dt, -p)})
+	return s.offset.AddLoose(dd.Pair(p, math.FMA(float64(k), s.dt, -p)))
 }
 
 // one evaluates a single sample.
@@ -171,12 +171,12 @@ func (s *sampler) one(y []float64, k int) error {
 // quickly is quickAt with the series first: what the table left undecided
 // cancels.
 func (s *sampler) quickly(t double) (float64, bool) {
-	if q := s.e.prepare(); q != nil && t.h < q.taylor.until && t.h > 0x1p-300 {
-		if v, ok := q.near(s.e, t.h, t.l); ok {
+	if q := s.e.prepare(); q != nil && t.Hi < q.taylor.until && t.Hi > 0x1p-300 {
+		if v, ok := q.near(s.e, t.Hi, t.Lo); ok {
 			return v, true
 		}
 	}
-	return s.e.quickAt(t.h, t.l)
+	return s.e.quickAt(t.Hi, t.Lo)
 }
 
 // fine is the number of rows of the table whose exponentials are computed;
@@ -217,9 +217,9 @@ func (s *sampler) tabulate(q *quick, count int) bool {
 		down := math.Ldexp(1, -exponent)
 		b, b1, b2 := s.column(l, s.block)
 		for j, v := range values[l*s.block:][:s.block] {
-			h := float64(v.h * down)
+			h := float64(v.Hi * down)
 			slice := (h + round) - round
-			b[j], b1[j], b2[j] = h+float64(v.l*down), slice, (h-slice)+float64(v.l*down)
+			b[j], b1[j], b2[j] = h+float64(v.Lo*down), slice, (h-slice)+float64(v.Lo*down)
 		}
 	}
 	return true
@@ -240,7 +240,7 @@ func (s *sampler) columns(m *mode, values []double, column int) bool {
 	var base sliced
 	for j := range s.block {
 		tau := s.step(j)
-		if !(tau.h == 0 || tau.h > 0x1p-300 && tau.h < 0x1p300) {
+		if !(tau.Hi == 0 || tau.Hi > 0x1p-300 && tau.Hi < 0x1p300) {
 			return false
 		}
 		c, d, ok := double{}, double{}, true
@@ -257,13 +257,13 @@ func (s *sampler) columns(m *mode, values []double, column int) bool {
 		power := 1.0
 		for k := range m.amplitudes {
 			if k > 0 {
-				c = product2(c, tau.h, tau.l)
-				d = product2(d, tau.h, tau.l)
-				power *= tau.h
+				c = c.Mul(tau)
+				d = d.Mul(tau)
+				power *= tau.Hi
 			}
 			l := column + k*m.width()
 			values[l*s.block+j] = c
-			s.scales[l] = max(s.scales[l], math.Abs(c.h)+math.Abs(d.h))
+			s.scales[l] = max(s.scales[l], math.Abs(c.Hi)+math.Abs(d.Hi))
 			s.slack[l] = max(s.slack[l], float64(power*negligible)/quickError)
 			if m.pair {
 				values[(l+1)*s.block+j] = d
@@ -277,7 +277,7 @@ func (s *sampler) columns(m *mode, values []double, column int) bool {
 // step returns j·dt.
 func (s *sampler) step(j int) double {
 	p := float64(float64(j) * s.dt)
-	return double{p, math.FMA(float64(j), s.dt, -p)}
+	return dd.Pair(p, math.FMA(float64(j), s.dt, -p))
 }
 
 // width is how many columns belong to each power of t.
@@ -290,23 +290,24 @@ func (m *mode) width() int {
 
 // exponential returns e^(σt)·cos ωt and e^(σt)·sin ωt; below e^−600 they are 0.
 func (m *mode) exponential(t double) (c, d double, ok bool) {
-	x := product2(m.sigma, t.h, t.l)
-	if x.h < -exponential.MaxExp {
+	x := m.sigma.Mul(t)
+	if x.Hi < -dd.MaxExp {
 		return double{}, double{}, true
 	}
-	if x.h > exponential.MaxExp {
+	if x.Hi > dd.MaxExp {
 		return double{}, double{}, false
 	}
-	c.h, c.l = exponential.Exp(x.h, x.l)
+	c = dd.Exp(x)
 	if !m.pair {
 		return c, double{}, true
 	}
-	y := product2(m.omega, t.h, t.l)
-	if y.h > exponential.MaxAngle {
+	y := m.omega.Mul(t)
+	if y.Hi > dd.MaxAngle {
 		return double{}, double{}, false
 	}
-	sh, sl, ch, cl := exponential.SinCos(y.h, y.l)
-	return product2(c, ch, cl), product2(c, sh, sl), true
+	sin, cos := dd.SinCos(y)
+	sh, sl, ch, cl := sin.Hi, sin.Lo, cos.Hi, cos.Lo
+	return c.Mul(dd.Pair(ch, cl)), c.Mul(dd.Pair(sh, sl)), true
 }
 
 // anchorAt fills the anchor for the time t and returns a bound of the error of
@@ -320,7 +321,7 @@ func (m *mode) exponential(t double) (c, d double, ok bool) {
 // of the scales, which bound |cos| + |sin|; 4 scales allow for both. The slices leave 2^−(slice+53) of the largest anchor for each
 // of three products, sums included 4·order times as much.
 func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
-	if !(t.h >= 0 && t.h < 0x1p300) {
+	if !(t.Hi >= 0 && t.Hi < 0x1p300) {
 		return 0, false
 	}
 	column := 0
@@ -330,26 +331,26 @@ func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 		if !ok {
 			return 0, false
 		}
-		size := math.Abs(c.h) + math.Abs(d.h) + negligible/quickError
+		size := math.Abs(c.Hi) + math.Abs(d.Hi) + negligible/quickError
 		for k := range m.amplitudes {
 			a, b, magnitude := m.shifted(k, t)
 			if k == 0 && m.tail.until > 0 {
-				magnitude += m.tail.at(t.h + float64(float64(s.block)*s.dt))
+				magnitude += m.tail.at(t.Hi + float64(float64(s.block)*s.dt))
 			}
 			scale, slack := s.scales[column], s.slack[column]
 			bound += magnitude * (size*(4*scale+slack) + 4*scale*(negligible/quickError))
-			s.anchors[column] = product2(a, c.h, c.l)
+			s.anchors[column] = a.Mul(c)
 			if m.pair {
 				bound += magnitude * size * 4 * s.scales[column+1]
-				s.anchors[column] = s.anchors[column].plus(product2(b, d.h, d.l))
-				s.anchors[column+1] = product2(b, c.h, c.l).plus(product2(double{-a.h, -a.l}, d.h, d.l))
+				s.anchors[column] = s.anchors[column].AddLoose(b.Mul(d))
+				s.anchors[column+1] = b.Mul(c).AddLoose(dd.Pair(-a.Hi, -a.Lo).Mul(d))
 			}
 			column += m.width()
 		}
 	}
 	largest := 0.0
 	for l, v := range s.anchors {
-		largest = max(largest, float64(math.Abs(v.h)*s.scales[l]))
+		largest = max(largest, float64(math.Abs(v.Hi)*s.scales[l]))
 	}
 	if !(largest > 0x1p-600 && largest < 0x1p600) {
 		return 0, false
@@ -357,9 +358,9 @@ func (s *sampler) anchorAt(q *quick, t double) (bound float64, ok bool) {
 	_, exponent := math.Frexp(largest)
 	round := math.Ldexp(1.5, 52-s.slice+exponent)
 	for l, v := range s.anchors {
-		h := float64(v.h * s.scales[l])
+		h := float64(v.Hi * s.scales[l])
 		a1 := (h + round) - round
-		s.anchor[l] = part{a1, (h - a1) + float64(v.l*s.scales[l])}
+		s.anchor[l] = part{a1, (h - a1) + float64(v.Lo*s.scales[l])}
 	}
 	return 8*bound*quickError + math.Ldexp(float64(8*s.order), exponent-s.slice-53), true
 }
@@ -380,9 +381,9 @@ func (m *mode) shifted(k int, t double) (a, b double, magnitude float64) {
 	}
 	for j := n - 1; j >= k; j-- {
 		c := &m.amplitudes[j]
-		a = product2(a, t.h, t.l).plus(product2(c.a, binomials[j], 0))
-		b = product2(b, t.h, t.l).plus(product2(c.b, binomials[j], 0))
-		magnitude = (float64(magnitude*t.h) + float64(c.magnitude*binomials[j])) * (1 + 0x1p-40)
+		a = a.Mul(t).AddLoose(c.a.Mul(dd.Pair(binomials[j], 0)))
+		b = b.Mul(t).AddLoose(c.b.Mul(dd.Pair(binomials[j], 0)))
+		magnitude = (float64(magnitude*t.Hi) + float64(c.magnitude*binomials[j])) * (1 + 0x1p-40)
 	}
 	return a, b, magnitude
 }

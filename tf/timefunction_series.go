@@ -5,6 +5,7 @@ import (
 	"sync"
 
 	"github.com/qofs/qofs/internal/ball"
+	"github.com/qofs/qofs/internal/dd"
 )
 
 // taylorSeries is Σ terms[k]·t^k about t = 0, with the exact Markov parameters
@@ -78,7 +79,7 @@ func (e *expansion) series(q *quick) *taylorSeries {
 			}
 			c := v.Div(factorial, prec).MulPow2(-exponentOf(s.scale))
 			d, ok := doubled(c, midpoint(c))
-			size := math.Abs(d.h)
+			size := math.Abs(d.Hi)
 			if !ok { // a parameter that is 0, or nearly so
 				d = double{}
 				above, _ := c.Abs().Upper().Float64()
@@ -158,12 +159,12 @@ func (s *taylorSeries) at(th, tl float64) (double, float64) {
 	}
 	tail, magnitude, k := 0.0, 0.0, t.count-1
 	for ; k >= t.tail; k-- {
-		tail = float64(tail*th) + s.terms[k].h
+		tail = float64(tail*th) + s.terms[k].Hi
 		magnitude = float64(magnitude*th) + s.sizes[k]
 	}
-	sum := double{h: tail}
+	sum := double{Hi: tail}
 	for ; k >= 0; k-- {
-		sum = product2(sum, th, tl).plus(s.terms[k])
+		sum = sum.Mul(dd.Pair(th, tl)).AddLoose(s.terms[k])
 		magnitude = float64(magnitude*th) + s.sizes[k]
 	}
 	return sum, magnitude*quickError + rest*(1+0x1p-40) + 0x1p-1000

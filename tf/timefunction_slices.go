@@ -1,32 +1,36 @@
 package tf
 
-import "math"
+import (
+	"math"
+
+	"github.com/qofs/qofs/internal/dd"
+)
 
 // sliced is a complex number c + jd, each part as float64 and, more precisely, as
 // a multiple of 2^−slice of the size of the number and a rest.
 type sliced struct{ c, c1, c2, d, d1, d2 float64 }
 
 func sliceOf(c, d double, slice int) sliced {
-	_, exponent := math.Frexp(max(math.Abs(c.h), math.Abs(d.h), 0x1p-900))
+	_, exponent := math.Frexp(max(math.Abs(c.Hi), math.Abs(d.Hi), 0x1p-900))
 	round := math.Ldexp(1.5, 52-slice+exponent)
-	c1, d1 := (c.h+round)-round, (d.h+round)-round
-	return sliced{c.h, c1, (c.h - c1) + c.l, d.h, d1, (d.h - d1) + d.l}
+	c1, d1 := (c.Hi+round)-round, (d.Hi+round)-round
+	return sliced{c.Hi, c1, (c.Hi - c1) + c.Lo, d.Hi, d1, (d.Hi - d1) + d.Lo}
 }
 
 // rotate returns the complex product x·y within 2^−74.8 of its size: the
 // products of the slices and their sum are exact, what is left is below 2^−24 of
 // the size.
 func (x *sliced) rotate(y *sliced) (re, im double) {
-	re.h = float64(x.c1*y.c1) - float64(x.d1*y.d1)
-	re.l = (float64(x.c1*y.c2) + float64(x.c2*y.c)) - (float64(x.d1*y.d2) + float64(x.d2*y.d))
-	im.h = float64(x.c1*y.d1) + float64(x.d1*y.c1)
-	im.l = (float64(x.c1*y.d2) + float64(x.c2*y.d)) + (float64(x.d1*y.c2) + float64(x.d2*y.c))
+	re.Hi = float64(x.c1*y.c1) - float64(x.d1*y.d1)
+	re.Lo = (float64(x.c1*y.c2) + float64(x.c2*y.c)) - (float64(x.d1*y.d2) + float64(x.d2*y.d))
+	im.Hi = float64(x.c1*y.d1) + float64(x.d1*y.c1)
+	im.Lo = (float64(x.c1*y.d2) + float64(x.c2*y.d)) + (float64(x.d1*y.c2) + float64(x.d2*y.c))
 	return re, im
 }
 
 // times does so for real numbers.
 func (x *sliced) times(y *sliced) double {
-	return double{float64(x.c1 * y.c1), float64(x.c1*y.c2) + float64(x.c2*y.c)}
+	return dd.Pair(float64(x.c1*y.c1), float64(x.c1*y.c2)+float64(x.c2*y.c))
 }
 
 // rows multiplies the table by the anchor and rounds; it returns how many

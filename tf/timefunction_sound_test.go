@@ -57,7 +57,7 @@ func TestQuickStageIsSound(t *testing.T) {
 				t.Fatal(err)
 			}
 			check := func(sum double, bound, scale float64, stage string) {
-				v := ball.FromFloat64(sum.h).Add(ball.FromFloat64(sum.l), 300).Mul(ball.FromFloat64(scale), 300).Sub(y, 300).Abs()
+				v := ball.FromFloat64(sum.Hi).Add(ball.FromFloat64(sum.Lo), 300).Mul(ball.FromFloat64(scale), 300).Sub(y, 300).Abs()
 				bound *= scale
 				if lo, _ := v.Lower().Float64(); lo > bound {
 					t.Errorf("%v/%v at %x: %s is off by %g, claims %g", f.Num(), f.Den(), x, stage, lo, bound)

@@ -24,6 +24,10 @@ const (
 	MaxMagnitude = 0x1p450
 )
 
+// Pair returns hi + lo, where |lo| is at most half a unit in the last place of
+// hi; the caller sees to that.
+func Pair(hi, lo float64) DD { return DD{hi, lo} }
+
 // From returns v exactly.
 func From(v float64) DD { return DD{Hi: float64(v)} }
 
@@ -65,6 +69,13 @@ func (x DD) Add(y DD) DD {
 	s, t := TwoSum(x.Hi, y.Hi), TwoSum(x.Lo, y.Lo)
 	v := fastTwoSum(s.Hi, s.Lo+t.Hi)
 	return fastTwoSum(v.Hi, t.Lo+v.Lo)
+}
+
+// AddLoose returns x + y within 2^-103·(|x| + |y|) (algorithm 5), for half the
+// work of Add: enough where a bound is kept on the sum of absolute values.
+func (x DD) AddLoose(y DD) DD {
+	s := TwoSum(x.Hi, y.Hi)
+	return fastTwoSum(s.Hi, s.Lo+(x.Lo+y.Lo))
 }
 
 // Sub returns x - y with the error of Add.

@@ -56,6 +56,12 @@ func TestArithmeticBounds(t *testing.T) {
 			}
 		}
 		see("Add", x.Add(y), big2().Add(exact(x), exact(y)), 3.0001)
+		sizes := big2().Add(new(big.Float).Abs(exact(x)), new(big.Float).Abs(exact(y)))
+		loose := big2().Sub(exact(x.AddLoose(y)), big2().Add(exact(x), exact(y)))
+		off, _ := loose.Quo(loose, sizes).Float64()
+		if worst["AddLoose"] = max(worst["AddLoose"], math.Abs(off)*0x1p106); math.Abs(off) > 0x1p-103 {
+			t.Fatalf("AddLoose(%v, %v) is off by %g of the absolute values", x, y, off)
+		}
 		see("AddFloat", x.AddFloat(y.Hi), big2().Add(exact(x), exact(From(y.Hi))), 2.0001)
 		see("Mul", x.Mul(y), big2().Mul(exact(x), exact(y)), 5)
 		see("MulFloat", x.MulFloat(y.Hi), big2().Mul(exact(x), exact(From(y.Hi))), 2.0001)

@@ -105,12 +105,6 @@ type chinese struct {
 	modulus      []uint64 // limbs
 }
 
-// bits is the length of the modulus.
-func (c *chinese) bits() int {
-	top := c.modulus[c.limbs-1]
-	return 64*(c.limbs-1) + bits.Len64(top)
-}
-
 // looksSmall reports whether the coefficients, taken between minus and plus
 // half the modulus, are likely to be shorter than it by some bits. Nothing
 // depends on the answer but time.

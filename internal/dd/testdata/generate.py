@@ -1,4 +1,4 @@
-"""Tables of internal/exponential, by mpmath.
+"""Tables of internal/dd, by mpmath.
 
     python3 generate.py OUTDIR
 

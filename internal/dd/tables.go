@@ -1,7 +1,7 @@
 // The tables of this package are those of testdata/tables.txt, which
 // testdata/generate.py writes.
 
-package exponential
+package dd
 
 const (
 	ln2a   = 0x1.62e42fefa0000p-7
