@@ -223,8 +223,7 @@ func (q *quick) far(th, tl float64) (sum double, bound float64, isZero bool) {
 			return double{}, math.Inf(1), false
 		}
 		top = math.Inf(1)
-		var decay double
-		decay = dd.Exp(x)
+		decay := dd.Exp(x)
 		if m.pair {
 			y := m.omega.Mul(dd.Pair(th, tl))
 			if y.Hi > dd.MaxAngle {
