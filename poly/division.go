@@ -64,10 +64,10 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 }
 
 // GCD returns the monic greatest common divisor of p and q; the polynomial 0
-// when both are 0. The error is ErrLimit where the degree of one times the bits
-// of the other passes 2^26.
+// when both are 0. The error is ErrLimit where the bits of a coefficient of
+// each times the square of the sum of the degrees pass 2^38.
 func (p Poly) GCD(q Poly) (Poly, error) {
-	if err := p.boundPair(q); err != nil {
+	if err := p.bound(q, p.bits()+q.bits(), 1<<38); err != nil {
 		return Poly{}, err
 	}
 	g := fromInteger(p.integer().GCD(q.integer()))
@@ -77,54 +77,58 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 	return g.Monic(), nil
 }
 
-// boundPair is the bound that GCD, ExtendedGCD and Resultant share.
-func (p Poly) boundPair(q Poly) error {
-	const most = 1 << 26
-	if (p.Degree()+1)*(q.bits()+1) > most || (q.Degree()+1)*(p.bits()+1) > most {
+// bound refuses modular work on numbers of so many bits beyond a limit.
+func (p Poly) bound(q Poly, bits int, limit float64) error {
+	n := float64(p.Degree() + q.Degree() + 2)
+	if float64(bits)*n*n > limit {
 		return ErrLimit
 	}
 	return nil
 }
 
+// boundResultant is bound for what is as long as the resultant.
+func (p Poly) boundResultant(q Poly) error {
+	bits := (p.Degree()+1)*(q.bits()+12) + (q.Degree()+1)*(p.bits()+12)
+	return p.bound(q, bits, 1<<36)
+}
+
 // ExtendedGCD returns the monic greatest common divisor g and polynomials u, v
 // with u·p + v·q = g, deg u < deg q/g and deg v < deg p/g where these are
-// positive. The errors are those of GCD, and ErrLimit for degrees above 512.
+// positive; a constant multiple of one of them where the other is the gcd. The
+// error is ErrLimit where the bits of the resultant times the square of the sum
+// of the degrees pass 2^36.
 func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
-	if err := p.boundPair(q); err != nil {
+	if err := p.boundResultant(q); err != nil {
 		return Poly{}, Poly{}, Poly{}, err
 	}
-	if max(p.Degree(), q.Degree()) > 512 {
-		return Poly{}, Poly{}, Poly{}, ErrLimit
+	a, b := p.integer(), q.integer()
+	h := a.GCD(b)
+	if h.IsZero() {
+		return Poly{}, Poly{}, Poly{}, nil
 	}
-	one := FromInts(1)
-	a, ua, va := p, one, Poly{}
-	b, ub, vb := q, Poly{}, one
-	for !b.IsZero() {
-		t, r, err := a.QuoRem(b)
-		if err != nil {
-			return Poly{}, Poly{}, Poly{}, err
-		}
-		ur, vr := ua.Sub(t.Mul(ub)), va.Sub(t.Mul(vb))
-		// A monic remainder keeps the numbers as small as they can be.
-		if !r.IsZero() {
-			k := r.Coefficient(r.Degree())
-			k.Inv(k)
-			r, ur, vr = r.Scale(k), ur.Scale(k), vr.Scale(k)
-		}
-		a, ua, va, b, ub, vb = b, ub, vb, r, ur, vr
+	a, _ = a.QuoExact(h)
+	b, _ = b.QuoExact(h)
+	// s·a + t·b = r, and with P = dp·p = a·h the factors of p and q are s·dp and
+	// t·dq over r·lc(h).
+	var s, t intpoly.Poly
+	var r *big.Int
+	switch {
+	case b.Degree() == 0:
+		t, r = intpoly.FromInt64s(1), b.Coefficient(0)
+	case a.Degree() == 0:
+		s, r = intpoly.FromInt64s(1), a.Coefficient(0)
+	default:
+		s, t, r, _ = a.Cofactors(b)
 	}
-	if a.IsZero() {
-		return a, ua, va, nil
-	}
-	k := a.Coefficient(a.Degree())
-	k.Inv(k)
-	return a.Scale(k), ua.Scale(k), va.Scale(k), nil
+	r.Mul(r, h.Leading())
+	return fromInteger(h).Monic(), Poly(ratpoly.New(s.MulInt(p.rational().Denominator()), r)),
+		Poly(ratpoly.New(t.MulInt(q.rational().Denominator()), r)), nil
 }
 
 // Resultant returns the resultant of p and q, which is 0 when they have a
-// common root and where one of them is 0. The error is that of GCD.
+// common root and where one of them is 0. The error is that of ExtendedGCD.
 func (p Poly) Resultant(q Poly) (*big.Rat, error) {
-	if err := p.boundPair(q); err != nil {
+	if err := p.boundResultant(q); err != nil {
 		return nil, err
 	}
 	// res(P/dp, Q/dq) = res(P, Q)/(dp^deg q · dq^deg p)
@@ -146,7 +150,7 @@ type Factor struct {
 // multiplicity. Their product is p.Monic(); a constant has none. The method is
 // that of Yun (1976). The error is that of GCD.
 func (p Poly) SquareFree() ([]Factor, error) {
-	if err := p.boundPair(p); err != nil {
+	if err := p.bound(p, 2*p.bits(), 1<<38); err != nil {
 		return nil, err
 	}
 	found := p.integer().SquareFree()

@@ -65,6 +65,9 @@ func TestDivision(t *testing.T) {
 		if err != nil || err2 != nil || !g.Equal(plain) || !u.Mul(a).Add(v.Mul(b)).Equal(g) {
 			t.Fatalf("gcd of %v and %v is %v or %v; %v, %v", a, b, g, plain, err, err2)
 		}
+		if h, w, x := euclid(a, b); !h.Equal(g) || a.Degree() > g.Degree() && b.Degree() > g.Degree() && (!w.Equal(u) || !x.Equal(v)) {
+			t.Fatalf("cofactors of %v and %v are %v and %v, Euclid's are %v and %v", a, b, u, v, w, x)
+		}
 		if _, rem, _ := g.QuoRem(common); !rem.IsZero() {
 			t.Fatalf("gcd %v misses %v", g, common)
 		}
@@ -75,6 +78,30 @@ func TestDivision(t *testing.T) {
 	}
 	if _, _, err := FromInts(1).QuoRem(Poly{}); !errors.Is(err, ErrDivisionByZero) {
 		t.Errorf("over 0: %v", err)
+	}
+}
+
+// euclid is the extended algorithm over the rationals: the oracle.
+func euclid(p, q Poly) (g, u, v Poly) {
+	one := FromInts(1)
+	a, ua, va := p, one, Poly{}
+	b, ub, vb := q, Poly{}, one
+	for !b.IsZero() {
+		t, r, _ := a.QuoRem(b)
+		a, ua, va, b, ub, vb = b, ub, vb, r, ua.Sub(t.Mul(ub)), va.Sub(t.Mul(vb))
+	}
+	k := a.Coefficient(a.Degree())
+	k.Inv(k)
+	return a.Scale(k), ua.Scale(k), va.Scale(k)
+}
+
+func TestExtendedGCDOfZeroes(t *testing.T) {
+	p := MustParse("2 x - 1/3")
+	for _, c := range []struct{ p, q Poly }{{p, Poly{}}, {Poly{}, p}, {p, p}, {p, FromInts(5)}, {FromInts(5), FromInts(7)}, {Poly{}, Poly{}}} {
+		g, u, v, err := c.p.ExtendedGCD(c.q)
+		if err != nil || !u.Mul(c.p).Add(v.Mul(c.q)).Equal(g) {
+			t.Errorf("%v and %v: %v, %v, %v, %v", c.p, c.q, g, u, v, err)
+		}
 	}
 }
 

@@ -105,6 +105,9 @@ type chinese struct {
 	modulus      []uint64 // limbs
 }
 
+// bits is a lower bound on the length of the modulus.
+func (c *chinese) bits() int { return 64*(c.limbs-1) + bits.Len64(c.modulus[c.limbs-1]) - 1 }
+
 // looksSmall reports whether the coefficients, taken between minus and plus
 // half the modulus, are likely to be shorter than it by some bits. Nothing
 // depends on the answer but time.

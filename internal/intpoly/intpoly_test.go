@@ -241,6 +241,29 @@ func TestSubstitutionsAgainstOracle(t *testing.T) {
 	}
 }
 
+func TestCofactors(t *testing.T) {
+	r := rand.New(rand.NewPCG(15, 16))
+	found := 0
+	for range 400 {
+		a, b := FromBigs(coefficients(r, 2+r.IntN(6))...), FromBigs(coefficients(r, 2+r.IntN(6))...)
+		u, v, c, ok := a.Cofactors(b)
+		coprime := a.Degree() > 0 && b.Degree() > 0 && a.GCD(b).IsOne()
+		if ok != coprime {
+			t.Fatalf("%v and %v: %v", a.bigs(), b.bigs(), ok)
+		}
+		if !ok {
+			continue
+		}
+		found++
+		if !u.Mul(a).Add(v.Mul(b)).Equal(FromBigs(c)) || c.Sign() <= 0 || u.Degree() >= b.Degree() || v.Degree() >= a.Degree() {
+			t.Fatalf("%v and %v: %v, %v, %v", a.bigs(), b.bigs(), u.bigs(), v.bigs(), c)
+		}
+	}
+	if found < 100 {
+		t.Errorf("only %d coprime pairs", found)
+	}
+}
+
 func FuzzArithmetic(f *testing.F) {
 	f.Add(uint64(1), uint8(3), uint8(4))
 	f.Fuzz(func(t *testing.T, seed uint64, m, n uint8) {

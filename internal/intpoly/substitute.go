@@ -135,38 +135,3 @@ func (p Poly) SquareFree() []Factor {
 	}
 	return out
 }
-
-// Resultant returns the resultant of p and q: 0 when they have a common root
-// or one of them is 0.
-func (p Poly) Resultant(q Poly) *big.Int {
-	if p.IsZero() || q.IsZero() {
-		return new(big.Int)
-	}
-	// Euclid over the rationals: res(p, q) = (−1)^{mn} lc(q)^{m − deg r} res(q, r).
-	res := big.NewRat(1, 1)
-	pow := func(c *big.Int, k int) {
-		e := new(big.Int).Exp(c, big.NewInt(int64(max(k, -k))), nil)
-		if k >= 0 {
-			res.Mul(res, new(big.Rat).SetInt(e))
-		} else {
-			res.Quo(res, new(big.Rat).SetInt(e))
-		}
-	}
-	for q.Degree() > 0 {
-		m, n := p.Degree(), q.Degree()
-		_, r, k := p.PseudoQuoRem(q) // r = lc(q)^k p mod q
-		if r.IsZero() {
-			return new(big.Int)
-		}
-		content, r := r.Primitive()
-		if m*n%2 == 1 {
-			res.Neg(res)
-		}
-		// res(q, r) is homogeneous of degree n in r
-		pow(q.Leading(), m-r.Degree()-k*n)
-		pow(content, n)
-		p, q = q, r
-	}
-	pow(q.Leading(), p.Degree())
-	return new(big.Int).Set(res.Num())
-}

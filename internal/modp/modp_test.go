@@ -1,0 +1,185 @@
+package modp
+
+import (
+	"math/big"
+	"math/rand/v2"
+	"testing"
+)
+
+func TestPrimes(t *testing.T) {
+	last := uint64(1) << 62
+	for i := range len(offsets) + 3 {
+		f := Prime(i)
+		if f.P >= last || !new(big.Int).SetUint64(f.P).ProbablyPrime(20) {
+			t.Fatalf("prime %d is %d", i, f.P)
+		}
+		for p := last - 1; p > f.P && i > 0; p-- {
+			if new(big.Int).SetUint64(p).ProbablyPrime(0) {
+				t.Fatalf("prime %d passes over %d", i, p)
+			}
+		}
+		last = f.P
+	}
+}
+
+// All operations, against math/big.
+func TestFieldAgainstBig(t *testing.T) {
+	r := rand.New(rand.NewPCG(1, 2))
+	for range 3000 {
+		f := Prime(r.IntN(40))
+		p := new(big.Int).SetUint64(f.P)
+		mod := func(x *big.Int) uint64 { return new(big.Int).Mod(x, p).Uint64() }
+		a, b := r.Uint64()%f.P, r.Uint64()%f.P
+		if r.IntN(8) == 0 {
+			a = []uint64{0, 1, f.P - 1}[r.IntN(3)]
+		}
+		ab := new(big.Int).Mul(new(big.Int).SetUint64(a), new(big.Int).SetUint64(b))
+		x, y := f.Stored(a), f.Stored(b)
+		if f.Plain(x) != a || f.Plain(f.Mul(x, y)) != mod(ab) || f.Mul(x, b) != mod(ab) {
+			t.Fatalf("%d·%d modulo %d", a, b, f.P)
+		}
+		if f.Sub(a, b) != mod(new(big.Int).Sub(new(big.Int).SetUint64(a), new(big.Int).SetUint64(b))) || f.Neg(a) != (f.P-a)%f.P {
+			t.Fatalf("%d − %d modulo %d", a, b, f.P)
+		}
+		if a != 0 && f.Plain(f.Mul(x, f.Inverse(x))) != 1 {
+			t.Fatalf("inverse of %d modulo %d", a, f.P)
+		}
+		if n := r.IntN(50); f.Plain(f.Power(x, n)) != mod(new(big.Int).Exp(new(big.Int).SetUint64(a), big.NewInt(int64(n)), nil)) {
+			t.Fatalf("%d^%d modulo %d", a, n, f.P)
+		}
+		n := 1 + r.IntN(5)
+		c := make([]uint64, n)
+		for i := range c {
+			c[i] = []uint64{0, 1, ^uint64(0), 1 << 63, r.Uint64()}[r.IntN(5)]
+		}
+		v, unsigned := new(big.Int), new(big.Int)
+		for i := n - 1; i >= 0; i-- {
+			unsigned.Lsh(unsigned, 64).Add(unsigned, new(big.Int).SetUint64(c[i]))
+		}
+		v.Set(unsigned)
+		if int64(c[n-1]) < 0 {
+			v.Sub(v, new(big.Int).Lsh(big.NewInt(1), uint(64*n)))
+		}
+		var image [1]uint64
+		f.Images(image[:], c, n)
+		wantImage := mod(v)
+		if n > 1 { // one word is taken as it is
+			wantImage = f.Shrink(wantImage, n)
+		}
+		if f.Residue(c) != mod(v) || image[0] != wantImage || f.Image(c) != f.Shrink(mod(unsigned), n) || f.Grow(f.Shrink(a, n), n) != a {
+			t.Fatalf("residues of %v modulo %d", v, f.P)
+		}
+	}
+}
+
+// naiveResultant is the determinant of Sylvester's matrix modulo p.
+func naiveResultant(f *Field, a, b []uint64) uint64 {
+	m, n := len(a)-1, len(b)-1
+	rows := make([][]uint64, m+n)
+	for i := range rows {
+		rows[i] = make([]uint64, m+n)
+		for j := range a {
+			if i < n {
+				rows[i][i+m-j] = a[j]
+			}
+		}
+		for j := range b {
+			if i >= n {
+				rows[i][i-n+n-j] = b[j]
+			}
+		}
+	}
+	det := f.one
+	for k := range rows {
+		p := k
+		for p < len(rows) && rows[p][k] == 0 {
+			p++
+		}
+		if p == len(rows) {
+			return 0
+		}
+		if p != k {
+			rows[p], rows[k] = rows[k], rows[p]
+			det = f.Neg(det)
+		}
+		det = f.Mul(det, rows[k][k])
+		inverse := f.Inverse(rows[k][k])
+		for i := k + 1; i < len(rows); i++ {
+			factor := f.Mul(rows[i][k], inverse)
+			for j := k; j < len(rows); j++ {
+				rows[i][j] = f.Sub(rows[i][j], f.Mul(factor, rows[k][j]))
+			}
+		}
+	}
+	return det
+}
+
+func TestEuclid(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 4))
+	f := Prime(3)
+	random := func(terms int) []uint64 {
+		c := make([]uint64, terms)
+		for i := range c {
+			if r.IntN(4) > 0 {
+				c[i] = f.Stored(uint64(r.IntN(40)))
+			}
+		}
+		c[terms-1] = f.Stored(1 + uint64(r.IntN(9)))
+		return c
+	}
+	multiply := func(a, b []uint64) []uint64 {
+		c := make([]uint64, len(a)+len(b)-1)
+		for i, x := range a {
+			for j, y := range b {
+				c[i+j] = f.Sub(c[i+j], f.Neg(f.Mul(x, y)))
+			}
+		}
+		return c
+	}
+	clone := func(a []uint64) []uint64 { return append([]uint64(nil), a...) }
+	coprime := 0
+	for range 2000 {
+		a, b := random(2+r.IntN(6)), random(2+r.IntN(6))
+		if r.IntN(3) == 0 {
+			common := random(2 + r.IntN(3))
+			a, b = multiply(a, common), multiply(b, common)
+		}
+		want := naiveResultant(&f, a, b)
+		if got := f.Resultant(clone(a), clone(b)); got != want {
+			t.Fatalf("resultant of %v and %v is %d, want %d", a, b, got, want)
+		}
+		g := f.GCD(clone(a), clone(b))
+		for _, x := range [][]uint64{a, b} { // the gcd divides both
+			if rest := f.trueRemainder(clone(x), g, f.Inverse(g[len(g)-1])); len(rest) != 0 {
+				t.Fatalf("gcd %v leaves %v of %v", g, rest, x)
+			}
+		}
+		if (len(g) == 1) != (want != 0) {
+			t.Fatalf("gcd %v and resultant %d", g, want)
+		}
+		u, v, ok := f.Cofactors(clone(a), clone(b))
+		if ok != (want != 0) {
+			t.Fatalf("cofactors of %v and %v: %v", a, b, ok)
+		}
+		if !ok {
+			continue
+		}
+		coprime++
+		ua, vb := multiply(u, a), multiply(v, b)
+		for i := range max(len(ua), len(vb)) {
+			var s uint64
+			if i < len(ua) {
+				s = ua[i]
+			}
+			if i < len(vb) {
+				s = f.Sub(s, f.Neg(vb[i]))
+			}
+			if s != 0 && i > 0 || i == 0 && s != f.one {
+				t.Fatalf("u·a + v·b of %v and %v has %d at %d", a, b, s, i)
+			}
+		}
+	}
+	if coprime < 500 {
+		t.Errorf("only %d coprime pairs", coprime)
+	}
+}
