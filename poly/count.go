@@ -6,15 +6,20 @@ import (
 	"github.com/qofs/qofs/internal/intpoly"
 )
 
-// maxCountDegree bounds the degree of the exact root counts, whose remainder
-// sequences grow with the square of the degree in size.
-const maxCountDegree = 512
+// Remainder sequences grow with the square of the degree in length; these
+// bounds on degree²·bits keep them to some seconds.
+const (
+	maxCountWork = 1 << 23 // of the sequences of HalfPlane, half as long
+	maxSturmWork = 3 << 20
+)
 
-func (p Poly) countable() error {
+// countable refuses what cannot be counted; bits is the size of a coefficient.
+func countable(p intpoly.Poly, most int) error {
+	n := p.Degree() + 1
 	switch {
 	case p.IsZero():
 		return ErrZeroPolynomial
-	case p.Degree() > maxCountDegree || (p.Degree()+1)*p.integer().MaxBitLen() > 1<<18:
+	case n > 1<<10 || n*n*(p.MaxBitLen()+16) > most:
 		return ErrLimit
 	}
 	return nil
@@ -35,10 +40,11 @@ type Counts struct {
 // first, and the rest is counted by the Cauchy index of its even and odd parts
 // (Hermite 1856; Gantmacher, The Theory of Matrices, 1959, chapter XV).
 //
-// The errors are ErrZeroPolynomial, and ErrLimit for a degree above 512 or for
-// more than 2^18 bits of coefficients (degree times size).
+// The errors are ErrZeroPolynomial, and ErrLimit where the square of the degree
+// times the bits of the largest integer coefficient passes 2^23 (a degree of 400
+// with 32-bit coefficients); the signs of Roots, which are exact, go further.
 func (p Poly) HalfPlane() (Counts, error) {
-	if err := p.countable(); err != nil {
+	if err := countable(p.integer(), maxCountWork); err != nil {
 		return Counts{}, err
 	}
 	return halfPlane(p.integer()), nil
@@ -46,16 +52,21 @@ func (p Poly) HalfPlane() (Counts, error) {
 
 // UnitCircle counts the roots of p within the unit circle (Inside), on it and
 // outside of it, exactly, as HalfPlane does after the exact change of variable
-// z = (1 + w)/(1 − w). The errors are those of HalfPlane.
+// z = (1 + w)/(1 − w), which makes the coefficients longer by about twice the
+// degree in bits. The errors are those of HalfPlane.
 func (p Poly) UnitCircle() (Counts, error) {
-	if err := p.countable(); err != nil {
+	if err := countable(p.integer(), maxCountWork); err != nil {
 		return Counts{}, err
 	}
 	// With v = 1 − w, z = −1 + 2/v: shift by −1, scale by 2, reverse, and
 	// substitute v = 1 − w. A root at z = −1 goes to infinity and is dropped by
 	// Reverse; it counts as one on the circle.
 	q := p.integer().TaylorShift(big.NewInt(-1)).ScaleArgument(big.NewInt(2), big.NewInt(1))
-	c := halfPlane(q.Reverse().TaylorShift(big.NewInt(1)).ScaleArgument(big.NewInt(-1), big.NewInt(1)))
+	r := q.Reverse().TaylorShift(big.NewInt(1)).ScaleArgument(big.NewInt(-1), big.NewInt(1))
+	if err := countable(r, maxCountWork); err != nil {
+		return Counts{}, err
+	}
+	c := halfPlane(r)
 	c.On += q.Valuation()
 	return c, nil
 }
@@ -184,10 +195,12 @@ func variations(chain []intpoly.Poly, sign func(intpoly.Poly) int) int {
 }
 
 // CountRealRoots counts the distinct real roots of p with lower < x ≤ upper,
-// exactly, by Sturm's theorem; a nil bound is infinite. The errors are those of
-// HalfPlane. RealRoots isolates the roots that it counts.
+// exactly, by Sturm's theorem; a nil bound is infinite. The errors are
+// ErrZeroPolynomial, and ErrLimit where the square of the degree times the bits
+// of the largest integer coefficient passes 3·2^20. RealRoots isolates the roots
+// that are counted here.
 func (p Poly) CountRealRoots(lower, upper *big.Rat) (int, error) {
-	if err := p.countable(); err != nil {
+	if err := countable(p.integer(), maxSturmWork); err != nil {
 		return 0, err
 	}
 	if lower != nil && upper != nil && lower.Cmp(upper) >= 0 {

@@ -64,10 +64,11 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 }
 
 // GCD returns the monic greatest common divisor of p and q; the polynomial 0
-// when both are 0. The error is ErrLimit where the bits of a coefficient of
-// each times the square of the sum of the degrees pass 2^38.
+// when both are 0. The error is ErrLimit for operands of thousands of terms with
+// thousands of digits, whose modular images would take more than 2^32
+// multiplications.
 func (p Poly) GCD(q Poly) (Poly, error) {
-	if err := p.bound(q, p.bits()+q.bits(), 1<<38); err != nil {
+	if err := p.bound(q, p.bits()+q.bits(), p.Degree()+1, 1<<32); err != nil {
 		return Poly{}, err
 	}
 	g := fromInteger(p.integer().GCD(q.integer()))
@@ -77,28 +78,30 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 	return g.Monic(), nil
 }
 
-// bound refuses modular work on numbers of so many bits beyond a limit.
-func (p Poly) bound(q Poly, bits int, limit float64) error {
-	n := float64(p.Degree() + q.Degree() + 2)
-	if float64(bits)*n*n > limit {
+// bound refuses modular work beyond a limit of multiplications: as many primes
+// as the bits of the result ask for, each with an image that costs the square of
+// the degrees, put together term by term.
+func (p Poly) bound(q Poly, bits, terms int, limit float64) error {
+	n, primes := float64(p.Degree()+q.Degree()+2), float64(bits/61+1)
+	if primes*n*n+primes*primes*float64(max(terms, 1)) > limit {
 		return ErrLimit
 	}
 	return nil
 }
 
-// boundResultant is bound for what is as long as the resultant.
-func (p Poly) boundResultant(q Poly) error {
-	bits := (p.Degree()+1)*(q.bits()+12) + (q.Degree()+1)*(p.bits()+12)
-	return p.bound(q, bits, 1<<36)
+// resultantBits bounds the size of the resultant.
+func (p Poly) resultantBits(q Poly) int {
+	return (p.Degree()+1)*(q.bits()+12) + (q.Degree()+1)*(p.bits()+12)
 }
 
 // ExtendedGCD returns the monic greatest common divisor g and polynomials u, v
 // with u·p + v·q = g, deg u < deg q/g and deg v < deg p/g where these are
 // positive; a constant multiple of one of them where the other is the gcd. The
-// error is ErrLimit where the bits of the resultant times the square of the sum
-// of the degrees pass 2^36.
+// error is ErrLimit for operands whose cofactors, which are as long as the
+// resultant, would take more than 2^28 multiplications modulo primes: a degree
+// of 350 with 32-bit coefficients.
 func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
-	if err := p.boundResultant(q); err != nil {
+	if err := p.bound(q, p.resultantBits(q), p.Degree()+q.Degree()+1, 1<<28); err != nil {
 		return Poly{}, Poly{}, Poly{}, err
 	}
 	a, b := p.integer(), q.integer()
@@ -126,9 +129,11 @@ func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 }
 
 // Resultant returns the resultant of p and q, which is 0 when they have a
-// common root and where one of them is 0. The error is that of ExtendedGCD.
+// common root and where one of them is 0. The error is ErrLimit for operands whose
+// resultant would take more than 2^32 multiplications modulo primes: a degree of
+// 900 with 32-bit coefficients.
 func (p Poly) Resultant(q Poly) (*big.Rat, error) {
-	if err := p.boundResultant(q); err != nil {
+	if err := p.bound(q, p.resultantBits(q), 1, 1<<32); err != nil {
 		return nil, err
 	}
 	// res(P/dp, Q/dq) = res(P, Q)/(dp^deg q · dq^deg p)
@@ -150,7 +155,7 @@ type Factor struct {
 // multiplicity. Their product is p.Monic(); a constant has none. The method is
 // that of Yun (1976). The error is that of GCD.
 func (p Poly) SquareFree() ([]Factor, error) {
-	if err := p.bound(p, 2*p.bits(), 1<<38); err != nil {
+	if err := p.bound(p, 2*p.bits(), p.Degree()+1, 1<<32); err != nil {
 		return nil, err
 	}
 	found := p.integer().SquareFree()

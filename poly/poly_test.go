@@ -233,6 +233,21 @@ func TestRefusals(t *testing.T) {
 	if _, err := (Poly{}).HalfPlane(); !errors.Is(err, ErrZeroPolynomial) {
 		t.Errorf("HalfPlane of 0: %v", err)
 	}
+	long := make([]int64, 700)
+	for i := range long {
+		long[i] = int64(i*i%97) - 50
+	}
+	wide := FromInts(long...)
+	for name, err := range map[string]error{
+		"HalfPlane":      func() error { _, err := wide.HalfPlane(); return err }(),
+		"UnitCircle":     func() error { _, err := FromInts(long[:500]...).UnitCircle(); return err }(),
+		"CountRealRoots": func() error { _, err := wide.CountRealRoots(nil, nil); return err }(),
+		"ExtendedGCD":    func() error { _, _, _, err := wide.ExtendedGCD(wide.Derivative()); return err }(),
+	} {
+		if !errors.Is(err, ErrLimit) {
+			t.Errorf("%s of degree 699: %v", name, err)
+		}
+	}
 	if p, err := FromInts(2).Pow(MaxBits + 1); !errors.Is(err, ErrLimit) {
 		t.Errorf("2^%d: degree %d, %v", MaxBits+1, p.Degree(), err)
 	}

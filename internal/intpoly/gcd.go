@@ -51,8 +51,9 @@ func imageOfGCD(f *modp.Field, p, q Poly, room []uint64) []uint64 {
 func modularGCD(p, q Poly, room []uint64) Poly {
 	var lead Poly // the greatest common divisor of the leading coefficients
 	var c chinese
-	for i := 0; ; i++ {
-		f := modp.Prime(i)
+	var primes modp.Primes
+	for {
+		f := primes.Next()
 		image := imageOfGCD(&f, p, q, room)
 		switch {
 		case len(image) == 0:

@@ -20,8 +20,9 @@ func (p Poly) Resultant(q Poly) *big.Int {
 	need := n*(p.MaxBitLen()+bits.Len(uint(m+1))/2+1) + m*(q.MaxBitLen()+bits.Len(uint(n+1))/2+1) + 2
 	var c chinese
 	a, b := make([]uint64, m+1), make([]uint64, n+1)
-	for i := 0; c.limbs == 0 || c.bits() <= need; i++ {
-		f := modp.Prime(i)
+	var primes modp.Primes
+	for c.limbs == 0 || c.bits() <= need {
+		f := primes.Next()
 		if !storedInto(a, &f, p) || !storedInto(b, &f, q) {
 			continue // the prime divides a leading coefficient
 		}
@@ -53,8 +54,9 @@ func (p Poly) Cofactors(q Poly) (u, v Poly, r *big.Int, ok bool) {
 	}
 	var c chinese
 	a, b := make([]uint64, m+1), make([]uint64, n+1)
-	for i := 0; ; i++ {
-		f := modp.Prime(i)
+	var primes modp.Primes
+	for {
+		f := primes.Next()
 		if !storedInto(a, &f, p) || !storedInto(b, &f, q) {
 			continue
 		}

@@ -17,20 +17,23 @@ type Field struct {
 // offsets are the k for which 2^62 − k is prime, the smallest first.
 var offsets = [...]uint16{57, 87, 117, 143, 153, 167, 171, 195, 203, 273, 287, 317, 443, 483, 495, 575, 581, 603, 633, 663, 765, 773, 777, 791, 813, 831, 923, 981, 993, 1001, 1007, 1017, 1197, 1241, 1293, 1353, 1433, 1515, 1553, 1575, 1581, 1595, 1617, 1673, 1697, 1701, 1703, 1823}
 
-// Prime returns the field of the i-th largest prime below 2^62.
-func Prime(i int) Field {
-	if i < len(offsets) {
-		return newField(1<<62 - uint64(offsets[i]))
+// Primes walks through the primes below 2^62, the largest first.
+type Primes struct {
+	index int
+	last  uint64
+}
+
+// Next returns the field of the next prime.
+func (p *Primes) Next() Field {
+	if p.index < len(offsets) {
+		p.last = 1<<62 - uint64(offsets[p.index])
+		p.index++
+		return newField(p.last)
 	}
-	p := uint64(1)<<62 - uint64(offsets[len(offsets)-1])
-	for left := i - len(offsets); left >= 0; {
-		p -= 2
+	for p.last -= 2; !new(big.Int).SetUint64(p.last).ProbablyPrime(0); p.last -= 2 {
 		// The test is proved for numbers below 2^64.
-		if new(big.Int).SetUint64(p).ProbablyPrime(0) {
-			left--
-		}
 	}
-	return newField(p)
+	return newField(p.last)
 }
 
 func newField(p uint64) Field {

@@ -6,10 +6,14 @@ import (
 	"testing"
 )
 
+// nth returns the field of a prime.
+func nth(i int) Field { return newField(1<<62 - uint64(offsets[i])) }
+
 func TestPrimes(t *testing.T) {
 	last := uint64(1) << 62
+	var primes Primes
 	for i := range len(offsets) + 3 {
-		f := Prime(i)
+		f := primes.Next()
 		if f.P >= last || !new(big.Int).SetUint64(f.P).ProbablyPrime(20) {
 			t.Fatalf("prime %d is %d", i, f.P)
 		}
@@ -26,7 +30,7 @@ func TestPrimes(t *testing.T) {
 func TestFieldAgainstBig(t *testing.T) {
 	r := rand.New(rand.NewPCG(1, 2))
 	for range 3000 {
-		f := Prime(r.IntN(40))
+		f := nth(r.IntN(40))
 		p := new(big.Int).SetUint64(f.P)
 		mod := func(x *big.Int) uint64 { return new(big.Int).Mod(x, p).Uint64() }
 		a, b := r.Uint64()%f.P, r.Uint64()%f.P
@@ -116,7 +120,7 @@ func naiveResultant(f *Field, a, b []uint64) uint64 {
 
 func TestEuclid(t *testing.T) {
 	r := rand.New(rand.NewPCG(3, 4))
-	f := Prime(3)
+	f := nth(3)
 	random := func(terms int) []uint64 {
 		c := make([]uint64, terms)
 		for i := range c {
