@@ -31,7 +31,6 @@ func Series[G Block[G]](first G, rest ...G) (G, error) {
 		if err := checkPeriod("Series", i+1, &c, &r); err != nil {
 			return first.with(core{}), err
 		}
-		c.f = c.f.Mul(r.f)
 		c.output = r.output
 		if r.delay != nil {
 			if c.delay == nil {
@@ -41,7 +40,18 @@ func Series[G Block[G]](first G, rest ...G) (G, error) {
 			}
 		}
 	}
+	c.f = halves(first, rest, ratfun.Func.Mul)
 	return first.with(c), nil
+}
+
+// halves joins the functions of the blocks by halves, so that long chains are
+// products of factors of equal length.
+func halves[G Block[G]](first G, rest []G, join func(f, g ratfun.Func) ratfun.Func) ratfun.Func {
+	if len(rest) == 0 {
+		return first.core().f
+	}
+	m := len(rest) / 2
+	return join(halves(first, rest[:m], join), halves(rest[m], rest[m+1:], join))
 }
 
 // Parallel returns the sum of blocks that share input and output. The errors
@@ -70,9 +80,9 @@ func Parallel[G Block[G]](first G, rest ...G) (G, error) {
 			return first.with(core{}), &DeadTimeError{Operation: "Parallel", Index: i + 1,
 				Earlier: c.delaySeconds(), Later: r.delaySeconds()}
 		}
-		c.f = c.f.Add(r.f)
 		c.input, c.output = merge(c.input, r.input), merge(c.output, r.output)
 	}
+	c.f = halves(first, rest, ratfun.Func.Add)
 	return first.with(c), nil
 }
 
