@@ -59,6 +59,10 @@ func main() {
 	fmt.Println(tf.Must(h.At(2i)))
 	fmt.Println(tf.Must(h.AtRat(big.NewRat(1, 3))))
 
+	// On the imaginary axis, dead time included: ω in rad/s, phase in rad.
+	axis := pool.FrequencyFunction()
+	fmt.Println(tf.Must(axis.Decibels(0.0024)), tf.Must(axis.Phase(0.0024)))
+
 	// Discrete functions compose with the same words.
 	filter := tf.MustParseDiscrete("0.1/(z - 0.9) [mm -> mm] every 0.01 s")
 	fmt.Println(tf.Must(tf.Series(filter, filter)))
