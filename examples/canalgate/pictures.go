@@ -96,7 +96,12 @@ func stack(panels []*plot.Plot, c draw.Canvas) {
 		rows[i] = []*plot.Plot{p}
 	}
 	margin := 4 * vg.Millimeter
-	tiles := draw.Tiles{Rows: len(panels), Cols: 1, PadY: 3 * vg.Millimeter, PadTop: margin, PadBottom: margin, PadLeft: margin, PadRight: margin}
+	caution := panels[0].X.Label.TextStyle
+	caution.Color, caution.XAlign, caution.YAlign = slate, text.XLeft, text.YBottom
+	caution.Font.Size = 8
+	c.FillText(caution, vg.Point{X: c.Min.X + margin, Y: c.Min.Y + margin/2},
+		"Linear model about one operating point, dead time as an approximant; not a basis for limits or interlocks.")
+	tiles := draw.Tiles{Rows: len(panels), Cols: 1, PadY: 3 * vg.Millimeter, PadTop: margin, PadBottom: 2 * margin, PadLeft: margin, PadRight: margin}
 	for i, row := range plot.Align(rows, tiles, c) {
 		panels[i].Draw(row[0])
 	}
