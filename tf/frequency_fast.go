@@ -205,8 +205,12 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	}
 	x := float64(math.FMA(a, c, float64(b*d)) * inverse)
 	y := float64(math.FMA(b, c, -float64(a*d)) * inverse)
-	restRe := residual(a, aLow, -x, c, cLow, y, d, dLow)
-	restIm := residual(b, bLow, -y, c, cLow, -x, d, dLow)
+	// a − x·c + y·d and b − y·c − x·d, where both are small
+	xc, xd, yc, yd := float64(x*c), float64(x*d), float64(y*c), float64(y*d)
+	re, reLow := split(dd.TwoSum(a, -xc))
+	im, imLow := split(dd.TwoSum(b, -yc))
+	restRe := (re + yd) + math.FMA(y, dLow, math.FMA(-x, cLow, reLow+aLow+(math.FMA(-x, c, xc)+math.FMA(y, d, -yd))))
+	restIm := (im - xd) + math.FMA(-x, dLow, math.FMA(-y, cLow, imLow+bLow+(math.FMA(-y, c, yc)+math.FMA(-x, d, xd))))
 	x, xLow := split(dd.TwoSum(x, float64(math.FMA(restRe, c, float64(restIm*d))*inverse)))
 	y, yLow := split(dd.TwoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse)))
 	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
@@ -215,15 +219,6 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	reOK = x+(xLow+off) == x+(xLow-off)
 	imOK = y+(yLow+off) == y+(yLow-off)
 	return complex(x*r.factor, y*r.factor), reOK, imOK
-}
-
-// residual is a + p·c + q·d, where that is small, for unevaluated sums a, c and
-// d.
-func residual(a, aLow, p, c, cLow, q, d, dLow float64) float64 {
-	pc := float64(p * c)
-	qd := float64(q * d)
-	s, e := split(dd.TwoSum(a, pc))
-	return (s + qd) + math.FMA(q, dLow, math.FMA(p, cLow, e+aLow+(math.FMA(p, c, -pc)+math.FMA(q, d, -qd))))
 }
 
 // magnitude returns the absolute value at jω; ok tells that it is certainly
