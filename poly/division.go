@@ -8,19 +8,22 @@ import (
 )
 
 // MaxDegree and MaxBits bound the results of Pow and Compose: the degree, and
-// an upper bound on the bits of numerators and denominators together.
+// an upper bound on the bits of a numerator and its denominator together. All
+// coefficients together are bounded by maxTotal.
 const (
 	MaxDegree = 4096
 	MaxBits   = 1 << 18
+	maxTotal  = 3 << 24
 )
 
 // bits bounds the size of a coefficient of p.
 func (p Poly) bits() int { return p.integer().MaxBitLen() + p.rational().DenominatorBits() }
 
 // Pow returns p^n; p^0 is 1. The error is ErrLimit for a negative n, and where
-// the result could pass MaxDegree or MaxBits.
+// the result could pass MaxDegree, MaxBits or 6 MiB in all.
 func (p Poly) Pow(n int) (Poly, error) {
-	if n < 0 || n > 0 && (p.Degree() > MaxDegree/n || p.bits() > MaxBits/n) || n > MaxBits {
+	if n < 0 || n > 0 && (p.Degree() > MaxDegree/n || p.bits() > MaxBits/n) || n > MaxBits ||
+		(p.Degree()*n+1)*p.bits()*n > maxTotal {
 		return Poly{}, ErrLimit
 	}
 	e := big.NewInt(int64(n))
@@ -28,10 +31,13 @@ func (p Poly) Pow(n int) (Poly, error) {
 }
 
 // Compose returns p(q(x)). The error is ErrLimit where the result could pass
-// MaxDegree or MaxBits.
+// MaxDegree, MaxBits or, for a q of positive degree, 6 MiB in all.
 func (p Poly) Compose(q Poly) (Poly, error) {
 	m, n := p.Degree(), q.Degree()
 	if m > 0 && n > 0 && (n > MaxDegree/m || q.bits() > (MaxBits-min(p.bits(), MaxBits))/m) || m > MaxDegree {
+		return Poly{}, ErrLimit
+	}
+	if m > 0 && n > 0 && (m*n+1)*(p.bits()+m*q.bits()) > maxTotal {
 		return Poly{}, ErrLimit
 	}
 	var v Poly

@@ -226,6 +226,19 @@ func TestRefusals(t *testing.T) {
 	if _, err := x.Pow(MaxDegree + 1); !errors.Is(err, ErrLimit) {
 		t.Errorf("x^%d: %v", MaxDegree+1, err)
 	}
+	if p, err := MustParse("x + 1").Pow(MaxDegree); err != nil || p.Degree() != MaxDegree {
+		t.Errorf("(x + 1)^%d: %v", MaxDegree, err)
+	}
+	heavy := make([]*big.Rat, 65)
+	for i := range heavy {
+		heavy[i] = new(big.Rat).SetInt(new(big.Int).Lsh(big.NewInt(3), 4000))
+	}
+	if _, err := FromRats(heavy...).Pow(60); !errors.Is(err, ErrLimit) {
+		t.Errorf("a power of 30 MiB: %v", err)
+	}
+	if _, err := FromRats(heavy...).Compose(FromRats(heavy[:60]...)); !errors.Is(err, ErrLimit) {
+		t.Errorf("a composition of 100 MiB: %v", err)
+	}
 	big64, _ := x.Pow(100)
 	if _, err := big64.Compose(big64); !errors.Is(err, ErrLimit) {
 		t.Errorf("degree 10000: %v", err)
