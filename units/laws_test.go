@@ -229,3 +229,22 @@ func FuzzParseQuantity(f *testing.F) {
 		}
 	})
 }
+
+func FuzzParseSignal(f *testing.F) {
+	for _, s := range []string{"level: m", "mm", "a_1: kg·m²/s²", ": m", "x:"} {
+		f.Add(s)
+	}
+	f.Fuzz(func(t *testing.T, text string) {
+		s, err := ParseSignal(text)
+		if err != nil {
+			var syntax *SyntaxError
+			if !errors.As(err, &syntax) {
+				t.Fatalf("untyped error %v", err)
+			}
+			return
+		}
+		if r, err := ParseSignal(s.String()); err != nil || !r.Equal(s) {
+			t.Fatalf("%q is %q, which reads as %v, %v", text, s, r, err)
+		}
+	})
+}
