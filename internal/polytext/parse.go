@@ -271,7 +271,8 @@ func (p *parser) spend(at lex.Token, a, b intpoly.Poly) error {
 	}
 	bits := a.MaxBitLen() + b.MaxBitLen()
 	words := func(q intpoly.Poly) int { return (q.Degree() + 1) * (q.MaxBitLen()/64 + 1) }
-	p.work += words(a) * words(b)
+	// the product, and the greatest common divisor that brings its numbers down
+	p.work += words(a)*words(b) + (bits/64)*(bits/64)
 	if bits > maxBits || p.work > maxWork {
 		return lex.Fault(p.text, at.Offset, "a product too large to expand",
 			fmt.Sprintf("coefficients of at most %d bits and fewer factors", maxBits), fault.ErrLimit)

@@ -2,6 +2,7 @@ package polytext
 
 import (
 	"errors"
+	"fmt"
 	"strings"
 	"testing"
 
@@ -49,7 +50,7 @@ func TestRefusals(t *testing.T) {
 		{strings.Repeat("(", 10<<20), fault.ErrLimit, ""}, {"(1e4000 s)^4000", fault.ErrLimit, ""}, {strings.Repeat("(s+1)^4000+", 1000) + "1", nil, ""},
 		{"1/s (s + 1)", nil, "read in two ways"}, {"s + ", nil, "a number"}, {"s + x", nil, `the variable "s"`}, {"(s", nil, "closing"}, {"s)", nil, "the end"},
 		{"2 3", nil, "the end"}, {"s^1.5", nil, "whole"}, {"s^s", nil, "whole"}, {"NaN", fault.ErrNotFinite, "finite"}, {"s + Inf", fault.ErrNotFinite, "finite"}, {"\xff", nil, "UTF-8"},
-		{strings.Repeat("1/(s+1)^40+", 1000) + "1", fault.ErrLimit, ""},
+		{strings.Repeat("1/(s+1)^40+", 1000) + "1", fault.ErrLimit, ""}, {differentFractions(), fault.ErrLimit, "too large"},
 	} {
 		if strings.HasPrefix(c.text, "(s+1)^4000") { // a valid text at the bounds: it must only end soon
 			_, _, _ = Parse(c.text, "s")
@@ -61,6 +62,15 @@ func TestRefusals(t *testing.T) {
 			t.Errorf("Parse(%.20q) = %v, want a SyntaxError that is %v and says %q", c.text, err, c.is, c.says)
 		}
 	}
+}
+
+// differentFractions is a sum whose common denominator grows with every term.
+func differentFractions() string {
+	var b strings.Builder
+	for i := range 4000 {
+		fmt.Fprintf(&b, "s/%s%d1+", strings.Repeat("7", 200), i)
+	}
+	return b.String() + "1"
 }
 
 func FuzzParse(f *testing.F) {
