@@ -40,17 +40,37 @@ func (p Poly) Compose(q Poly) (Poly, error) {
 	if m > 0 && n > 0 && (m*n+1)*(p.bits()+m*q.bits()) > maxTotal {
 		return Poly{}, ErrLimit
 	}
-	var v Poly
-	for i := m; i >= 0; i-- {
-		v = v.Mul(q).Add(FromRats(p.Coefficient(i)))
+	powers := []Poly{q} // q^(2^k)
+	for k := 1; 1<<k <= m; k++ {
+		powers = append(powers, powers[k-1].Mul(powers[k-1]))
 	}
-	return v, nil
+	return p.compose(powers, 0, m+1), nil
+}
+
+// compose returns Σ c_i·q^(i − from) over from ≤ i < to. It splits the sum where
+// the upper part is lifted by a power q^(2^k), so that long results are products
+// of long factors.
+func (p Poly) compose(powers []Poly, from, to int) Poly {
+	switch {
+	case to <= from:
+		return Poly{}
+	case to-from == 1:
+		return FromRats(p.Coefficient(from))
+	}
+	k := 0
+	for 2<<k < to-from {
+		k++
+	}
+	upper := p.compose(powers, from+1<<k, to)
+	return p.compose(powers, from, from+1<<k).Add(upper.Mul(powers[k]))
 }
 
 // QuoRem returns the quotient and the remainder of p over q: p = quo·q + rem
 // with a degree of rem below that of q. The errors are ErrDivisionByZero for
 // q = 0, and ErrLimit where the remainder could pass MaxBits per coefficient
-// (bits of q times the difference of the degrees).
+// (bits of q times the difference k of the degrees) or where deg p·k² times the
+// bits of q passes 2^37: beyond degree 2500
+// over 1250 with 32-bit coefficients.
 func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 	if q.IsZero() {
 		return Poly{}, Poly{}, ErrDivisionByZero
@@ -58,7 +78,8 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 	if p.Degree() < q.Degree() {
 		return Poly{}, p, nil
 	}
-	if n := p.Degree() - q.Degree() + 1; q.integer().MaxBitLen() > MaxBits/n {
+	n, bits := p.Degree()-q.Degree()+1, q.integer().MaxBitLen()
+	if bits > MaxBits/n || float64(p.Degree()+1)*float64(n)*float64(n)*float64(bits) > 1<<37 {
 		return Poly{}, Poly{}, ErrLimit
 	}
 	// With P = dp·p and Q = dq·q whole and lc^k·P = A·Q + R:
@@ -70,11 +91,11 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 }
 
 // GCD returns the monic greatest common divisor of p and q; the polynomial 0
-// when both are 0. The error is ErrLimit for operands of thousands of terms with
-// thousands of digits, whose modular images would take more than 2^32
-// multiplications.
+// when both are 0. The error is ErrLimit for operands whose modular images could
+// take more than 2^32 multiplications of words: beyond degree 16 with 100,000
+// bits, or degree 4000 with 1800 bits.
 func (p Poly) GCD(q Poly) (Poly, error) {
-	if err := p.bound(q, p.bits()+q.bits(), p.Degree()+1, 1<<32); err != nil {
+	if err := p.bound(q, p.bits()+q.bits(), 1, p.Degree()+1, 1<<32); err != nil {
 		return Poly{}, err
 	}
 	g := fromInteger(p.integer().GCD(q.integer()))
@@ -85,11 +106,12 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 }
 
 // bound refuses modular work beyond a limit of multiplications: as many primes
-// as the bits of the result ask for, each with an image that costs the square of
-// the degrees, put together term by term.
-func (p Poly) bound(q Poly, bits, terms int, limit float64) error {
+// as the bits of the result ask for, each with an image that costs some times
+// the square of the degrees. Each prime then lengthens every term, at a cost that is the number
+// of primes so far times some 16 multiplications.
+func (p Poly) bound(q Poly, bits, image, terms int, limit float64) error {
 	n, primes := float64(p.Degree()+q.Degree()+2), float64(bits/61+1)
-	if primes*n*n+primes*primes*float64(max(terms, 1)) > limit {
+	if float64(image)*primes*n*n+16*primes*primes*float64(max(terms, 1)) > limit {
 		return ErrLimit
 	}
 	return nil
@@ -104,10 +126,10 @@ func (p Poly) resultantBits(q Poly) int {
 // with u·p + v·q = g, deg u < deg q/g and deg v < deg p/g where these are
 // positive; a constant multiple of one of them where the other is the gcd. The
 // error is ErrLimit for operands whose cofactors, which are as long as the
-// resultant, would take more than 2^28 multiplications modulo primes: a degree
-// of 350 with 32-bit coefficients.
+// resultant, would take more than 11·2^28 multiplications of words: beyond degree
+// 290 with 32-bit coefficients.
 func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
-	if err := p.bound(q, p.resultantBits(q), p.Degree()+q.Degree()+1, 1<<28); err != nil {
+	if err := p.bound(q, p.resultantBits(q), 8, p.Degree()+q.Degree()+1, 11<<28); err != nil {
 		return Poly{}, Poly{}, Poly{}, err
 	}
 	a, b := p.integer(), q.integer()
@@ -136,10 +158,10 @@ func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 
 // Resultant returns the resultant of p and q, which is 0 when they have a
 // common root and where one of them is 0. The error is ErrLimit for operands whose
-// resultant would take more than 2^32 multiplications modulo primes: a degree of
-// 900 with 32-bit coefficients.
+// resultant would take more than 2^32 multiplications of words: beyond degree 850
+// with 32-bit coefficients, or degree 20 with 20,000 bits.
 func (p Poly) Resultant(q Poly) (*big.Rat, error) {
-	if err := p.bound(q, p.resultantBits(q), 1, 1<<32); err != nil {
+	if err := p.bound(q, p.resultantBits(q), 1, 1, 1<<32); err != nil {
 		return nil, err
 	}
 	// res(P/dp, Q/dq) = res(P, Q)/(dp^deg q · dq^deg p)
@@ -161,7 +183,7 @@ type Factor struct {
 // multiplicity. Their product is p.Monic(); a constant has none. The method is
 // that of Yun (1976). The error is that of GCD.
 func (p Poly) SquareFree() ([]Factor, error) {
-	if err := p.bound(p, 2*p.bits(), p.Degree()+1, 1<<32); err != nil {
+	if err := p.bound(p, 2*p.bits(), 1, p.Degree()+1, 1<<32); err != nil {
 		return nil, err
 	}
 	found := p.integer().SquareFree()

@@ -266,6 +266,68 @@ func TestRefusals(t *testing.T) {
 	}
 }
 
+// naiveCompose is Horner's rule.
+func naiveCompose(p, q Poly) Poly {
+	var v Poly
+	for i := p.Degree(); i >= 0; i-- {
+		v = v.Mul(q).Add(FromRats(p.Coefficient(i)))
+	}
+	return v
+}
+
+func TestComposeAgainstHorner(t *testing.T) {
+	random := rand.New(rand.NewPCG(13, 14))
+	for m := range 40 {
+		for _, n := range []int{0, 1, 2, 5} {
+			p, q := randomPoly(random, m), randomPoly(random, n)
+			if got, err := p.Compose(q); err != nil || !got.Equal(naiveCompose(p, q)) {
+				t.Fatalf("%v of %v is %v, %v", p, q, got, err)
+			}
+		}
+	}
+	for _, c := range []struct{ p, q, want Poly }{{Poly{}, FromInts(1, 2), Poly{}}, {FromInts(3), Poly{}, FromInts(3)}, {FromInts(3, 4), Poly{}, FromInts(3)}} {
+		if got, err := c.p.Compose(c.q); err != nil || !got.Equal(c.want) {
+			t.Errorf("%v of %v is %v, %v", c.p, c.q, got, err)
+		}
+	}
+}
+
+// The bounds are where the doc comments say, and each refusal comes at once.
+func TestDocumentedBounds(t *testing.T) {
+	of := func(degree, bits int) Poly {
+		c := make([]*big.Rat, degree+1)
+		for i := range c {
+			v := new(big.Int).Lsh(big.NewInt(1), uint(bits-1))
+			c[i] = new(big.Rat).SetInt(v.Add(v, big.NewInt(int64(i*i%89+1))))
+		}
+		return FromRats(c...)
+	}
+	extended := func(p Poly) error { return p.bound(p, p.resultantBits(p), 8, 2*p.Degree()+1, 11<<28) }
+	resultant := func(p Poly) error { return p.bound(p, p.resultantBits(p), 1, 1, 1<<32) }
+	for name, c := range map[string]struct {
+		within error
+		beyond func() error
+	}{
+		"ExtendedGCD":          {extended(of(290, 32)), func() error { _, _, _, err := of(310, 32).ExtendedGCD(of(310, 31)); return err }},
+		"Resultant":            {resultant(of(850, 32)), func() error { _, err := of(1000, 32).Resultant(of(1000, 31)); return err }},
+		"Resultant, long":      {resultant(of(20, 20000)), func() error { _, err := of(20, 40000).Resultant(of(20, 39999)); return err }},
+		"GCD, long":            {of(16, 100000).bound(of(16, 100000), 200000, 1, 17, 1<<32), func() error { _, err := of(16, 200000).GCD(of(16, 199999)); return err }},
+		"GCD, of many terms":   {of(4000, 1800).bound(of(4000, 1800), 3600, 1, 4001, 1<<32), func() error { _, err := of(4000, 8000).GCD(of(4000, 7999)); return err }},
+		"QuoRem, many terms":   {nil, func() error { _, _, err := of(4000, 32).QuoRem(of(2000, 32)); return err }},
+		"Compose, many digits": {nil, func() error { _, err := of(4000, 32).Compose(of(1, 32)); return err }},
+	} {
+		if c.within != nil {
+			t.Errorf("%s within its bound: %v", name, c.within)
+		}
+		if err := c.beyond(); !errors.Is(err, ErrLimit) {
+			t.Errorf("%s beyond its bound: %v", name, err)
+		}
+	}
+	if _, _, err := of(600, 200).QuoRem(of(300, 200)); err != nil {
+		t.Errorf("QuoRem within its bound: %v", err)
+	}
+}
+
 func FuzzText(f *testing.F) {
 	for _, s := range []string{"0.02 s^2 + 0.4 s + 9", "3/4 z² − 1/3", "-x^3(x+1)^2", "1e-30"} {
 		f.Add(s)

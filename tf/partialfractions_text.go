@@ -62,6 +62,7 @@ func (s *signedSum) add(text string) {
 	s.WriteString(text)
 }
 
+// String is the sum, 0 where it has no terms.
 func (s *signedSum) String() string {
 	if s.Len() == 0 {
 		return "0"

@@ -141,8 +141,7 @@ func TestAgainstOracle(t *testing.T) {
 	}
 }
 
-// Long factors, of equal and of very unequal length, take the ways of
-// Karatsuba.
+// Long factors, of equal and of very unequal length, are packed.
 func TestLongProducts(t *testing.T) {
 	r := rand.New(rand.NewPCG(3, 4))
 	rounds := 30

@@ -30,49 +30,55 @@ func TestPrimes(t *testing.T) {
 func TestFieldAgainstBig(t *testing.T) {
 	r := rand.New(rand.NewPCG(1, 2))
 	for range 3000 {
-		f := nth(r.IntN(40))
-		p := new(big.Int).SetUint64(f.P)
-		mod := func(x *big.Int) uint64 { return new(big.Int).Mod(x, p).Uint64() }
-		a, b := r.Uint64()%f.P, r.Uint64()%f.P
-		if r.IntN(8) == 0 {
-			a = []uint64{0, 1, f.P - 1}[r.IntN(3)]
-		}
-		ab := new(big.Int).Mul(new(big.Int).SetUint64(a), new(big.Int).SetUint64(b))
-		x, y := f.Stored(a), f.Stored(b)
-		if f.Plain(x) != a || f.Plain(f.Mul(x, y)) != mod(ab) || f.Mul(x, b) != mod(ab) {
-			t.Fatalf("%d·%d modulo %d", a, b, f.P)
-		}
-		if f.Sub(a, b) != mod(new(big.Int).Sub(new(big.Int).SetUint64(a), new(big.Int).SetUint64(b))) || f.Neg(a) != (f.P-a)%f.P {
-			t.Fatalf("%d − %d modulo %d", a, b, f.P)
-		}
-		if a != 0 && f.Plain(f.Mul(x, f.Inverse(x))) != 1 {
-			t.Fatalf("inverse of %d modulo %d", a, f.P)
-		}
-		if n := r.IntN(50); f.Plain(f.Power(x, n)) != mod(new(big.Int).Exp(new(big.Int).SetUint64(a), big.NewInt(int64(n)), nil)) {
-			t.Fatalf("%d^%d modulo %d", a, n, f.P)
-		}
-		n := 1 + r.IntN(5)
-		c := make([]uint64, n)
-		for i := range c {
-			c[i] = []uint64{0, 1, ^uint64(0), 1 << 63, r.Uint64()}[r.IntN(5)]
-		}
-		v, unsigned := new(big.Int), new(big.Int)
-		for i := n - 1; i >= 0; i-- {
-			unsigned.Lsh(unsigned, 64).Add(unsigned, new(big.Int).SetUint64(c[i]))
-		}
-		v.Set(unsigned)
-		if int64(c[n-1]) < 0 {
-			v.Sub(v, new(big.Int).Lsh(big.NewInt(1), uint(64*n)))
-		}
-		var image [1]uint64
-		f.Images(image[:], c, n)
-		wantImage := mod(v)
-		if n > 1 { // one word is taken as it is
-			wantImage = f.Shrink(wantImage, n)
-		}
-		if f.Residue(c) != mod(v) || image[0] != wantImage || f.Image(c) != f.Shrink(mod(unsigned), n) || f.Grow(f.Shrink(a, n), n) != a {
-			t.Fatalf("residues of %v modulo %d", v, f.P)
-		}
+		checkField(t, r)
+	}
+}
+
+// checkField checks one random case.
+func checkField(t *testing.T, r *rand.Rand) {
+	t.Helper()
+	f := nth(r.IntN(40))
+	p := new(big.Int).SetUint64(f.P)
+	mod := func(x *big.Int) uint64 { return new(big.Int).Mod(x, p).Uint64() }
+	a, b := r.Uint64()%f.P, r.Uint64()%f.P
+	if r.IntN(8) == 0 {
+		a = []uint64{0, 1, f.P - 1}[r.IntN(3)]
+	}
+	ab := new(big.Int).Mul(new(big.Int).SetUint64(a), new(big.Int).SetUint64(b))
+	x, y := f.Stored(a), f.Stored(b)
+	if f.Plain(x) != a || f.Plain(f.Mul(x, y)) != mod(ab) || f.Mul(x, b) != mod(ab) {
+		t.Fatalf("%d·%d modulo %d", a, b, f.P)
+	}
+	if f.Sub(a, b) != mod(new(big.Int).Sub(new(big.Int).SetUint64(a), new(big.Int).SetUint64(b))) || f.Neg(a) != (f.P-a)%f.P {
+		t.Fatalf("%d − %d modulo %d", a, b, f.P)
+	}
+	if a != 0 && f.Plain(f.Mul(x, f.Inverse(x))) != 1 {
+		t.Fatalf("inverse of %d modulo %d", a, f.P)
+	}
+	if n := r.IntN(50); f.Plain(f.Power(x, n)) != mod(new(big.Int).Exp(new(big.Int).SetUint64(a), big.NewInt(int64(n)), nil)) {
+		t.Fatalf("%d^%d modulo %d", a, n, f.P)
+	}
+	n := 1 + r.IntN(5)
+	c := make([]uint64, n)
+	for i := range c {
+		c[i] = []uint64{0, 1, ^uint64(0), 1 << 63, r.Uint64()}[r.IntN(5)]
+	}
+	v, unsigned := new(big.Int), new(big.Int)
+	for i := n - 1; i >= 0; i-- {
+		unsigned.Lsh(unsigned, 64).Add(unsigned, new(big.Int).SetUint64(c[i]))
+	}
+	v.Set(unsigned)
+	if int64(c[n-1]) < 0 {
+		v.Sub(v, new(big.Int).Lsh(big.NewInt(1), uint(64*n)))
+	}
+	var image [1]uint64
+	f.Images(image[:], c, n)
+	wantImage := mod(v)
+	if n > 1 { // one word is taken as it is
+		wantImage = f.Shrink(wantImage, n)
+	}
+	if f.Residue(c) != mod(v) || image[0] != wantImage || f.Image(c) != f.Shrink(mod(unsigned), n) || f.Grow(f.Shrink(a, n), n) != a {
+		t.Fatalf("residues of %v modulo %d", v, f.P)
 	}
 }
 
@@ -186,4 +192,9 @@ func TestEuclid(t *testing.T) {
 	if coprime < 500 {
 		t.Errorf("only %d coprime pairs", coprime)
 	}
+}
+
+func FuzzField(f *testing.F) {
+	f.Add(uint64(1))
+	f.Fuzz(func(t *testing.T, seed uint64) { checkField(t, rand.New(rand.NewPCG(seed, 1))) })
 }

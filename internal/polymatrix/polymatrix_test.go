@@ -46,44 +46,57 @@ func TestSolveAgainstExpansion(t *testing.T) {
 	r := rand.New(rand.NewPCG(1, 2))
 	singular := 0
 	for range 300 {
-		n := 1 + r.IntN(5)
-		a, b := make([][]intpoly.Poly, n), make([]intpoly.Poly, n)
-		for i := range a {
-			b[i] = random(r, 2)
-			for range n {
-				a[i] = append(a[i], random(r, 3))
-			}
-		}
-		if n > 2 && r.IntN(4) == 0 { // make a row depend on two others
-			p, q := random(r, 1), random(r, 1)
-			for j := range a[0] {
-				a[0][j] = a[1][j].Mul(p).Add(a[2][j].Mul(q))
-			}
-		}
-		column := r.IntN(n)
-		num, den, err := Solve(a, b, column)
-		want := determinant(a)
-		if want.IsZero() {
+		if checkSolve(t, r) {
 			singular++
-			var s *SingularError
-			if !errors.As(err, &s) || len(s.Undetermined) == 0 {
-				t.Fatalf("a singular system: %v", err)
-			}
-			continue
-		}
-		replaced := make([][]intpoly.Poly, n)
-		for i := range a {
-			replaced[i] = slices.Clone(a[i])
-			replaced[i][column] = b[i]
-		}
-		// The order of the columns may change both signs.
-		if err != nil || !num.Mul(want).Equal(den.Mul(determinant(replaced))) || !den.Equal(want) && !den.Equal(want.Neg()) {
-			t.Fatalf("size %d, column %d: %v", n, column, err)
 		}
 	}
 	if singular < 20 {
 		t.Errorf("only %d singular systems were met", singular)
 	}
+}
+
+// checkSolve checks one random system and reports whether it was singular.
+func checkSolve(t *testing.T, r *rand.Rand) (singular bool) {
+	t.Helper()
+	n := 1 + r.IntN(5)
+	a, b := make([][]intpoly.Poly, n), make([]intpoly.Poly, n)
+	for i := range a {
+		b[i] = random(r, 2)
+		for range n {
+			a[i] = append(a[i], random(r, 3))
+		}
+	}
+	if n > 2 && r.IntN(4) == 0 { // make a row depend on two others
+		p, q := random(r, 1), random(r, 1)
+		for j := range a[0] {
+			a[0][j] = a[1][j].Mul(p).Add(a[2][j].Mul(q))
+		}
+	}
+	column := r.IntN(n)
+	num, den, err := Solve(a, b, column)
+	want := determinant(a)
+	if want.IsZero() {
+		var s *SingularError
+		if !errors.As(err, &s) || len(s.Undetermined) == 0 {
+			t.Fatalf("a singular system: %v", err)
+		}
+		return true
+	}
+	replaced := make([][]intpoly.Poly, n)
+	for i := range a {
+		replaced[i] = slices.Clone(a[i])
+		replaced[i][column] = b[i]
+	}
+	// The order of the columns may change both signs.
+	if err != nil || !num.Mul(want).Equal(den.Mul(determinant(replaced))) || !den.Equal(want) && !den.Equal(want.Neg()) {
+		t.Fatalf("size %d, column %d: %v", n, column, err)
+	}
+	return false
+}
+
+func FuzzSolve(f *testing.F) {
+	f.Add(uint64(1))
+	f.Fuzz(func(t *testing.T, seed uint64) { checkSolve(t, rand.New(rand.NewPCG(seed, 1))) })
 }
 
 func TestUndetermined(t *testing.T) {

@@ -51,50 +51,56 @@ func (f Func) lawful(t *testing.T, name string) {
 // The oracle is the value at points, computed from the values of the operands.
 func TestOperationsByValue(t *testing.T) {
 	r := rand.New(rand.NewPCG(1, 2))
-	one := big.NewRat(1, 1)
 	for range 3000 {
-		f, g := randomFunc(r), randomFunc(r)
-		k := big.NewRat(r.Int64N(41)-20, 1+r.Int64N(12))
-		product, sum, scaled, negative := f.Mul(g), f.Add(g), f.Scale(k), f.Neg()
-		inverse, invertible := f.Inverse()
-		loop, closed := f.Feedback(g, 1)
-		positive, closedPositive := f.Feedback(g, -1)
-		reduced, cancelled := f.LowestTerms()
-		for name, h := range map[string]Func{"product": product, "sum": sum, "scaled": scaled, "negative": negative, "inverse": inverse,
-			"loop": loop, "positive loop": positive, "reduced": reduced} {
-			h.lawful(t, name)
+		checkOperations(t, r)
+	}
+}
+
+// checkOperations checks one random case.
+func checkOperations(t *testing.T, r *rand.Rand) {
+	t.Helper()
+	one := big.NewRat(1, 1)
+	f, g := randomFunc(r), randomFunc(r)
+	k := big.NewRat(r.Int64N(41)-20, 1+r.Int64N(12))
+	product, sum, scaled, negative := f.Mul(g), f.Add(g), f.Scale(k), f.Neg()
+	inverse, invertible := f.Inverse()
+	loop, closed := f.Feedback(g, 1)
+	positive, closedPositive := f.Feedback(g, -1)
+	reduced, cancelled := f.LowestTerms()
+	for name, h := range map[string]Func{"product": product, "sum": sum, "scaled": scaled, "negative": negative, "inverse": inverse,
+		"loop": loop, "positive loop": positive, "reduced": reduced} {
+		h.lawful(t, name)
+	}
+	if f.Num().GCD(f.Den()).Degree() != cancelled.Degree() || reduced.Num().GCD(reduced.Den()).Degree() > 0 {
+		t.Fatal("lowest terms")
+	}
+	if !sum.Add(g.Neg()).Equivalent(f) || invertible != !f.IsZero() {
+		t.Fatal("sum or inverse")
+	}
+	for x := int64(-4); x < 5; x++ {
+		a, ok1 := f.at(x)
+		b, ok2 := g.at(x)
+		if !ok1 || !ok2 {
+			continue
 		}
-		if f.Num().GCD(f.Den()).Degree() != cancelled.Degree() || reduced.Num().GCD(reduced.Den()).Degree() > 0 {
-			t.Fatal("lowest terms")
+		ab := new(big.Rat).Mul(a, b)
+		check := func(name string, h Func, want *big.Rat) {
+			if v, ok := h.at(x); !ok || v.Cmp(want) != 0 {
+				t.Fatalf("%s at %d: %v, want %v", name, x, v, want)
+			}
 		}
-		if !sum.Add(g.Neg()).Equivalent(f) || invertible != !f.IsZero() {
-			t.Fatal("sum or inverse")
+		check("product", product, ab)
+		check("sum", sum, new(big.Rat).Add(a, b))
+		check("scaled", scaled, new(big.Rat).Mul(a, k))
+		check("reduced", reduced, a)
+		if invertible && a.Sign() != 0 {
+			check("inverse", inverse, new(big.Rat).Inv(a))
 		}
-		for x := int64(-4); x < 5; x++ {
-			a, ok1 := f.at(x)
-			b, ok2 := g.at(x)
-			if !ok1 || !ok2 {
-				continue
-			}
-			ab := new(big.Rat).Mul(a, b)
-			check := func(name string, h Func, want *big.Rat) {
-				if v, ok := h.at(x); !ok || v.Cmp(want) != 0 {
-					t.Fatalf("%s at %d: %v, want %v", name, x, v, want)
-				}
-			}
-			check("product", product, ab)
-			check("sum", sum, new(big.Rat).Add(a, b))
-			check("scaled", scaled, new(big.Rat).Mul(a, k))
-			check("reduced", reduced, a)
-			if invertible && a.Sign() != 0 {
-				check("inverse", inverse, new(big.Rat).Inv(a))
-			}
-			if d := new(big.Rat).Add(one, ab); closed && d.Sign() != 0 {
-				check("loop", loop, new(big.Rat).Quo(a, d))
-			}
-			if d := new(big.Rat).Sub(one, ab); closedPositive && d.Sign() != 0 {
-				check("positive loop", positive, new(big.Rat).Quo(a, d))
-			}
+		if d := new(big.Rat).Add(one, ab); closed && d.Sign() != 0 {
+			check("loop", loop, new(big.Rat).Quo(a, d))
+		}
+		if d := new(big.Rat).Sub(one, ab); closedPositive && d.Sign() != 0 {
+			check("positive loop", positive, new(big.Rat).Quo(a, d))
 		}
 	}
 }
@@ -128,4 +134,9 @@ func TestZeroes(t *testing.T) {
 	if f := zero.Add(one); !f.Equal(one) || !zero.Mul(one).IsZero() {
 		t.Error("arithmetic with the zero value")
 	}
+}
+
+func FuzzOperations(f *testing.F) {
+	f.Add(uint64(1))
+	f.Fuzz(func(t *testing.T, seed uint64) { checkOperations(t, rand.New(rand.NewPCG(seed, 1))) })
 }
