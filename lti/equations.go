@@ -13,21 +13,33 @@
 //	system, err := tank.Build()
 //	plant, err := system.TransferFunction("inflow", "level")
 //
-// In an equation x' is the derivative of x by time in seconds, a space
-// multiplies, a name is a signal or a constant and never a unit, and a literal
+// In an equation x' is the derivative of x by time in seconds and integral(x)
+// its integral, a space multiplies, a name is a signal or a constant and never a unit, and a literal
 // is a pure number. Signals and constants may be in any units: the equation is
 // one between physical quantities, so that millimetres beside metres are
 // converted exactly. The radian is weightless there, as in the SI. A constant in
 // a unit that counts cycles or degrees, such as Hz, is refused, because 2π gets
 // lost there; a signal may be in rpm or deg, which count as the radians that they
-// are. Initial conditions are zero; signals are deviations from an operating
-// point.
+// are. Initial conditions are zero, unless InitialState is told others; signals
+// are deviations from an operating point.
+//
+// Inputs may be differentiated, and expressions integrated, as in a controller:
+//
+//	u = kp error + ki integral(error) + kd error'
+//
+// integral(x) is a quantity whose derivative is x, in the unit of x times
+// seconds. An equation with integrals stands for the one that is differentiated
+// until none is left, as many times as they are nested; the one above for
+//
+//	u' = kp error' + ki error + kd error''
+//
+// That adds the integrator's own mode at 0, one for all integrals side by side
+// in an equation, and no other. The name "integral" is reserved.
 package lti
 
 import (
 	"errors"
 	"fmt"
-	"math/big"
 	"unicode"
 
 	"github.com/qofs/qofs/units"
@@ -93,6 +105,8 @@ func (e *Equations) Build() (*System, error) {
 		switch {
 		case !isIdentifier(d.name):
 			fault(kind, d, "the name must be of letters, digits and underscores, and begin with a letter", nil)
+		case d.name == integralWord:
+			fault(kind, d, "the name stands for the integral by time in equations; take another", nil)
 		case declared[d.name]:
 			fault(kind, d, "the name is declared already", nil)
 		}
@@ -137,7 +151,7 @@ func (e *Equations) Build() (*System, error) {
 // equation that could not be read or that uses a faulty declaration, which has
 // been reported already.
 func (s *System) link(faulty map[string]bool) []error {
-	s.rows = make([]map[derivative]*big.Rat, len(s.equations))
+	s.rows = make([]row, len(s.equations))
 	var faults []error
 	for i, q := range s.equations {
 		if q.left == nil || q.left.uses(faulty) || q.right.uses(faulty) {

@@ -31,12 +31,13 @@ const (
 	isQuotient            // a/b
 	isPower               // a^order
 	isDerivative          // a with order primes
+	isIntegral            // the integral of a by time
 	isCall                // name(a), which is refused later with a reason
 )
 
 // Bounds on one equation.
 const (
-	maxPrimes        = 16
+	maxPrimes        = 16 // of a derivative, and the depth of nested integrals
 	maxConstantPower = 64
 	maxTokens        = 10000
 )
@@ -50,7 +51,7 @@ type equation struct {
 //
 //	expression  [+ -] term { (+ -) term }
 //	term        factor { [*] factor | / factor }
-//	factor      (number | name | "(" expression ")") {'} [^integer]
+//	factor      (number | name | ["integral"] "(" expression ")") {'} [^integer]
 func parseEquation(text string) (equation, error) {
 	tokens, err := lex.Tokens(text)
 	if err != nil {
@@ -165,6 +166,9 @@ func (p *parser) term() (*node, error) {
 // functions are names that a user may write as a function of a signal.
 var functions = []string{"sin", "cos", "tan", "asin", "acos", "atan", "sinh", "cosh", "tanh", "exp", "log", "ln", "sqrt", "abs", "sign", "min", "max", "sat"}
 
+// integralWord cannot be the name of a signal or a constant.
+const integralWord = "integral"
+
 func (p *parser) factor() (*node, error) {
 	t := p.peek()
 	var n *node
@@ -175,8 +179,14 @@ func (p *parser) factor() (*node, error) {
 	case t.Kind == lex.Name:
 		n = &node{kind: isName, name: t.Text}
 		p.next++
-		if slices.Contains(functions, t.Text) && p.peek().Is("(") && !p.peek().Spaced {
-			n.kind = isCall
+		integral := t.Text == integralWord
+		if integral && !p.peek().Is("(") {
+			return nil, p.fault("a parenthesis: integral(x) is the integral of x by time")
+		}
+		if integral || slices.Contains(functions, t.Text) && p.peek().Is("(") && !p.peek().Spaced {
+			if n.kind = isCall; integral {
+				n.kind = isIntegral
+			}
 			a, err := p.parenthesis()
 			if err != nil {
 				return nil, err

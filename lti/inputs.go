@@ -22,10 +22,10 @@ const (
 func (s *System) determinations() []determination {
 	out := make([]determination, len(s.signals))
 	raise := func(signal int, d determination) { out[signal] = max(out[signal], d) }
-	for i, row := range s.rows {
-		for t := range row {
+	for i, r := range s.rows {
+		for t := range r.terms {
 			raise(t.signal, isMentioned)
-			if t.order > 0 {
+			if t.order > r.integrals {
 				raise(t.signal, isDifferentiated)
 			}
 		}

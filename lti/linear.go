@@ -14,13 +14,22 @@ import (
 type value struct {
 	dimension units.Dimension // with the radian weightless
 	number    *big.Rat        // nil is 0
-	terms     map[derivative]*big.Rat
+	terms     map[summand]*big.Rat
 	zero      bool // a literal 0, which has any dimension
 	degree    int  // bounds the factors in it, so that exponents of units stay small
 }
 
 // derivative is a signal by its index, and the order of its derivative.
 type derivative struct{ signal, order int }
+
+// summand is a derivative of a signal, of negative order for an integral, and how
+// many times its equation must be differentiated until the constants of its
+// integrals are gone: once for integral(x), where the order is −1, and for
+// integral(x'), which is x but for a constant.
+type summand struct {
+	derivative
+	integrals int
+}
 
 // evaluator turns the tree of one equation into a value. It goes on after a
 // fault, so that Build can report all of them.
@@ -71,6 +80,8 @@ func (e *evaluator) evaluate(n *node) (v value, ok bool) {
 		return e.product(n)
 	case isPower:
 		return e.power(n)
+	case isIntegral:
+		return e.integral(n)
 	default:
 		return e.derivative(n)
 	}
@@ -80,7 +91,7 @@ func (e *evaluator) name(n *node) (value, bool) {
 	if i, ok := e.system.signalIndex(n.name); ok {
 		s := e.system.signals[i]
 		return value{dimension: s.Unit.Dimension().WithoutAngle(), degree: 1,
-			terms: map[derivative]*big.Rat{{i, 0}: big.NewRat(1, 1)}}, true
+			terms: map[summand]*big.Rat{{derivative{i, 0}, 0}: big.NewRat(1, 1)}}, true
 	}
 	if i, ok := e.system.constantIndex(n.name); ok {
 		q := e.system.constants[i].Value
@@ -135,10 +146,10 @@ func (e *evaluator) add(n *node, a, b value) (value, bool) {
 	// sum is linear work.
 	a.number = new(big.Rat).Add(a.rat(), b.rat())
 	if a.terms == nil {
-		a.terms = make(map[derivative]*big.Rat, len(b.terms))
+		a.terms = make(map[summand]*big.Rat, len(b.terms))
 	}
 	a.degree = max(a.degree, b.degree)
-	grown := value{number: a.number, terms: make(map[derivative]*big.Rat, len(b.terms)), degree: a.degree}
+	grown := value{number: a.number, terms: make(map[summand]*big.Rat, len(b.terms)), degree: a.degree}
 	for k, c := range b.terms {
 		if old := a.terms[k]; old != nil {
 			c = new(big.Rat).Add(old, c)
@@ -160,7 +171,7 @@ func (v value) rat() *big.Rat {
 func (v value) times(k *big.Rat, d units.Dimension) value {
 	out := value{dimension: v.dimension.Mul(d), number: new(big.Rat).Mul(v.rat(), k), zero: v.zero, degree: v.degree}
 	if len(v.terms) > 0 {
-		out.terms = make(map[derivative]*big.Rat, len(v.terms))
+		out.terms = make(map[summand]*big.Rat, len(v.terms))
 		for t, c := range v.terms {
 			out.terms[t] = new(big.Rat).Mul(c, k)
 		}
@@ -249,18 +260,49 @@ func (e *evaluator) derivative(n *node) (value, bool) {
 	if a.isConstant() {
 		return e.fail(n, "the derivative of a constant; primes belong to signals")
 	}
-	out := value{dimension: a.dimension, degree: a.degree, terms: make(map[derivative]*big.Rat, len(a.terms))}
-	for range n.order {
+	return e.shifted(n, a, n.order)
+}
+
+// integral returns the antiderivative of a by time. Where it starts is left
+// open, so that its equation is one between derivatives.
+func (e *evaluator) integral(n *node) (value, bool) {
+	a, ok := e.evaluate(n.a)
+	switch {
+	case !ok:
+		return value{}, false
+	case a.isConstant():
+		return e.fail(n, "the integral of a constant; integral(…) belongs to signals")
+	case a.rat().Sign() != 0:
+		return e.fail(n, "the integral holds a constant, which grows without end; a linear model holds deviations from an operating point, in which it drops out: leave it away")
+	}
+	return e.shifted(n, a, -1)
+}
+
+// shifted returns the derivative of a, which has signals, of the given order:
+// −1 for an integral.
+func (e *evaluator) shifted(n *node, a value, order int) (value, bool) {
+	out := value{dimension: a.dimension, degree: a.degree, terms: make(map[summand]*big.Rat, len(a.terms))}
+	for range order {
 		out.dimension = out.dimension.Div(second)
 	}
+	if order < 0 {
+		out.dimension = out.dimension.Mul(second)
+	}
 	for t, c := range a.terms {
-		t.order += n.order
-		if t.order > maxPrimes {
+		t.order += order
+		t.integrals = max(0, t.integrals-order)
+		switch {
+		case t.order > maxPrimes:
 			return e.failWith(n, ErrLimit, "a derivative of order %d: at most %d", t.order, maxPrimes)
+		case t.integrals > maxPrimes:
+			return e.failWith(n, ErrLimit, "integrals nested %d deep: at most %d", t.integrals, maxPrimes)
+		}
+		if old := out.terms[t]; old != nil { // x and integral(x') have one derivative
+			c = new(big.Rat).Add(old, c)
 		}
 		out.terms[t] = c
 	}
-	return out, true
+	return e.bounded(n, out)
 }
 
 var second = units.MustParse("s").Dimension()
@@ -284,10 +326,17 @@ func terms(out []term, n *node, negative bool) []term {
 	return append(out, term{node: n, negative: negative})
 }
 
+// row is an equation, left − right, as a combination of signals and their
+// derivatives in coherent units.
+type row struct {
+	terms     map[derivative]*big.Rat
+	integrals int // how many times the equation was differentiated, until no integral was left
+}
+
 // linear returns left − right of the equation as a combination of signals. It
 // reports every term that has a fault, and every term whose dimension is not
 // that of most terms (of the first ones, where there is no majority).
-func (e *evaluator) linear() (map[derivative]*big.Rat, bool) {
+func (e *evaluator) linear() (row, bool) {
 	var good []term
 	counts := map[units.Dimension]int{}
 	for _, t := range terms(terms(nil, e.equation.left, false), e.equation.right, true) {
@@ -317,17 +366,19 @@ func (e *evaluator) linear() (map[derivative]*big.Rat, bool) {
 		}
 		var ok bool
 		if sum, ok = e.add(t.node, sum, t.value); !ok {
-			return nil, false
+			return row{}, false
 		}
 	}
 	if len(e.faults) > 0 {
-		return nil, false
+		return row{}, false
 	}
 	return e.homogeneous(sum, good)
 }
 
-// homogeneous refuses an equation with a constant term, or without signals.
-func (e *evaluator) homogeneous(sum value, good []term) (map[derivative]*big.Rat, bool) {
+// homogeneous refuses an equation with a constant term, or without signals. An
+// equation with integrals becomes the one that is differentiated as many times
+// as they are nested: that adds the modes at 0 of the integrators, and no other.
+func (e *evaluator) homogeneous(sum value, good []term) (row, bool) {
 	whole := &node{from: 0, to: len(e.equation.text)}
 	if sum.rat().Sign() != 0 {
 		at := whole
@@ -338,18 +389,31 @@ func (e *evaluator) homogeneous(sum value, good []term) (map[derivative]*big.Rat
 			}
 		}
 		e.fail(at, "a constant stands alone as a term; a linear model holds deviations from an operating point, in which it drops out: leave it away")
-		return nil, false
+		return row{}, false
 	}
+	out := row{terms: make(map[derivative]*big.Rat, len(sum.terms))}
 	for t, c := range sum.terms {
-		if c.Sign() == 0 {
-			delete(sum.terms, t)
+		if c.Sign() != 0 {
+			out.integrals = max(out.integrals, t.integrals)
 		}
 	}
-	if len(sum.terms) == 0 {
-		e.fail(whole, "the equation says nothing about any signal")
-		return nil, false
+	for t, c := range sum.terms {
+		t.order += out.integrals
+		if old := out.terms[t.derivative]; old != nil {
+			c = new(big.Rat).Add(old, c)
+		}
+		out.terms[t.derivative] = c
 	}
-	return sum.terms, true
+	for t, c := range out.terms {
+		if c.Sign() == 0 {
+			delete(out.terms, t)
+		}
+	}
+	if len(out.terms) == 0 {
+		e.fail(whole, "the equation says nothing about any signal")
+		return row{}, false
+	}
+	return out, true
 }
 
 // names lists what is declared, shortened.

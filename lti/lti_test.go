@@ -287,7 +287,7 @@ func TestJSON(t *testing.T) {
 }
 
 func FuzzEquation(f *testing.F) {
-	for _, s := range []string{"a x' + b y = 0", "x'' = (x + y)'/a^2", "sin(x) = y", "x = 1/3 y"} {
+	for _, s := range []string{"a x' + b y = 0", "x'' = (x + y)'/a^2", "sin(x) = y", "x = 1/3 y", "x = b integral(y + integral(x'/a))/a"} {
 		f.Add(s)
 	}
 	f.Fuzz(func(t *testing.T, text string) {

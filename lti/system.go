@@ -21,7 +21,7 @@ type System struct {
 	signals   []units.Signal
 	constants []Constant
 	equations []equation
-	rows      []map[derivative]*big.Rat // left − right, in coherent units
+	rows      []row
 }
 
 // Signals returns the signals in the order of declaration.
@@ -184,9 +184,9 @@ func (s *System) namesOf(indices []int) []string {
 
 // commonDenominator returns a number that makes the coefficients of a row
 // whole.
-func commonDenominator(row map[derivative]*big.Rat) *big.Int {
+func commonDenominator(r row) *big.Int {
 	d := big.NewInt(1)
-	for _, c := range row {
+	for _, c := range r.terms {
 		g := new(big.Int).GCD(nil, nil, d, c.Denom())
 		d.Mul(d, new(big.Int).Quo(c.Denom(), g))
 	}
@@ -195,11 +195,11 @@ func commonDenominator(row map[derivative]*big.Rat) *big.Int {
 
 // coefficient returns scale times the polynomial in s with which a signal
 // stands in a row.
-func coefficient(row map[derivative]*big.Rat, signal int, scale *big.Int) intpoly.Poly {
-	c := make([]*big.Int, maxPrimes+1)
+func coefficient(r row, signal int, scale *big.Int) intpoly.Poly {
+	c := make([]*big.Int, maxPrimes+r.integrals+1)
 	for order := range c {
-		if r := row[derivative{signal, order}]; r != nil {
-			c[order] = new(big.Int).Quo(new(big.Int).Mul(r.Num(), scale), r.Denom())
+		if k := r.terms[derivative{signal, order}]; k != nil {
+			c[order] = new(big.Int).Quo(new(big.Int).Mul(k.Num(), scale), k.Denom())
 		}
 	}
 	return intpoly.FromBigs(c...)
