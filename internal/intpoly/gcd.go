@@ -1,10 +1,6 @@
 package intpoly
 
-import (
-	"math/bits"
-
-	"github.com/qofs/qofs/internal/modp"
-)
+import "github.com/qofs/qofs/internal/modp"
 
 // GCD returns the primitive greatest common divisor with a positive leading
 // coefficient; contents are ignored. GCD(0, q) is the primitive part of q, and
@@ -50,7 +46,7 @@ func imageOfGCD(f *modp.Field, p, q Poly, room []uint64) []uint64 {
 // caller's stack.
 func modularGCD(p, q Poly, room []uint64) Poly {
 	var lead Poly // the greatest common divisor of the leading coefficients
-	var c chinese
+	var c Images
 	var primes modp.Primes
 	for {
 		f := primes.Next()
@@ -63,7 +59,7 @@ func modularGCD(p, q Poly, room []uint64) Poly {
 		case c.terms > 0 && len(image) > c.terms:
 			continue // an unlucky prime
 		case len(image) < c.terms:
-			c = chinese{} // all primes so far were unlucky
+			c = Images{} // all primes so far were unlucky
 		}
 		if lead.IsZero() {
 			lead = leadingCommon(p, q)
@@ -73,7 +69,7 @@ func modularGCD(p, q Poly, room []uint64) Poly {
 		for j, x := range image {
 			image[j] = f.Mul(x, k)
 		}
-		c.add(&f, image)
+		c.Add(&f, image)
 		if !c.looksSmall() {
 			continue // as long as the modulus: not all of it yet
 		}
@@ -97,110 +93,4 @@ func leadingCommon(p, q Poly) Poly {
 	}
 	a, b := p.Leading(), q.Leading()
 	return FromBigs(a.GCD(nil, nil, a.Abs(a), b.Abs(b)))
-}
-
-// chinese is a polynomial known modulo a product of primes.
-type chinese struct {
-	terms, limbs int
-	x            []uint64 // unsigned residues, limbs each
-	modulus      []uint64 // limbs
-}
-
-// bits is a lower bound on the length of the modulus.
-func (c *chinese) bits() int { return 64*(c.limbs-1) + bits.Len64(c.modulus[c.limbs-1]) - 1 }
-
-// looksSmall reports whether the coefficients, taken between minus and plus
-// half the modulus, are likely to be shorter than it by some bits. Nothing
-// depends on the answer but time.
-func (c *chinese) looksSmall() bool {
-	m := c.modulus[c.limbs-1]
-	slack := m>>4 + 1
-	for i := c.limbs - 1; i < len(c.x); i += c.limbs {
-		if x := c.x[i]; x > slack && x < m-slack {
-			return false
-		}
-	}
-	return true
-}
-
-// add takes in the plain residues modulo another prime.
-func (c *chinese) add(f *modp.Field, residues []uint64) {
-	if c.limbs == 0 {
-		c.terms, c.limbs = len(residues), 1
-		c.x = append([]uint64(nil), residues...)
-		c.modulus = []uint64{f.P}
-		return
-	}
-	n := c.limbs + 1
-	x := make([]uint64, c.terms*n)
-	// Residues come multiplied by 2^(−64 limbs); grow undoes that.
-	grow := f.Grow(f.Stored(1), c.limbs)
-	residue := func(x []uint64) uint64 { return f.Mul(f.Image(x), grow) }
-	inverse := f.Inverse(f.Stored(residue(c.modulus)))
-	for i := range c.terms {
-		old, v := c.x[i*c.limbs:(i+1)*c.limbs], x[i*n:(i+1)*n]
-		copy(v, old)
-		// x + modulus·d, d = (residue − x)/modulus
-		d := f.Mul(f.Sub(residues[i], residue(old)), inverse)
-		v[c.limbs] = addProduct(v[:c.limbs], c.modulus, d)
-	}
-	modulus := make([]uint64, n)
-	modulus[c.limbs] = addProduct(modulus[:c.limbs], c.modulus, f.P)
-	c.x, c.limbs, c.modulus = x, n, modulus
-	if modulus[n-1] == 0 { // the top limb is not needed yet
-		c.shrink()
-	}
-}
-
-// shrink drops the top limb, which is 0 everywhere.
-func (c *chinese) shrink() {
-	n := c.limbs - 1
-	for i := range c.terms {
-		copy(c.x[i*n:(i+1)*n], c.x[i*c.limbs:])
-	}
-	c.x, c.modulus, c.limbs = c.x[:c.terms*n], c.modulus[:n], n
-}
-
-// addProduct adds x·d to z, of the same length, and returns the carry.
-func addProduct(z, x []uint64, d uint64) uint64 {
-	var carry uint64
-	for k, u := range x {
-		hi, lo := bits.Mul64(u, d)
-		var c uint64
-		lo, c = bits.Add64(lo, carry, 0)
-		hi += c
-		z[k], c = bits.Add64(z[k], lo, 0)
-		carry = hi + c
-	}
-	return carry
-}
-
-// symmetric returns the polynomial whose coefficients lie between minus and
-// plus half the modulus.
-func (c *chinese) symmetric() Poly {
-	n := c.limbs + 1 // a limb for the sign
-	w := make([]uint64, c.terms*n)
-	half := make([]uint64, c.limbs)
-	for k := range half {
-		half[k] = c.modulus[k] >> 1
-		if k+1 < c.limbs {
-			half[k] |= c.modulus[k+1] << 63
-		}
-	}
-	for i := range c.terms {
-		x, v := c.x[i*c.limbs:(i+1)*c.limbs], w[i*n:(i+1)*n]
-		copy(v, x)
-		var borrow uint64
-		for k := range half { // half − x
-			_, borrow = bits.Sub64(half[k], x[k], borrow)
-		}
-		if borrow != 0 {
-			var b uint64
-			for k := range c.modulus {
-				v[k], b = bits.Sub64(v[k], c.modulus[k], b)
-			}
-			v[c.limbs] -= b
-		}
-	}
-	return trim(w, n)
 }

@@ -18,7 +18,7 @@ func (p Poly) Resultant(q Poly) *big.Int {
 	m, n := p.Degree(), q.Degree()
 	// log2 of (‖p‖₂)^n·(‖q‖₂)^m, rounded up, and one bit for the sign
 	need := n*(p.MaxBitLen()+bits.Len(uint(m+1))/2+1) + m*(q.MaxBitLen()+bits.Len(uint(n+1))/2+1) + 2
-	var c chinese
+	var c Images
 	a, b := make([]uint64, m+1), make([]uint64, n+1)
 	var primes modp.Primes
 	for c.limbs == 0 || c.bits() <= need {
@@ -26,9 +26,18 @@ func (p Poly) Resultant(q Poly) *big.Int {
 		if !storedInto(a, &f, p) || !storedInto(b, &f, q) {
 			continue // the prime divides a leading coefficient
 		}
-		c.add(&f, []uint64{f.Plain(f.Resultant(a, b))})
+		c.Add(&f, []uint64{f.Plain(f.Resultant(a, b))})
 	}
 	return c.symmetric().Coefficient(0)
+}
+
+// Residues returns the stored residues of the coefficients, ascending.
+func (p Poly) Residues(f *modp.Field) []uint64 {
+	out := make([]uint64, p.terms())
+	for i := range out {
+		out[i] = f.StoredResidue(p.at(i))
+	}
+	return out
 }
 
 // storedInto writes the stored residues of the coefficients; it returns false
@@ -52,7 +61,7 @@ func (p Poly) Cofactors(q Poly) (u, v Poly, r *big.Int, ok bool) {
 	if m < 1 || n < 1 || !p.GCD(q).IsOne() {
 		return Poly{}, Poly{}, nil, false
 	}
-	var c chinese
+	var c Images
 	a, b := make([]uint64, m+1), make([]uint64, n+1)
 	var primes modp.Primes
 	for {
@@ -71,7 +80,7 @@ func (p Poly) Cofactors(q Poly) (u, v Poly, r *big.Int, ok bool) {
 		for _, x := range append(append(fu[:n:n], fv[:m]...), f.Stored(1)) {
 			image = append(image, f.Plain(f.Mul(x, res)))
 		}
-		c.add(&f, image)
+		c.Add(&f, image)
 		if !c.looksSmall() {
 			continue
 		}

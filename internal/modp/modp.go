@@ -70,6 +70,25 @@ func (f *Field) Sub(x, y uint64) uint64 {
 	return t + f.P&-borrow
 }
 
+// Add returns x + y.
+func (f *Field) Add(x, y uint64) uint64 {
+	t := x + y
+	if t >= f.P {
+		t -= f.P
+	}
+	return t
+}
+
+// At returns the value at x of the polynomial with the coefficients c, which
+// ascend, all of them stored.
+func (f *Field) At(c []uint64, x uint64) uint64 {
+	var v uint64
+	for i := len(c) - 1; i >= 0; i-- {
+		v = f.Add(f.Mul(v, x), c[i])
+	}
+	return v
+}
+
 // Neg returns −x.
 func (f *Field) Neg(x uint64) uint64 { return f.Sub(0, x) }
 

@@ -1,26 +1,28 @@
 // Package polymatrix solves linear equations whose coefficients are integer
 // polynomials.
 //
-// Everything is done by evaluation and interpolation: at small integers the
-// matrix is one of integers, fraction-free elimination (Bareiss 1968) gives the
-// determinant there, and as many points as the degree bound asks for determine
-// the polynomial (Newton's divided differences, which stay integers).
+// The matrix is taken modulo primes near 2^62 and at as many points as the
+// degree of its determinant can ask for. There it is one of machine words, and
+// sparse elimination is quick: one order of pivots, found by the rule of
+// Markowitz (1957), serves all points and primes. Interpolation and the Chinese
+// remainder theorem put the polynomials together; bounds on the degree and on
+// the coefficients say when they are complete.
 package polymatrix
 
 import (
 	"fmt"
-	"math/big"
-	"slices"
+	"math"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
+	"github.com/qofs/qofs/internal/modp"
 )
 
 // Bounds on the size of a system.
 const (
-	MaxSize   = 256  // rows
-	MaxDegree = 2048 // of the determinant, as the sum of the rows' degrees
-	maxWork   = 1 << 33
+	MaxSize   = 512     // rows
+	MaxDegree = 2048    // of the determinant, by its bound
+	maxWork   = 1 << 31 // multiplications modulo primes
 )
 
 // SingularError tells that the determinant is 0.
@@ -36,228 +38,200 @@ func (e *SingularError) Error() string {
 
 // Solve returns the unknown x[column] of the square system a·x = b as num/den,
 // where den is the determinant of a and num that of a with the column replaced
-// by b (Cramer's rule), so that nothing is cancelled. The errors are
-// *SingularError, and fault.ErrLimit beyond the bounds.
+// by b (Cramer's rule), so that nothing is cancelled. The errors are those of
+// SolveAll.
 func Solve(a [][]intpoly.Poly, b []intpoly.Poly, column int) (num, den intpoly.Poly, err error) {
-	n := len(a)
-	degree, bits := 0, 0
+	nums, den, err := SolveAll(a, [][]intpoly.Poly{b}, []int{column})
+	if err != nil {
+		return num, den, err
+	}
+	return nums[0][0], den, nil
+}
+
+// SolveAll solves a·x = b for several right-hand sides b at once: the unknown
+// x[columns[k]] for the right-hand side r is nums[r][k]/den, where den is the
+// determinant of a and nothing is cancelled. Without right-hand sides it
+// returns the determinant. The errors are *SingularError, and fault.ErrLimit
+// beyond the bounds.
+func SolveAll(a [][]intpoly.Poly, rhs [][]intpoly.Poly, columns []int) (nums [][]intpoly.Poly, den intpoly.Poly, err error) {
+	if len(a) > MaxSize || len(rhs) > MaxSize {
+		return nil, den, fault.ErrLimit
+	}
+	s := newSystem(a, rhs)
+	if s.degree > MaxDegree {
+		return nil, den, fault.ErrLimit
+	}
+	var primes modp.Primes
+	for range attempts {
+		f := primes.Next()
+		p, err := s.plan(&f)
+		if err != nil {
+			return nil, den, err
+		}
+		if s.work(p, 1+len(rhs)*len(columns)) > maxWork {
+			return nil, den, fault.ErrLimit
+		}
+		if p.rank == s.n {
+			return s.reconstruct(p, columns)
+		}
+		if s.vanishes(p) {
+			return nil, den, &SingularError{s.open(&f)}
+		}
+	}
+	return nil, den, fault.ErrLimit
+}
+
+// attempts is how many points are tried for a plan: a point is of no use where
+// a minor that is not 0 vanishes there, with a chance below 2^−40.
+const attempts = 4
+
+// entry is a polynomial of the matrix [a | rhs] that is not 0.
+type entry struct {
+	row, column int
+	poly        intpoly.Poly
+}
+
+// system is [a | rhs], sparse, with bounds on each minor of n rows that has at
+// most one column of rhs.
+type system struct {
+	n, rhs  int
+	entries []entry
+	degree  int // of a minor, at most
+	bits    int // of the absolute values of its coefficients, at most
+}
+
+func newSystem(a, rhs [][]intpoly.Poly) *system {
+	s := &system{n: len(a), rhs: len(rhs)}
 	for i, row := range a {
-		d := max(0, b[i].Degree())
-		bits = max(bits, b[i].MaxBitLen())
-		for _, p := range row {
-			d = max(d, p.Degree())
-			bits = max(bits, p.MaxBitLen())
+		for j, p := range row {
+			s.add(i, j, p)
 		}
-		degree += d
-	}
-	words := n * (bits + 8*(degree/max(n, 1)+1) + 8) / 64
-	if n > MaxSize || degree > MaxDegree || work(degree, n, words) > maxWork {
-		return num, den, fault.ErrLimit
-	}
-	order := unknownLast(n, column)
-	var xs []int64
-	var nums, dens []*big.Int
-	singular := 0
-	for k := int64(0); len(xs) <= degree; k++ {
-		x := k / 2 // 0, −1, 1, −2, 2, …
-		if k%2 == 1 {
-			x = -(k + 1) / 2
+		for r, b := range rhs {
+			s.add(i, s.n+r, b[i])
 		}
-		m := evaluate(a, b, order, x)
-		d, r, ok := eliminate(m)
-		if !ok {
-			if singular++; singular > degree {
-				return num, den, &SingularError{undetermined(a, b, order)}
-			}
-			continue
-		}
-		xs, nums, dens = append(xs, x), append(nums, r), append(dens, d)
 	}
-	return interpolate(xs, nums), interpolate(xs, dens), nil
+	s.bound()
+	return s
 }
 
-// work estimates the word multiplications of a solution.
-func work(degree, n, words int) int64 {
-	return int64(degree+1) * int64(n) * int64(n) * int64(n) / 3 * int64(words+1) * int64(words+1)
-}
-
-// unknownLast returns the columns in order with one of them moved to the end.
-func unknownLast(n, column int) []int {
-	order := make([]int, 0, n)
-	for j := range n {
-		if j != column {
-			order = append(order, j)
-		}
-	}
-	return append(order, column)
-}
-
-// evaluate returns the rows of [a | b] at x, columns in the given order.
-func evaluate(a [][]intpoly.Poly, b []intpoly.Poly, order []int, x int64) [][]*big.Int {
-	at := big.NewInt(x)
-	m := make([][]*big.Int, len(a))
-	for i := range a {
-		m[i] = make([]*big.Int, len(order)+1)
-		for j, c := range order {
-			m[i][j] = a[i][c].AtInt(at)
-		}
-		m[i][len(order)] = b[i].AtInt(at)
-	}
-	return m
-}
-
-// eliminate brings the first columns of m = [a | b] to triangular form and
-// returns det a and the right-hand side of the last row, for which
-// det a·x[last] = r holds; ok is false where the determinant is 0. The first n
-// − 1 columns may be singular while a is not; row exchanges see to that.
-func eliminate(m [][]*big.Int) (det, r *big.Int, ok bool) {
-	n := len(m)
-	if n == 0 {
-		return big.NewInt(1), new(big.Int), true
-	}
-	previous, negative := big.NewInt(1), false
-	var t big.Int
-	for k := range n {
-		p := pivotRow(m, k)
-		if p < 0 {
-			return nil, nil, false
-		}
-		if p != k {
-			m[p], m[k] = m[k], m[p]
-			negative = !negative
-		}
-		pivot := m[k][k]
-		for i := k + 1; i < n; i++ {
-			factor := m[i][k]
-			for j := k + 1; j <= n; j++ {
-				v := m[i][j]
-				v.Mul(v, pivot)
-				if factor.Sign() != 0 && m[k][j].Sign() != 0 {
-					v.Sub(v, t.Mul(factor, m[k][j]))
-				}
-				if k > 0 && v.Sign() != 0 {
-					v.Quo(v, previous) // exact (Bareiss)
-				}
-			}
-		}
-		previous = pivot
-	}
-	det, r = m[n-1][n-1], m[n-1][n]
-	if negative {
-		det, r = det.Neg(det), r.Neg(r)
-	}
-	return det, r, true
-}
-
-// pivotRow returns the row from k on whose entry in column k is the smallest
-// that is not 0, or −1.
-func pivotRow(m [][]*big.Int, k int) int {
-	best := -1
-	for i := k; i < len(m); i++ {
-		if m[i][k].Sign() != 0 && (best < 0 || m[i][k].CmpAbs(m[best][k]) < 0) {
-			best = i
-		}
-	}
-	return best
-}
-
-// undetermined returns the columns whose unknowns take part in the null space
-// of a, judged at the point, of a few, where the rank is the highest.
-func undetermined(a [][]intpoly.Poly, b []intpoly.Poly, order []int) []int {
-	var best []int
-	rank := -1
-	for _, x := range []int64{7919, 104729, 1299709} {
-		m := evaluate(a, b, order, x)
-		if r, open := nullSpace(m, len(order)); r > rank {
-			rank, best = r, open
-		}
-	}
-	out := make([]int, len(best))
-	for i, j := range best {
-		out[i] = order[j]
-	}
-	slices.Sort(out)
-	return out
-}
-
-// nullSpace brings the first n columns of m to reduced form over ℚ and returns
-// their rank and the columns that are free or depend on a free one.
-func nullSpace(m [][]*big.Int, n int) (rank int, open []int) {
-	rows := make([][]*big.Rat, len(m))
-	for i := range m {
-		rows[i] = make([]*big.Rat, n)
-		for j := range n {
-			rows[i][j] = new(big.Rat).SetInt(m[i][j])
-		}
-	}
-	pivots := make([]int, 0, n)
-	for j := range n {
-		p := slices.IndexFunc(rows[rank:], func(r []*big.Rat) bool { return r[j].Sign() != 0 })
-		if p < 0 {
-			continue
-		}
-		rows[rank], rows[rank+p] = rows[rank+p], rows[rank]
-		reduce(rows, rank, j)
-		pivots = append(pivots, j)
-		rank++
-		if rank == len(rows) {
-			break
-		}
-	}
-	for j := range n {
-		i := slices.Index(pivots, j)
-		isOpen := i < 0
-		for k := range n {
-			isOpen = isOpen || k != j && !slices.Contains(pivots, k) && rows[i][k].Sign() != 0
-		}
-		if isOpen {
-			open = append(open, j)
-		}
-	}
-	return rank, open
-}
-
-// reduce makes the pivot (i, j) 1 and clears the rest of its column.
-func reduce(rows [][]*big.Rat, i, j int) {
-	inverse := new(big.Rat).Inv(rows[i][j])
-	for k := range rows[i] {
-		rows[i][k].Mul(rows[i][k], inverse)
-	}
-	var t big.Rat
-	for l := range rows {
-		if l == i || rows[l][j].Sign() == 0 {
-			continue
-		}
-		factor := new(big.Rat).Set(rows[l][j])
-		for k := range rows[l] {
-			rows[l][k].Sub(rows[l][k], t.Mul(factor, rows[i][k]))
-		}
+func (s *system) add(i, j int, p intpoly.Poly) {
+	if !p.IsZero() {
+		s.entries = append(s.entries, entry{i, j, p})
 	}
 }
 
-// interpolate returns the polynomial of degree below len(xs) with the values
-// ys, which is known to have integer coefficients. It overwrites ys.
-func interpolate(xs []int64, ys []*big.Int) intpoly.Poly {
-	n := len(xs)
-	var d big.Int
-	for k := 1; k < n; k++ {
-		for i := n - 1; i >= k; i-- {
-			ys[i].Sub(ys[i], ys[i-1])
-			ys[i].Quo(ys[i], d.SetInt64(xs[i]-xs[i-k]))
+// bound sets degree and bits. A minor is a sum over permutations of products
+// with one entry from each row and each column: its degree is at most the sum of
+// the largest degrees of the rows, and likewise of the columns; the sum of the
+// absolute values of its coefficients is at most the product of the sums of
+// those of the rows, and likewise of the columns.
+func (s *system) bound() {
+	rows, columns := make([]size, s.n), make([]size, s.n+s.rhs)
+	for _, e := range s.entries {
+		rows[e.row].add(e.poly)
+		columns[e.column].add(e.poly)
+	}
+	byRows := total(rows)
+	byColumns := total(columns[:s.n])
+	if s.rhs > 0 && s.n > 0 { // a column of rhs in the place of any other one
+		least, most := size{degree: math.MaxInt, log: math.Inf(1)}, size{}
+		for _, c := range columns[:s.n] {
+			least = size{min(least.degree, c.degree), min(least.log, c.log)}
+		}
+		for _, c := range columns[s.n:] {
+			most = size{max(most.degree, c.degree), max(most.log, c.log)}
+		}
+		byColumns = size{byColumns.degree + max(0, most.degree-least.degree), byColumns.log + max(0, most.log-least.log)}
+	}
+	s.degree = min(byRows.degree, byColumns.degree)
+	s.bits = int(min(byRows.log, byColumns.log)) + 2
+}
+
+// size is a degree, and an upper bound on log₂(1 + the sum of the absolute
+// values of the coefficients).
+type size struct {
+	degree int
+	log    float64
+}
+
+// add takes in an entry. Sums of exponents are rounded up by far more than
+// float64 loses.
+func (z *size) add(p intpoly.Poly) {
+	z.degree = max(z.degree, p.Degree())
+	l := float64(p.MaxBitLen()) + math.Log2(float64(p.Degree()+1))
+	larger, smaller := max(z.log, l), min(z.log, l)
+	z.log = larger + math.Log2(1+math.Exp2(smaller-larger)) + 1e-9
+}
+
+func total(sizes []size) (sum size) {
+	for _, z := range sizes {
+		sum.degree += z.degree
+		sum.log += z.log
+	}
+	return sum
+}
+
+// primes is how many primes are needed for the sign and the bits of a minor.
+func (s *system) primes() int { return (s.bits+1)/61 + 1 }
+
+// work estimates the multiplications of a solution.
+func (s *system) work(p *plan, results int) float64 {
+	block := s.block()
+	points, primes := float64((s.degree+block)/block*block), float64(s.primes())
+	once := float64(p.operations)
+	for _, e := range s.entries {
+		once += float64(e.poly.Degree() + 1)
+	}
+	each := points*once + 2*points*points*float64(results)
+	return primes*each + primes*primes*points*float64(results)
+}
+
+// reconstruct returns numerators and determinant.
+func (s *system) reconstruct(p *plan, columns []int) (nums [][]intpoly.Poly, den intpoly.Poly, err error) {
+	terms, results := s.degree+1, 1+s.rhs*len(columns)
+	var all intpoly.Images
+	var primes modp.Primes
+	for used, tried := 0, 0; used < s.primes(); tried++ {
+		if tried > 2*s.primes()+64 {
+			return nil, den, fault.ErrLimit // each prime fails with a chance below 2^−40
+		}
+		f := primes.Next()
+		e := s.evaluator(p, &f)
+		values := make([]uint64, results*terms)
+		if !e.solutions(values, columns) {
+			continue // a pivot vanishes
+		}
+		newton := newInterpolation(&f, terms)
+		for k := range results {
+			newton.interpolate(values[k*terms : (k+1)*terms])
+		}
+		all.Add(&f, values)
+		used++
+	}
+	nums = make([][]intpoly.Poly, s.rhs)
+	for r := range nums {
+		for k := range columns {
+			at := (1 + r*len(columns) + k) * terms
+			nums[r] = append(nums[r], all.Poly(at, at+terms))
 		}
 	}
-	c := make([]*big.Int, n)
-	for i := range c {
-		c[i] = new(big.Int)
-	}
-	// Horner's rule on the Newton form: c ← c·(x − x_k) + y_k.
-	var t big.Int
-	for k := n - 1; k >= 0; k-- {
-		x := d.SetInt64(xs[k])
-		for i := n - 1; i > 0; i-- {
-			c[i].Sub(c[i-1], t.Mul(x, c[i]))
+	return nums, all.Poly(0, terms), nil
+}
+
+// vanishes reports whether all that a plan of a lower rank leaves is 0: it is at
+// as many points modulo as many primes as its degree and its coefficients can
+// ask for, which proves it.
+func (s *system) vanishes(p *plan) bool {
+	var primes modp.Primes
+	for used, tried := 0, 0; used < s.primes(); tried++ {
+		f := primes.Next()
+		zero, ok := s.evaluator(p, &f).restIsZero()
+		if ok && !zero || tried > 2*s.primes()+64 {
+			return false
 		}
-		c[0].Sub(ys[k], t.Mul(x, c[0]))
+		if ok {
+			used++
+		}
 	}
-	return intpoly.FromBigs(c...)
+	return true
 }
