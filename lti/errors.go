@@ -73,6 +73,7 @@ type DeterminacyError struct {
 	Equations int      // how many there are
 	Unknowns  []string // the signals that are neither the input nor held at 0
 	Open      []string // those that are not determined, where that can be told
+	Dependent []int    // numbers of the equations, from 1, that repeat or contradict each other, where that can be told
 	Reason    string
 }
 

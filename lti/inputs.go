@@ -3,7 +3,6 @@ package lti
 import (
 	"fmt"
 	"slices"
-	"strings"
 )
 
 // determination is how strongly the form of the equations says that a signal is
@@ -45,10 +44,11 @@ func (s *System) determinations() []determination {
 }
 
 // unknowns returns the signals that the equations must determine: all but the
-// input, those held at 0, and those in no equation.
-func (s *System) unknowns(input, output int, zero []int) ([]int, error) {
+// inputs, those held at 0, and those in no equation. The call is what a proposal
+// of further inputs begins with.
+func (s *System) unknowns(inputs, outputs, zero []int, call string) ([]int, error) {
 	signs := s.determinations()
-	for _, i := range []int{input, output} {
+	for _, i := range slices.Concat(inputs, outputs) {
 		if signs[i] == isAbsent {
 			return nil, &DeterminacyError{Equations: len(s.rows), Open: []string{s.signals[i].Name},
 				Reason: fmt.Sprintf("%s stands in no equation", s.signals[i].Name)}
@@ -56,13 +56,15 @@ func (s *System) unknowns(input, output int, zero []int) ([]int, error) {
 	}
 	var rest []int
 	for i := range s.signals {
-		if i != input && !slices.Contains(zero, i) && signs[i] != isAbsent {
+		if !slices.Contains(inputs, i) && !slices.Contains(zero, i) && signs[i] != isAbsent {
 			rest = append(rest, i)
 		}
 	}
 	if len(rest) != len(s.rows) {
-		signs[output] = isDifferentiated + 1 // never proposed as an input
-		return nil, s.miscounted(input, output, rest, zero, signs)
+		for _, i := range outputs {
+			signs[i] = isDifferentiated + 1 // never proposed as an input
+		}
+		return nil, s.miscounted(inputs, rest, zero, signs, call)
 	}
 	return rest, nil
 }
@@ -70,21 +72,30 @@ func (s *System) unknowns(input, output int, zero []int) ([]int, error) {
 // miscounted explains that the number of equations is not that of unknowns.
 // Which further signals are inputs is asked, not guessed; the proposal names
 // those that the form of the equations says the least about.
-func (s *System) miscounted(input, output int, unknowns, zero []int, signs []determination) error {
+func (s *System) miscounted(inputs, unknowns, zero []int, signs []determination, call string) error {
 	e := &DeterminacyError{Equations: len(s.rows), Unknowns: s.namesOf(unknowns)}
-	counts := fmt.Sprintf("%d equations for %d unknown signals (%s) with %s as the input",
-		len(s.rows), len(unknowns), strings.Join(e.Unknowns, ", "), s.signals[input].Name)
+	counts := fmt.Sprintf("%s%s for %s (%s)", s.with(inputs), counted(len(s.rows), "equation"),
+		counted(len(unknowns), "unknown signal"), shortened(e.Unknowns))
 	missing := len(unknowns) - len(s.rows)
 	if missing < 0 {
-		e.Reason = fmt.Sprintf("%s: too many; leave %d out, or hold fewer signals at 0", counts, -missing)
+		var all []int
+		for n := range s.rows {
+			all = append(all, n+1)
+		}
+		e.Reason = fmt.Sprintf("%s: too many; leave %d out, or hold fewer signals at 0%s", counts, -missing, s.twice(all))
 		return e
 	}
 	weakest := slices.Clone(unknowns)
 	slices.SortStableFunc(weakest, func(i, j int) int { return int(signs[i] - signs[j]) })
-	call := fmt.Sprintf("TransferFunction(%q, %q", s.signals[input].Name, s.signals[output].Name)
-	for _, name := range s.namesOf(append(slices.Clone(zero), weakest[:missing]...)) {
-		call += fmt.Sprintf(", %q", name)
-	}
-	e.Reason = fmt.Sprintf("%s: name %d further inputs to hold at 0, perhaps %s), or add equations", counts, missing, call)
+	further := s.namesOf(append(slices.Clone(zero), weakest[:missing]...))
+	e.Reason = fmt.Sprintf("%s: name %s to hold at 0, perhaps %s, %s), or add equations", counts, counted(missing, "further input"), call, quoted(further))
 	return e
+}
+
+// counted writes "1 equation" or "2 equations".
+func counted(n int, what string) string {
+	if n != 1 {
+		what += "s"
+	}
+	return fmt.Sprintf("%d %s", n, what)
 }

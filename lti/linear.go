@@ -3,8 +3,6 @@ package lti
 import (
 	"fmt"
 	"math/big"
-	"slices"
-	"strings"
 
 	"github.com/qofs/qofs/units"
 )
@@ -104,7 +102,7 @@ func (e *evaluator) name(n *node) (value, bool) {
 	if len(e.faults) >= maxFaults {
 		return value{}, false
 	}
-	return e.fail(n, "no signal or constant has this name; declared are %s", e.system.names())
+	return e.fail(n, "no signal or constant has this name%s; declared are %s", e.system.advice(n.name), e.system.names())
 }
 
 // inRadians writes a quantity with cycles and degrees turned into radians, to
@@ -414,23 +412,4 @@ func (e *evaluator) homogeneous(sum value, good []term) (row, bool) {
 		return row{}, false
 	}
 	return out, true
-}
-
-// names lists what is declared, shortened.
-func (s *System) names() string {
-	var out []string
-	for _, x := range s.signals {
-		out = append(out, x.Name)
-	}
-	for _, x := range s.constants {
-		out = append(out, x.Name)
-	}
-	slices.Sort(out)
-	if len(out) > 12 {
-		out = append(out[:12], "…")
-	}
-	if len(out) == 0 {
-		return "none"
-	}
-	return strings.Join(out, ", ")
 }

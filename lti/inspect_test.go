@@ -1,0 +1,115 @@
+package lti_test
+
+import (
+	"fmt"
+	"math"
+	"math/big"
+	"math/cmplx"
+	"strings"
+	"testing"
+
+	"github.com/qofs/qofs/lti"
+	"github.com/qofs/qofs/poly"
+	"github.com/qofs/qofs/tf"
+)
+
+func TestInspectHidden(t *testing.T) {
+	for _, c := range []struct {
+		text   string
+		hidden string
+		counts poly.Counts
+		says   string
+	}{
+		{"(s - 1)/((s - 1) (s + 2)) [V -> mm]", "s - 1", poly.Counts{Outside: 1}, "hidden: s - 1 cancels; unstable, 1 of 1"},
+		{"(s + 3)^2 (s - 1)/((s + 3)^2 (s + 2))", "(s + 3)^2", poly.Counts{Inside: 2}, "cancels; stable, all 2"},
+		{"s (s^2 + 4)/(s (s^2 + 4) (s - 2))", "s^3 + 4 s", poly.Counts{On: 3}, "3 of 3 on the imaginary axis"},
+		{"1/(s + 2) [V -> mm]", "1", poly.Counts{}, "from V to mm, in mm/V\norder 1, with 0 zeros in lowest terms\npoles: stable, all 1 to the left of the imaginary axis\nhidden: nothing cancels"},
+		{"0/(s - 2)", "s - 2", poly.Counts{Outside: 1}, "poles: none"},
+		{"(s^2 + 1)/(2 s + 3)", "1", poly.Counts{}, "higher by 1"},
+		{"exp(-180 s) 1/(s - 3)", "1", poly.Counts{}, "dead time 180 s\npoles: unstable, 1 of 1"},
+	} {
+		x, err := lti.Inspect(tf.MustParse(c.text), nil)
+		if err != nil || !x.Hidden.Monic().Equal(poly.MustParse(c.hidden).Monic()) || x.HiddenModes != c.counts || !strings.Contains(x.String(), c.says) {
+			t.Errorf("%s: %v, %v, want %q and %q", c.text, x, err, c.hidden, c.says)
+		}
+		back, err := tf.New(x.Reduced.Numerator().Mul(x.Hidden), x.Reduced.Denominator().Mul(x.Hidden))
+		if err == nil {
+			back, err = back.WithSignals(x.Function.Input(), x.Function.Output())
+		}
+		if err == nil {
+			back, err = back.WithDeadTime(x.Function.DeadTime())
+		}
+		if err != nil || !back.Equal(x.Function) {
+			t.Errorf("%s: the reduced function times the factor is %v, %v", c.text, back, err)
+		}
+	}
+}
+
+// Distances by hand, from rational roots and from the quadratic formula.
+func TestInspectNear(t *testing.T) {
+	for _, c := range []struct {
+		text     string
+		fraction *big.Rat
+		want     []float64
+	}{
+		{"(s + 1.01)/((s + 1) (s + 5))", big.NewRat(1, 50), []float64{0.01 / 1.01}},
+		{"(s + 1.01)/((s + 1) (s + 5))", big.NewRat(1, 101), nil}, // exactly at the fraction
+		{"(s + 1.01)/((s + 1) (s + 5))", big.NewRat(1, 100), []float64{0.01 / 1.01}},
+		{"(s + 1.01)/((s + 1) (s + 5))", big.NewRat(5, 6), []float64{3.99 / 5, 0.01 / 1.01}},
+		{"s/(s + 1e-9)", big.NewRat(1, 1), nil},
+		{"s/(s + 1e-9)", big.NewRat(11, 10), []float64{1}},
+		{"(s + 1)/(s + 1 - 1e-100)", big.NewRat(1, 50), []float64{1e-100}},
+		// −1 ± i and −1 ± 1.001 i: 0.001/√(1 + 1.001²), told once
+		{"(s^2 + 2 s + 2.002001)/(s^2 + 2 s + 2)", big.NewRat(1, 50), []float64{0.001 / math.Sqrt(1+1.001*1.001)}},
+		// −1 ± √2 against −1 ± √2.002
+		{"(s^2 + 2 s - 1.002)/(s^2 + 2 s - 1)", big.NewRat(1, 100), []float64{(math.Sqrt(2.002) - math.Sqrt2) / (1 + math.Sqrt(2.002)), (math.Sqrt(2.002) - math.Sqrt2) / (math.Sqrt(2.002) - 1)}},
+		{"1/(s + 1)", big.NewRat(1, 1), nil},
+		{"0/(s + 1)", big.NewRat(1, 1), nil},
+	} {
+		x, err := lti.Inspect(tf.MustParse(c.text), c.fraction)
+		if err != nil || len(x.Near) != len(c.want) {
+			t.Errorf("%s: %v, %v, want %v", c.text, x.Near, err, c.want)
+			continue
+		}
+		for i, n := range x.Near {
+			if math.Abs(n.Distance-c.want[i]) > 1e-12*c.want[i] {
+				t.Errorf("%s: %v, want %v", c.text, n.Distance, c.want[i])
+			}
+			if d := cmplx.Abs(n.Pole.Value - n.Zero.Value); d > 1.01*c.want[i]*max(cmplx.Abs(n.Pole.Value), cmplx.Abs(n.Zero.Value)) {
+				t.Errorf("%s: %v and %v are %v apart", c.text, n.Pole, n.Zero, d)
+			}
+		}
+	}
+}
+
+// A bench whose two weights are alike on equal mounts: moved together, they hide
+// the mode in which they swing against each other. With one weight heavier by
+// 1 kg the mode is there, and a zero is close to it.
+func ExampleInspect() {
+	bench := lti.NewEquations()
+	for _, name := range []string{"floor", "left", "right"} {
+		bench.Signal(name, "mm")
+	}
+	bench.Constant("m1", "100 kg")
+	bench.Constant("m2", "100 kg")
+	bench.Constant("c", "320 N*s/m")
+	bench.Constant("k", "25 kN/m")
+	bench.Constant("link", "4 kN/m")
+	bench.Equation("m1 left'' = c (floor' - left') + k (floor - left) + link (right - left)")
+	bench.Equation("m2 right'' = c (floor' - right') + k (floor - right) + link (left - right)")
+	alike := tf.Must(bench.Build())
+	for _, system := range []*lti.System{alike, tf.Must(alike.WithConstant("m2", "101 kg"))} {
+		g := tf.Must(system.TransferFunction("floor", "left"))
+		fmt.Println(tf.Must(lti.Inspect(g, big.NewRat(1, 50))))
+	}
+	// Output:
+	// from floor: mm to left: mm, a pure number
+	// order 2, with 1 zero in lowest terms
+	// poles: stable, all 2 to the left of the imaginary axis
+	// hidden: 5 s^2 + 16 s + 1650 cancels; stable, all 2 to the left of the imaginary axis
+	// from floor: mm to left: mm, a pure number
+	// order 4, with 3 zeros in lowest terms
+	// poles: stable, all 4 to the left of the imaginary axis
+	// hidden: nothing cancels
+	// nearly cancelled: the pole at -1.592 ± 18.05i rad/s by the zero at -1.584 ± 18.01i rad/s, which is off by 0.25 %
+}
