@@ -16,6 +16,11 @@ type axisTerm struct{ even, evenLow, evenSize, odd, oddLow, oddSize float64 }
 
 // axisRatio evaluates a ratio of polynomials on the imaginary axis in float64
 // with compensation. It is immutable.
+//
+// An error of an operation that must be known exactly is taken by math.FMA; what
+// only counts to first order is written x*y + z, which costs half as much where
+// Go looks for the instruction at run time, and which the compiler may fuse
+// elsewhere: the bounds hold either way.
 type axisRatio struct {
 	num, den []axisTerm // highest power first
 	unit     float64    // a power of two: ω is evaluated as ω·unit
@@ -58,9 +63,9 @@ func newAxisRatio(f ratfun.Func) (r *axisRatio, ok bool) {
 	r.factor = math.Ldexp(1, e-d)
 	m := float64(max(len(r.num), len(r.den)))
 	// 1.01 for terms of higher order and the rounding of the bounds themselves
-	horner := 6*m*(2*m+5) + 8*m + 10
-	r.bound = 1.01 * 0x1p-106 * (horner + 40*m + 64)
-	r.boundK = 1.01 * 0x1p-106 * (5*m + 8) * (10*m + 12)
+	horner := 6*m*(3*m+7) + 10*m + 14
+	r.bound = 1.01 * 0x1p-106 * (horner + 60*m + 96)
+	r.boundK = 1.01 * 0x1p-106 * (5*m + 10) * (10*m + 16)
 	r.boundSquare = 1.01 * 0x1p-106 * (2*horner + 25*m*m + 80*m)
 	return r, true
 }
@@ -119,8 +124,8 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 		t = &rest[0]
 		p := float64(e * wh)
 		s, sLow := split(dd.TwoSum(p, t.even))
-		eLow = math.FMA(eLow, wh, math.FMA(e, wl, math.FMA(e, wh, -p))+(sLow+t.evenLow))
-		eSize = math.FMA(eSize, wa, t.evenSize)
+		eLow = eLow*wh + ((e*wl + math.FMA(e, wh, -p)) + (sLow + t.evenLow))
+		eSize = eSize*wa + t.evenSize
 		e, o, oLow, oSize = s, t.odd, t.oddLow, t.oddSize
 		rest = rest[1:]
 	}
@@ -132,8 +137,8 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 		s := p + t.even
 		v := s - p
 		sLow := (p - (s - v)) + (t.even - v)
-		eLow = math.FMA(eLow, wh, math.FMA(e, wl, pLow)+(sLow+t.evenLow))
-		eSize = math.FMA(eSize, wa, t.evenSize)
+		eLow = eLow*wh + ((e*wl + pLow) + (sLow + t.evenLow))
+		eSize = eSize*wa + t.evenSize
 		e = s
 
 		p = float64(o * wh)
@@ -141,12 +146,12 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 		s = p + t.odd
 		v = s - p
 		sLow = (p - (s - v)) + (t.odd - v)
-		oLow = math.FMA(oLow, wh, math.FMA(o, wl, pLow)+(sLow+t.oddLow))
-		oSize = math.FMA(oSize, wa, t.oddSize)
+		oLow = oLow*wh + ((o*wl + pLow) + (sLow + t.oddLow))
+		oSize = oSize*wa + t.oddSize
 		o = s
 	}
 	im = float64(o * omega)
-	return e, eLow, im, math.FMA(oLow, omega, math.FMA(o, omega, -im)), math.FMA(oSize, math.Abs(omega), eSize)
+	return e, eLow, im, oLow*omega + math.FMA(o, omega, -im), oSize*math.Abs(omega) + eSize
 }
 
 // split returns the two parts of a double-double.
@@ -161,23 +166,23 @@ func split(x dd.DD) (hi, lo float64) { return x.Hi, x.Lo }
 // Error bound. Let u = 2^−53 and let m be the number of steps of the Horner
 // scheme. The local corrections of step k are at most u·(2|s_(k+1) w| + |s_k| +
 // |c_k|), so that all of them together are at most 4 m u·p̃, where p̃ ("size")
-// has all terms by absolute value; they are added up with at most 2m + 5
+// has all terms by absolute value; they are added up with at most 3m + 7
 // roundings each, the power of w instead of wh included. Hence
 //
-//	|p − (s + sLow)| ≤ 4 m (2m + 5) u² p̃, |sLow| ≤ 5 m u p̃.
+//	|p − (s + sLow)| ≤ 4 m (3m + 7) u² p̃, |sLow| ≤ 5 m u p̃.
 //
 // The second half of a coefficient leaves u² p̃, and the product with ω adds
-// (8m + 10) u² p̃: together at most K u² p̃ with K = 6 m (2m + 5) + 8 m + 10. Let
+// (10m + 14) u² p̃: together at most K u² p̃ with K = 6 m (3m + 7) + 10 m + 14. Let
 //
 //	e = (size(num) + |q|·size(den))/|den|, k = size(den)/|den| ≥ 1.
 //
-// The plain quotient is off by (5m + 8) u e at most, and so is the correction.
+// The plain quotient is off by (5m + 10) u e at most, and so is the correction.
 // The division of the residual by the high parts of den alone and its roundings
-// make it wrong by (10m + 12) u k of itself; the low terms in the residual add up
-// with (40m + 64) u² e; and the errors of num and den themselves count K u² e. So
+// make it wrong by (10m + 16) u k of itself; the low terms in the residual add up
+// with (60m + 96) u² e; and the errors of num and den themselves count K u² e. So
 // the corrected quotient is off by at most
 //
-//	u² e·(K + 40 m + 64 + (5m + 8)(10m + 12) k).
+//	u² e·(K + 60 m + 96 + (5m + 10)(10m + 16) k).
 //
 // Underflow adds nothing that counts. An operation that underflows is off by
 // 2^−1074, which later steps multiply by |w|^k. Where |w| ≤ 1 that stays below
@@ -197,24 +202,24 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	if !(above >= minSize && below >= minSize && above+below <= maxSize) {
 		return 0, false, false
 	}
-	inverse := 1 / math.FMA(c, c, float64(d*d))
+	inverse := 1 / (c*c + d*d)
 	reciprocal := (math.Abs(c) + math.Abs(d)) * inverse // ≥ |den|/|den|²
-	k := float64(below * reciprocal)
+	k := below * reciprocal
 	if !(k <= 0x1p20) { // den may be 0
 		return 0, false, false
 	}
-	x := float64(math.FMA(a, c, float64(b*d)) * inverse)
-	y := float64(math.FMA(b, c, -float64(a*d)) * inverse)
+	x := float64((a*c + b*d) * inverse)
+	y := float64((b*c - a*d) * inverse)
 	// a − x·c + y·d and b − y·c − x·d, where both are small
 	xc, xd, yc, yd := float64(x*c), float64(x*d), float64(y*c), float64(y*d)
 	re, reLow := split(dd.TwoSum(a, -xc))
 	im, imLow := split(dd.TwoSum(b, -yc))
-	restRe := (re + yd) + math.FMA(y, dLow, math.FMA(-x, cLow, reLow+aLow+(math.FMA(-x, c, xc)+math.FMA(y, d, -yd))))
-	restIm := (im - xd) + math.FMA(-x, dLow, math.FMA(-y, cLow, imLow+bLow+(math.FMA(-y, c, yc)+math.FMA(-x, d, xd))))
-	x, xLow := split(dd.TwoSum(x, float64(math.FMA(restRe, c, float64(restIm*d))*inverse)))
-	y, yLow := split(dd.TwoSum(y, float64(math.FMA(restIm, c, -float64(restRe*d))*inverse)))
-	e := math.FMA(math.Abs(x)+math.Abs(y), below, above) * reciprocal
-	off := float64(e * math.FMA(k, r.boundK, r.bound))
+	restRe := (re + yd) + ((y*dLow - x*cLow) + ((reLow + aLow) + (math.FMA(y, d, -yd) - math.FMA(x, c, -xc))))
+	restIm := (im - xd) + (((imLow + bLow) - (math.FMA(y, c, -yc) + math.FMA(x, d, -xd))) - (x*dLow + y*cLow))
+	x, xLow := split(dd.TwoSum(x, float64((restRe*c+restIm*d)*inverse)))
+	y, yLow := split(dd.TwoSum(y, float64((restIm*c-restRe*d)*inverse)))
+	e := ((math.Abs(x)+math.Abs(y))*below + above) * reciprocal
+	off := float64(e * (k*r.boundK + r.bound))
 	// Both ends round alike; then they round to x, which is fl(x + xLow).
 	reOK = x+(xLow+off) == x+(xLow-off)
 	imOK = y+(yLow+off) == y+(yLow-off)
