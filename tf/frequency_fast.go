@@ -118,7 +118,7 @@ func evaluate(terms []axisTerm, omega, wh, wl float64) (re, reLow, im, imLow, si
 	t := &terms[0]
 	e, eLow, eSize := t.even, t.evenLow, t.evenSize
 	o, oLow, oSize := t.odd, t.oddLow, t.oddSize
-	wa := math.Abs(wh)
+	wa := -wh
 	rest := terms[1:]
 	if o == 0 && len(rest) > 0 { // an even degree: the odd part begins later
 		t = &rest[0]
@@ -192,10 +192,10 @@ func split(x dd.DD) (hi, lo float64) { return x.Hi, x.Lo }
 // test of its rounding is far from underflow.
 func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	omega *= r.unit
-	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
+	w := float64(omega * omega)
+	if !(w >= minSize*minSize && w <= maxSize*maxSize) {
 		return 0, false, false
 	}
-	w := float64(omega * omega)
 	wl := -math.FMA(omega, omega, -w)
 	a, aLow, b, bLow, above := evaluate(r.num, omega, -w, wl)
 	c, cLow, d, dLow, below := evaluate(r.den, omega, -w, wl)
@@ -203,7 +203,7 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 		return 0, false, false
 	}
 	inverse := 1 / (c*c + d*d)
-	reciprocal := (math.Abs(c) + math.Abs(d)) * inverse // ≥ |den|/|den|²
+	reciprocal := math.Sqrt(inverse) // 1/|den|
 	k := below * reciprocal
 	if !(k <= 0x1p20) { // den may be 0
 		return 0, false, false
@@ -218,13 +218,19 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 	restIm := (im - xd) + (((imLow + bLow) - (math.FMA(y, c, -yc) + math.FMA(x, d, -xd))) - (x*dLow + y*cLow))
 	x, xLow := split(dd.TwoSum(x, float64((restRe*c+restIm*d)*inverse)))
 	y, yLow := split(dd.TwoSum(y, float64((restIm*c-restRe*d)*inverse)))
-	e := ((math.Abs(x)+math.Abs(y))*below + above) * reciprocal
-	off := float64(e * (k*r.boundK + r.bound))
-	// Both ends round alike; then they round to x, which is fl(x + xLow).
-	reOK = x+(xLow+off) == x+(xLow-off)
-	imOK = y+(yLow+off) == y+(yLow-off)
+	scale := reciprocal * (k*r.boundK + r.bound)
+	off := (above + above*k) * scale // as |q| ≤ size(num)/|den|
+	reOK, imOK = rounds(x, xLow, off), rounds(y, yLow, off)
+	if !(reOK && imOK) {
+		off = (above + (math.Abs(x)+math.Abs(y))*below) * scale
+		reOK, imOK = rounds(x, xLow, off), rounds(y, yLow, off)
+	}
 	return complex(x*r.factor, y*r.factor), reOK, imOK
 }
+
+// rounds reports whether all numbers within off of x + xLow round to x, which is
+// fl(x + xLow): both ends do.
+func rounds(x, xLow, off float64) bool { return x+(xLow+off) == x+(xLow-off) }
 
 // magnitude returns the absolute value at jω; ok tells that it is certainly
 // correctly rounded.
@@ -236,10 +242,10 @@ func (r *axisRatio) value(omega float64) (v complex128, reOK, imOK bool) {
 // itself, and a square root halves it all.
 func (r *axisRatio) magnitude(omega float64) (v float64, ok bool) {
 	omega *= r.unit
-	if x := math.Abs(omega); !(x >= minSize && x <= maxSize) {
+	w := float64(omega * omega)
+	if !(w >= minSize*minSize && w <= maxSize*maxSize) {
 		return 0, false
 	}
-	w := float64(omega * omega)
 	wl := -math.FMA(omega, omega, -w)
 	above, aboveLow, sizeAbove := squares(evaluate(r.num, omega, -w, wl))
 	below, belowLow, sizeBelow := squares(evaluate(r.den, omega, -w, wl))
