@@ -79,3 +79,24 @@ type DeterminacyError struct {
 
 // Error says what is too many, too few or open, and what to do.
 func (e *DeterminacyError) Error() string { return e.Reason }
+
+// InitialValueError tells what is wrong with an initial value, or which are
+// missing.
+type InitialValueError struct {
+	Signal   string   // as it was given; empty where values are missing
+	Quantity string   // as it was given
+	Missing  []string // signals and derivatives whose values would suffice
+	Reason   string
+	Err      error // the error behind it, or nil
+}
+
+// Error names the value and the reason.
+func (e *InitialValueError) Error() string {
+	if e.Signal == "" {
+		return "initial values: " + e.Reason
+	}
+	return fmt.Sprintf("initial value %s = %s: %s", lex.Excerpt(e.Signal, 0), lex.Excerpt(e.Quantity, 0), e.Reason)
+}
+
+// Unwrap returns the error behind the fault.
+func (e *InitialValueError) Unwrap() error { return e.Err }

@@ -3,6 +3,7 @@ package lti
 import (
 	"fmt"
 	"slices"
+	"strings"
 )
 
 // determination is how strongly the form of the equations says that a signal is
@@ -44,8 +45,8 @@ func (s *System) determinations() []determination {
 }
 
 // unknowns returns the signals that the equations must determine: all but the
-// inputs, those held at 0, and those in no equation. The call is what a proposal
-// of further inputs begins with.
+// inputs, those held at 0, and those in no equation. A proposal of further inputs
+// is the call with their names in the place of %s.
 func (s *System) unknowns(inputs, outputs, zero []int, call string) ([]int, error) {
 	signs := s.determinations()
 	for _, i := range slices.Concat(inputs, outputs) {
@@ -88,7 +89,7 @@ func (s *System) miscounted(inputs, unknowns, zero []int, signs []determination,
 	weakest := slices.Clone(unknowns)
 	slices.SortStableFunc(weakest, func(i, j int) int { return int(signs[i] - signs[j]) })
 	further := s.namesOf(append(slices.Clone(zero), weakest[:missing]...))
-	e.Reason = fmt.Sprintf("%s: name %s to hold at 0, perhaps %s, %s), or add equations", counts, counted(missing, "further input"), call, quoted(further))
+	e.Reason = fmt.Sprintf("%s: name %s to hold at 0, perhaps %s, or add equations", counts, counted(missing, "further input"), strings.Replace(call, "%s", quoted(further), 1))
 	return e
 }
 

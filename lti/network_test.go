@@ -37,7 +37,7 @@ func newNetwork(random *rand.Rand, n, m int) *network {
 	for i := range n {
 		var terms []randomTerm
 		for j := range n + m {
-			if j != m+i && random.IntN(5) > 1 {
+			if j != m+i && (j >= m || j%n != i) && random.IntN(5) > 1 { // every input stands somewhere
 				continue
 			}
 			order := random.IntN(4) - 1

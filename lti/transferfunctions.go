@@ -35,7 +35,7 @@ const maxPairs = 4096
 // or too few equations or where they contradict or repeat each other, and
 // ErrLimit for a system too large (256 unknowns, a total degree of 2048).
 func (s *System) TransferFunction(in, out string, held ...string) (tf.Continuous, error) {
-	all, err := s.transferFunctions("TransferFunction(%s, %s", []string{in}, []string{out}, held)
+	all, err := s.transferFunctions("TransferFunction(%s, %s, %%s)", []string{in}, []string{out}, held)
 	if err != nil {
 		return tf.Continuous{}, err
 	}
@@ -49,7 +49,7 @@ func (s *System) TransferFunction(in, out string, held ...string) (tf.Continuous
 // the inputs is 1 from itself and 0 from the others. In all else it is like
 // TransferFunction; ErrLimit also bounds the pairs, at 4096.
 func (s *System) TransferFunctions(inputs, outputs []string, held ...string) ([][]tf.Continuous, error) {
-	return s.transferFunctions("TransferFunctions([]string{%s}, []string{%s}", inputs, outputs, held)
+	return s.transferFunctions("TransferFunctions([]string{%s}, []string{%s}, %%s)", inputs, outputs, held)
 }
 
 func (s *System) transferFunctions(call string, inputs, outputs, held []string) ([][]tf.Continuous, error) {
