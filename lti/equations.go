@@ -131,12 +131,7 @@ func (e *Equations) Build() (*System, error) {
 	for i, text := range e.texts {
 		q, err := parseEquation(text)
 		if err != nil {
-			offset := 0
-			var syntax *SyntaxError
-			if errors.As(err, &syntax) {
-				offset = min(syntax.Offset, len(text))
-			}
-			faults = append(faults, &EquationError{Number: i + 1, Equation: text, Term: text[offset:], Offset: offset, Reason: err.Error(), Err: err})
+			faults = append(faults, unread(i+1, text, err))
 		}
 		s.equations = append(s.equations, q)
 	}
@@ -145,6 +140,20 @@ func (e *Equations) Build() (*System, error) {
 		return nil, errors.Join(faults...)
 	}
 	return s, nil
+}
+
+// unread makes the fault of an equation that could not be read.
+func unread(number int, text string, err error) error {
+	e := &EquationError{Number: number, Equation: text, Term: text, Reason: err.Error(), Err: err}
+	var syntax *SyntaxError
+	if errors.As(err, &syntax) {
+		e.Offset = min(syntax.Offset, len(text))
+		e.Term = text[e.Offset:]
+		if e.Reason = "found " + syntax.Found; syntax.Want != "" {
+			e.Reason += ", want " + syntax.Want
+		}
+	}
+	return e
 }
 
 // link evaluates the equations and returns the faults. It passes over an

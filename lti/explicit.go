@@ -49,7 +49,10 @@ type explicitRow struct {
 
 // maxExplicitWork bounds the products of words that one call may take to make
 // equations explicit, and to solve for states.
-const maxExplicitWork = 1 << 29
+const maxExplicitWork = 1 << 30
+
+// touch is what it costs to take up an entry, in products of words.
+const touch = 128
 
 // newExplicit solves a·x = b·u, where the columns of b follow those of a. Of two
 // columns of one degree the later one is solved for, so that what should stay a
@@ -138,7 +141,7 @@ func (x *explicit) cancel(r, by *explicitRow, order int, left *budget) error {
 		if own.IsZero() && p.IsZero() {
 			continue
 		}
-		work += (own.Degree()+2)*(own.MaxBitLen()/64+1)*(lead.BitLen()/64+1) + (p.Degree()+2)*(p.MaxBitLen()/64+1)*(c.BitLen()/64+1)
+		work += touch + 4*(own.Degree()+2)*(own.MaxBitLen()/64+1)*(lead.BitLen()/64+1) + 4*(p.Degree()+2)*(p.MaxBitLen()/64+1)*(c.BitLen()/64+1)
 		r.entries[j] = own.MulInt(lead).Sub(p.MulInt(c).MulPower(order - by.degree))
 	}
 	return left.spend(work)
@@ -203,8 +206,9 @@ func (x *explicit) derivative(d state, left *budget) (vector, error) {
 func (v vector) addMultiple(w vector, k *big.Rat, left *budget) error {
 	work := 0
 	for i, c := range w {
-		work += (k.Num().BitLen()+k.Denom().BitLen())/64*(c.Num().BitLen()+c.Denom().BitLen())/64 + 4
 		sum := new(big.Rat).Mul(c, k)
+		words := (sum.Num().BitLen()+sum.Denom().BitLen())/64 + 1
+		work += touch/4 + 8*words*words // common factors are the most of it
 		if old := v[i]; old != nil {
 			sum.Add(sum, old)
 		}

@@ -89,8 +89,13 @@ func (p *parser) peek() lex.Token { return p.tokens[p.next] }
 
 func (p *parser) fault(want string) error {
 	t := p.peek()
-	if t.Is("\"") || t.Is("″") {
+	switch {
+	case t.Is("\"") || t.Is("″"):
 		want = "two primes '' for a second derivative"
+	case t.Is(",") && p.next > 0 && p.tokens[p.next-1].Kind == lex.Number:
+		want = "a point in decimal numbers, as in 0.5"
+	case t.Is("<") || t.Is(">") || t.Is("≤") || t.Is("≥"):
+		want += "; limits and inequalities are not linear and have no place here"
 	}
 	return lex.Fault(p.text, t.Offset, t.Describe(), want, nil)
 }
@@ -183,15 +188,17 @@ func (p *parser) factor() (*node, error) {
 		if integral && !p.peek().Is("(") {
 			return nil, p.fault("a parenthesis: integral(x) is the integral of x by time")
 		}
-		if integral || slices.Contains(functions, t.Text) && p.peek().Is("(") && !p.peek().Spaced {
-			if n.kind = isCall; integral {
-				n.kind = isIntegral
-			}
-			a, err := p.parenthesis()
-			if err != nil {
-				return nil, err
-			}
-			n.a = a
+		var err error
+		switch {
+		case integral:
+			n.kind = isIntegral
+			n.a, err = p.parenthesis()
+		case slices.Contains(functions, t.Text) && p.peek().Is("(") && !p.peek().Spaced:
+			n.kind = isCall
+			n.a, err = p.arguments()
+		}
+		if err != nil {
+			return nil, err
 		}
 	case t.Is("("):
 		inner, err := p.parenthesis()
@@ -216,11 +223,30 @@ func (p *parser) parenthesis() (*node, error) {
 	if err != nil {
 		return nil, err
 	}
+	return inner, p.closing()
+}
+
+// arguments reads those of a function and returns the first one; the call is
+// refused later, with a reason.
+func (p *parser) arguments() (*node, error) {
+	p.next++
+	first, err := p.expression()
+	for err == nil && p.peek().Is(",") {
+		p.next++
+		_, err = p.expression()
+	}
+	if err != nil {
+		return nil, err
+	}
+	return first, p.closing()
+}
+
+func (p *parser) closing() error {
 	if !p.peek().Is(")") {
-		return nil, p.fault("a closing parenthesis or an operator")
+		return p.fault("a closing parenthesis or an operator")
 	}
 	p.next++
-	return inner, nil
+	return nil
 }
 
 func isPrime(t lex.Token) bool { return t.Is("'") || t.Is("′") || t.Is("’") }

@@ -55,7 +55,7 @@ type InitialState struct {
 // equations and the values before it, all joined (errors.Join); one for missing
 // values, which proposes some that suffice; those of TransferFunction for the
 // equations; and ErrLimit for numbers that grow too long: where making the
-// equations explicit takes more than 2^29 products of words.
+// equations explicit takes more than 2^30 products of words.
 //
 // The equations are made explicit by the Popov form of their polynomial matrix
 // (V. M. Popov, SIAM Journal on Control 10, 1972).
