@@ -26,7 +26,7 @@ import (
 //
 // It is ErrEmptyDiagram for a record without blocks and sums, and ErrLimit for
 // more than 512 signals, blocks or sums, 4096 terms of sums, and where the
-// determinant of a loop passes the limits of TransferFunction.
+// signals of a loop pass the limits of TransferFunction.
 func (d *BlockDiagram[G]) Build() (*Diagram[G], error) {
 	summands := 0
 	for _, s := range d.sums {

@@ -123,10 +123,12 @@ func (d *Diagram[G]) findBlock(name string) (int, error) {
 // not lie between the two take no part: their denominators are left out.
 //
 // The errors are *UnknownNameError, *DeadTimeError, *AlgebraicLoopError where
-// the opened diagram has one, and ErrLimit for a set of loops too large: some
-// 512 signals, or a degree beyond 2048. The method is Cramer's rule; Mason's
-// (Proceedings of the IRE 44, 1956) leads to the same numerator and denominator
-// but for what he leaves out of it, the loops that touch no path.
+// the opened diagram has one, and ErrLimit where more than 512 signals or blocks
+// of a total degree beyond 2048 lie on the way with its loops, and for a result
+// of a degree beyond 4096 or with more than 2^26 bits of coefficients. The method is Cramer's rule
+// for the equations of the diagram, with the denominators of the blocks
+// multiplied out; S. J. Mason's gain formula (Proceedings of the IRE 44, 1956)
+// gives the same numerator and denominator, each divided by these.
 func (d *Diagram[G]) TransferFunction(from, to string) (g G, err error) {
 	source, err := d.find(from)
 	if err != nil {
@@ -164,7 +166,8 @@ func (d *Diagram[G]) signed(r ratio, from, to int) (G, error) {
 // without a common divisor and the leading one positive. Its roots are the
 // modes of the closed diagram, hidden ones included.
 //
-// The error is a *DeadTimeError where a dead time lies on a loop.
+// The error is a *DeadTimeError where a dead time lies on a loop, and ErrLimit
+// for a degree beyond 4096 or more than 2^26 bits of coefficients.
 func (d *Diagram[G]) CharacteristicPolynomial() (poly.Poly, error) {
 	for _, part := range d.network.parts {
 		if blocks := d.network.delaysWithin(part); len(blocks) > 0 {
@@ -175,7 +178,8 @@ func (d *Diagram[G]) CharacteristicPolynomial() (poly.Poly, error) {
 	for i, f := range d.network.factors {
 		_, factors[i] = f.Primitive()
 	}
-	return asPoly(product(factors)), nil
+	p, err := product(factors...)
+	return asPoly(p), err
 }
 
 // HiddenModes returns the modes of the diagram that the transfer function from
@@ -184,14 +188,18 @@ func (d *Diagram[G]) CharacteristicPolynomial() (poly.Poly, error) {
 // modes are hidden from a pair without a path. Whether a mode decays is in the
 // sign of its real part, which is exact.
 //
-// The errors are those of TransferFunction and of poly.Poly.Roots.
+// The errors are those of TransferFunction, poly.Poly.GCD and poly.Poly.Roots.
 func (d *Diagram[G]) HiddenModes(from, to string) ([]poly.Root, error) {
 	g, err := d.TransferFunction(from, to)
 	if err != nil {
 		return nil, err
 	}
 	f := takeApart(g)
-	return asPoly(f.num.GCD(f.den)).Roots()
+	hidden, err := asPoly(f.num).GCD(asPoly(f.den))
+	if err != nil {
+		return nil, err
+	}
+	return hidden.Roots()
 }
 
 // String lists signals, blocks and sums, a line each.

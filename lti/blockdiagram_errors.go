@@ -62,7 +62,7 @@ func (e *AlgebraicLoopError) Error() string {
 		opened = fmt.Sprintf("with the diagram opened at %s: ", e.Opened)
 	}
 	return fmt.Sprintf("%salgebraic loop through %s: a jump passes around it at once with a gain of exactly 1, so that the loop determines no signal; "+
-		"give a block in it the lag that the real element has, or check the signs of the sums", opened, listed(e.Signals))
+		"give a block in it the lag that the real element has, or check the signs of the sums", opened, shortened(e.Signals))
 }
 
 // Unwrap returns tf.ErrAlgebraicLoop.
@@ -82,17 +82,21 @@ type DeadTimeError struct {
 
 // Error names the blocks and what serves instead.
 func (e *DeadTimeError) Error() string {
-	const serves = "replace the dead times by PadeApproximant, which Diagram has too"
+	const serves = "replace it by its approximant (PadeApproximant, of the block or of the Diagram)"
+	blocks := "block " + shortened(e.Blocks)
+	if len(e.Blocks) > 1 {
+		blocks = "blocks " + shortened(e.Blocks)
+	}
 	if e.Join == "" {
-		return fmt.Sprintf("%s: a loop with dead time (of block %s) leaves the rational functions: %s; "+
-			"or take the loop apart with Cut, which is exact with dead time", e.Result, listed(e.Blocks), serves)
+		return fmt.Sprintf("%s: the dead time of %s lies on a loop, which no rational function can hold: %s, or Cut the loop, which is exact with dead time",
+			e.Result, blocks, serves)
 	}
 	times := make([]string, len(e.Times))
 	for i, t := range e.Times {
 		times[i] = decimal.Text(t) + " s"
 	}
-	return fmt.Sprintf("%s: paths with different dead times (%s) join at %s, and their sum is no rational function: %s; dead times lie in block %s",
-		e.Result, strings.Join(times, ", "), e.Join, serves, listed(e.Blocks))
+	return fmt.Sprintf("%s: paths with dead times of %s meet at %s, and no rational function can hold their sum: the dead time is that of %s; %s",
+		e.Result, strings.Join(times, " and "), e.Join, blocks, serves)
 }
 
 // NoLoopError tells that a diagram was to be cut at a signal that lies on no
@@ -107,13 +111,5 @@ func (e *NoLoopError) Error() string {
 	if len(e.Have) == 0 {
 		return fmt.Sprintf("signal %s lies on no loop, and the diagram has none: take TransferFunction", e.Signal)
 	}
-	return fmt.Sprintf("signal %s lies on no loop: those on loops are %s", e.Signal, listed(e.Have))
-}
-
-// listed lists names, the first dozen of them.
-func listed(names []string) string {
-	if len(names) > 12 {
-		return fmt.Sprintf("%s, … (%d in all)", strings.Join(names[:12], ", "), len(names))
-	}
-	return strings.Join(names, ", ")
+	return fmt.Sprintf("signal %s lies on no loop: those on loops are %s", e.Signal, shortened(e.Have))
 }

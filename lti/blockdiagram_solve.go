@@ -3,6 +3,7 @@ package lti
 import (
 	"fmt"
 	"math/big"
+	"math/bits"
 	"slices"
 
 	"github.com/qofs/qofs/internal/intpoly"
@@ -13,38 +14,33 @@ import (
 // reports loops that determine nothing. A dead time breaks an algebraic loop.
 func (n *network) settle() []error {
 	var faults []error
-	prompt := map[int]intpoly.Poly{} // determinants, by the first signal
-	for _, part := range n.components(none, isPrompt) {
+	n.parts = n.components(none, allPass)
+	n.factors = make([]intpoly.Poly, len(n.parts))
+	for k, part := range n.parts {
 		det, err := n.determinant(part, none)
 		if err != nil {
 			faults = append(faults, err)
 		}
-		prompt[slices.Min(part)] = det
-	}
-	n.parts = n.components(none, allPass)
-	n.factors = make([]intpoly.Poly, len(n.parts))
-	for k, part := range n.parts {
 		if len(n.delaysWithin(part)) == 0 {
-			n.factors[k] = prompt[slices.Min(part)]
+			n.factors[k] = det
 		}
 	}
 	return faults
 }
 
-// determinant returns that of the rows of a part in which no dead time lies on
-// a loop, in the network opened at a signal. The error is an
-// *AlgebraicLoopError where det(I − G) is 0 at infinity: there the determinant
-// has a lower degree than the product of the denominators.
+// determinant returns that of the rows of a part in the network opened at a
+// signal, without the blocks with dead time. The error is an *AlgebraicLoopError
+// where det(I − G) is 0 at infinity: there the determinant has a lower degree
+// than the product of the denominators.
 func (n *network) determinant(part []int, opened int) (intpoly.Poly, error) {
 	det := intpoly.FromInt64s(1)
 	switch {
 	case isLoop(part):
 		a, _ := n.equations(part, opened, isPrompt)
-		_, d, err := polymatrix.SolveAll(a, nil, nil)
-		if _, singular := err.(*polymatrix.SingularError); err != nil && !singular {
-			return d, err
+		var err error
+		if _, det, err = n.solve(part, a, nil, nil); err != nil {
+			return det, err
 		}
-		det = d
 	case !n.rows[part[0]].input:
 		det = n.rows[part[0]].den
 	}
@@ -52,6 +48,19 @@ func (n *network) determinant(part []int, opened int) (intpoly.Poly, error) {
 		return det, n.algebraicLoop(part, opened)
 	}
 	return det, nil
+}
+
+// solve is polymatrix.SolveAll for the equations of some rows; it returns the
+// determinant 0 without an error.
+func (n *network) solve(rows []int, a, rhs [][]intpoly.Poly, columns []int) (nums [][]intpoly.Poly, det intpoly.Poly, err error) {
+	nums, det, err = polymatrix.SolveAll(a, rhs, columns)
+	if _, singular := err.(*polymatrix.SingularError); singular {
+		return nil, intpoly.Poly{}, nil
+	}
+	if err != nil {
+		err = fmt.Errorf("lti: elimination of %d signals with blocks of total degree %d: %w", len(rows), n.degree(rows), err)
+	}
+	return nums, det, err
 }
 
 // degree is that of the product of the denominators of the rows.
@@ -97,23 +106,31 @@ func (n *network) algebraicLoop(part []int, opened int) error {
 		e.Opened = n.names[opened]
 	}
 	for _, loop := range n.components(opened, isDirect) {
-		if !isLoop(loop) || !slices.Contains(part, loop[0]) {
-			continue
-		}
-		a, _ := n.equations(loop, opened, isDirect)
-		for i := range a { // the coefficients that count at infinity
-			degree := a[i][i].Degree()
-			for j := range a[i] {
-				a[i][j] = intpoly.FromBigs(a[i][j].Coefficient(degree))
-			}
-		}
-		if _, _, err := polymatrix.SolveAll(a, nil, nil); err != nil {
+		if isLoop(loop) && slices.Contains(part, loop[0]) && n.isStuck(loop, opened) {
 			e.Signals = n.inOrder(loop)
 			return e
 		}
 	}
 	e.Signals = n.inOrder(part) // only in a loop with an improper block
 	return e
+}
+
+// isStuck reports whether det(I − D) is 0 for the signals of a loop, D their
+// matrix of direct gains. It is false where a block of the loop is improper.
+func (n *network) isStuck(loop []int, opened int) bool {
+	a, _ := n.equations(loop, opened, isDirect)
+	for i := range a {
+		degree := a[i][i].Degree()
+		for j := range a[i] {
+			if a[i][j].Degree() > degree {
+				return false
+			}
+			a[i][j] = intpoly.FromBigs(a[i][j].Coefficient(degree))
+		}
+	}
+	_, _, err := polymatrix.SolveAll(a, nil, nil)
+	_, singular := err.(*polymatrix.SingularError)
+	return singular
 }
 
 // ratio is a transfer function between two signals of a network.
@@ -139,14 +156,19 @@ func (n *network) transfer(source, target int) (ratio, error) {
 		return ratio{}, err
 	}
 	a, b := n.equations(rows, source, allPass)
-	nums, den, err := polymatrix.SolveAll(a, [][]intpoly.Poly{b}, []int{slices.Index(rows, target)})
-	if _, singular := err.(*polymatrix.SingularError); err != nil && !singular {
+	nums, den, err := n.solve(rows, a, [][]intpoly.Poly{b}, []int{slices.Index(rows, target)})
+	if err != nil {
 		return ratio{}, err
 	}
-	if err != nil || den.Degree() < n.degree(rows) {
+	if den.Degree() < n.degree(rows) {
 		return ratio{}, n.algebraicLoop(rows, source)
 	}
-	return ratio{nums[0][0].Mul(rest), den.Mul(rest), delay}, nil
+	num, err := product(nums[0][0], rest)
+	if err != nil {
+		return ratio{}, err
+	}
+	den, err = product(den, rest)
+	return ratio{num, den, delay}, err
 }
 
 // outside returns the product of the determinants of all parts beside the given
@@ -167,7 +189,7 @@ func (n *network) outside(rows []int, source int) (intpoly.Poly, error) {
 		}
 		factors = append(factors, f)
 	}
-	return product(factors), nil
+	return product(factors...)
 }
 
 // openedAt returns the parts of the network in which what determines the source
@@ -189,8 +211,28 @@ func (n *network) factor(part []int) (f intpoly.Poly, known bool) {
 	return f, false
 }
 
-// product multiplies by halves, so that the operands are of similar length.
-func product(factors []intpoly.Poly) intpoly.Poly {
+// Bounds on a product of determinants: its degree, and its terms times the
+// bits of the longest that it can have.
+const (
+	maxProductDegree = 4096
+	maxProductBits   = 1 << 26
+)
+
+// product returns the product of the factors, or ErrLimit.
+func product(factors ...intpoly.Poly) (intpoly.Poly, error) {
+	degree, length := 0, 1
+	for _, f := range factors {
+		degree += max(0, f.Degree())
+		length += f.MaxBitLen() + bits.Len(uint(f.Degree()+1))
+	}
+	if degree > maxProductDegree || (degree+1)*length > maxProductBits {
+		return intpoly.Poly{}, fmt.Errorf("lti: a product of degree %d with coefficients of up to %d bits: %w", degree, length, ErrLimit)
+	}
+	return halves(factors), nil
+}
+
+// halves multiplies by halves, so that the operands are of similar length.
+func halves(factors []intpoly.Poly) intpoly.Poly {
 	switch len(factors) {
 	case 0:
 		return intpoly.FromInt64s(1)
@@ -198,7 +240,7 @@ func product(factors []intpoly.Poly) intpoly.Poly {
 		return factors[0]
 	}
 	m := len(factors) / 2
-	return product(factors[:m]).Mul(product(factors[m:]))
+	return halves(factors[:m]).Mul(halves(factors[m:]))
 }
 
 // deadTime returns the dead time that all paths from the source to the target

@@ -63,7 +63,7 @@ func (d *Diagram[G]) Warnings() []Warning {
 		}
 	}
 	if len(apart) > 0 {
-		out = append(out, Warning{apart, "no input reaches " + listed(apart)})
+		out = append(out, Warning{apart, "no input reaches " + shortened(apart)})
 	}
 	return append(out, n.positiveFeedback(constantPoint[G]())...)
 }
@@ -169,7 +169,7 @@ func (s *loopSearch) warnings() []Warning {
 			gain = "the static gain around it is +" + decimal.Significant(l.slow.gain, 4)
 		}
 		w.Text = fmt.Sprintf("positive feedback at zero frequency in the loop %s: %s; check whether the action is direct or reverse, and the signs of the sums",
-			listed(w.Signals), gain)
+			shortened(w.Signals), gain)
 		out = append(out, w)
 	}
 	if s.steps > maxLoopSteps {
