@@ -35,6 +35,10 @@
 //
 // That adds the integrator's own mode at 0, one for all integrals side by side
 // in an equation, and no other. The name "integral" is reserved.
+//
+// TransferFunctions does so for several inputs and outputs at once, Inspect says
+// in words what a function hides, and InitialState goes on from initial values
+// that are not 0.
 package lti
 
 import (

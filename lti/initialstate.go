@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/lex"
 	"github.com/qofs/qofs/units"
 )
 
@@ -23,6 +24,23 @@ type InitialValue struct {
 //
 // It is read and checked by System.InitialState.
 func Initially(signal, quantity string) InitialValue { return InitialValue{signal, quantity} }
+
+// String is "level = 0.2 m".
+func (v InitialValue) String() string { return v.Signal + " = " + v.Quantity }
+
+// MarshalText is String, for encoding.TextMarshaler.
+func (v InitialValue) MarshalText() ([]byte, error) { return []byte(v.String()), nil }
+
+// UnmarshalText reads what String writes. What stands on the two sides is read
+// by System.InitialState. The error is a *SyntaxError.
+func (v *InitialValue) UnmarshalText(text []byte) error {
+	signal, quantity, found := strings.Cut(string(text), "=")
+	if !found || len(text) > lex.MaxLength {
+		return lex.Fault(string(text), 0, "an initial value", "a signal, =, and a quantity, such as level = 0.2 m", nil)
+	}
+	*v = Initially(strings.TrimSpace(signal), strings.TrimSpace(quantity))
+	return nil
+}
 
 // InitialState is where the signals of a System stand just before t = 0, with
 // all inputs at 0 until then. It is immutable and safe to share.

@@ -1,8 +1,10 @@
 package lti_test
 
 import (
+	"encoding/json"
 	"errors"
 	"fmt"
+	"math/big"
 	"slices"
 	"strings"
 	"testing"
@@ -163,5 +165,87 @@ func TestWorkOfStates(t *testing.T) {
 		case n < 100 && err != nil:
 			t.Errorf("%d equations: %v", n, err)
 		}
+	}
+}
+
+func TestTextOfInitialValues(t *testing.T) {
+	values := []lti.InitialValue{lti.Initially("level", "0.2 m"), lti.Initially("level'", "1 mm/s")}
+	text, err := json.Marshal(values)
+	if err != nil || string(text) != `["level = 0.2 m","level' = 1 mm/s"]` {
+		t.Errorf("%s, %v", text, err)
+	}
+	var back []lti.InitialValue
+	if err := json.Unmarshal(text, &back); err != nil || !slices.Equal(back, values) {
+		t.Errorf("%v, %v", back, err)
+	}
+	var syntax *lti.SyntaxError
+	if err := json.Unmarshal([]byte(`["level 0.2 m"]`), &back); !errors.As(err, &syntax) {
+		t.Errorf("%v", err)
+	}
+}
+
+func FuzzInitialValue(f *testing.F) {
+	s, err := pool().Build()
+	if err != nil {
+		f.Fatal(err)
+	}
+	for _, text := range []string{"level = 0.2 m", "level'' = 1 mm/s^2", "inflow′ = -3/4 L/h^2", "opening = 1 mm", "level = ="} {
+		f.Add(text)
+	}
+	f.Fuzz(func(t *testing.T, text string) {
+		var v lti.InitialValue
+		if err := v.UnmarshalText([]byte(text)); err != nil {
+			return
+		}
+		state, err := s.InitialState([]string{"opening", "offtake"}, v)
+		var bad *lti.InitialValueError
+		if err != nil {
+			if !errors.As(err, &bad) && !errors.Is(err, lti.ErrLimit) {
+				t.Fatalf("untyped error %v", err)
+			}
+			return
+		}
+		level, err := state.FreeResponse("level")
+		if err != nil {
+			return
+		}
+		if w, err := state.Value("level"); err != nil || !level.InitialValue().Equal(w) {
+			t.Errorf("%v begins with %v, %v", level, w, err)
+		}
+	})
+}
+
+// A chain of 100 pools in equilibrium passes on what flows in, so that each
+// level stands above the next one by the flow over the width between them.
+func TestLongChain(t *testing.T) {
+	const n = 100
+	s := build(t, chain(n))
+	g, err := s.TransferFunction("u", "x0")
+	if err != nil || g.Denominator().Degree() != n {
+		t.Fatalf("degree %d, %v", g.Denominator().Degree(), err)
+	}
+	want := new(big.Rat)
+	for i := range n {
+		k, _ := new(big.Rat).SetString(fmt.Sprintf("2.%02d", i))
+		want.Add(want, new(big.Rat).Quo(big.NewRat(1000, 1), k)) // mm
+	}
+	if gain, err := g.StaticGain(); err != nil || gain.Value().Cmp(want) != 0 {
+		t.Errorf("static gain %v, %v, want %v", gain, err, want)
+	}
+	var values []lti.InitialValue
+	for i := range n {
+		values = append(values, lti.Initially(fmt.Sprintf("x%d", i), fmt.Sprintf("%d mm", 1+i%7)))
+	}
+	state, err := s.InitialState([]string{"u"}, values...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	// a0 x0' = −k0 (x0 − x1), with 1 and 2 mm
+	if v, err := state.Value("x0'"); err != nil || !v.Equal(units.MustParseQuantity("2/5600 mm/s")) {
+		t.Errorf("%v, %v", v, err)
+	}
+	x, err := state.FreeResponse("x50")
+	if err != nil || !x.InitialValue().Equal(units.MustParseQuantity("2 mm")) {
+		t.Errorf("%v, %v", x.InitialValue(), err)
 	}
 }

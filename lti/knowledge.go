@@ -26,7 +26,7 @@ type fact struct {
 // what is known, or contradicts it, it returns the value that follows and the
 // names of the values it follows from, and takes in nothing.
 func (k *knowledge) add(v vector, value *big.Rat, source InitialValue) (implied *big.Rat, from []string, err error) {
-	f := fact{states: vector{}, value: new(big.Rat).Set(value), parts: vector{}, name: source.Signal + " = " + source.Quantity}
+	f := fact{states: vector{}, value: new(big.Rat).Set(value), parts: vector{}, name: source.String()}
 	one := big.NewRat(1, 1)
 	if err := f.states.addMultiple(v, one, k.left); err != nil {
 		return nil, nil, err

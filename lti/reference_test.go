@@ -1,8 +1,10 @@
 package lti_test
 
 import (
+	"encoding/json"
 	"math/big"
 	"os"
+	"strconv"
 	"strings"
 	"testing"
 
@@ -64,4 +66,57 @@ func polynomial(t *testing.T, text string) poly.Poly {
 		c = append(c, r)
 	}
 	return poly.FromRats(c...)
+}
+
+// Free responses of random sets of equations, some of them algebraic, some with
+// integrals, against SymPy and mpmath (testdata/generate_free.py), which find
+// consistent values by another way.
+func TestFreeResponsesAgainstSymPy(t *testing.T) {
+	data, err := os.ReadFile("testdata/free.txt")
+	if err != nil {
+		t.Fatal(err)
+	}
+	cases := strings.Split(strings.TrimSpace(string(data)), "\n\n")
+	if len(cases) != 60 {
+		t.Fatalf("%d cases, want 60", len(cases))
+	}
+	for i, c := range cases {
+		lines := strings.Split(c, "\n")
+		s, err := lti.ParseSystem(lines[0])
+		if err != nil {
+			t.Errorf("case %d: %v", i, err)
+			continue
+		}
+		var pairs [][2]string
+		if err := json.Unmarshal([]byte(lines[2]), &pairs); err != nil {
+			t.Fatal(err)
+		}
+		var values []lti.InitialValue
+		for _, p := range pairs {
+			values = append(values, lti.Initially(p[0], p[1]))
+		}
+		state, err := s.InitialState(strings.Fields(lines[1]), values...)
+		if err != nil {
+			t.Errorf("case %d: %s\n%s\n%v", i, lines[0], lines[2], err)
+			continue
+		}
+		for _, line := range lines[3:] {
+			f := strings.Split(line, " | ")
+			x, err := state.FreeResponse(f[0])
+			if err != nil {
+				t.Errorf("case %d: %s: %v", i, f[0], err)
+				continue
+			}
+			want, err := tf.New(polynomial(t, f[1]), polynomial(t, f[2]))
+			if err != nil || !sameRational(x.Laplace(), want) {
+				t.Errorf("case %d: %s is %v, want the transform %v (%v)", i, f[0], x, want, err)
+			}
+			for k, at := range []float64{3, 20} {
+				w, err := strconv.ParseFloat(f[3+k], 64)
+				if v, err2 := x.At(at); err != nil || err2 != nil || v != w {
+					t.Errorf("case %d: %s(%v) = %v, %v, want %v (%v)", i, f[0], at, v, err2, w, err)
+				}
+			}
+		}
+	}
 }
