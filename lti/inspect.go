@@ -1,6 +1,7 @@
 package lti
 
 import (
+	"errors"
 	"fmt"
 	"math/big"
 	"strings"
@@ -40,16 +41,15 @@ type NearCancellation struct {
 // is the same on every machine; two that are at the fraction to 4096 bits count
 // as not closer. A fraction of nil or 0 looks for none.
 //
-// The errors are those of poly.Poly.Roots and poly.Poly.HalfPlane for a function
-// beyond their limits.
+// The errors are those of poly.Poly.Roots for a function beyond its limits.
 func Inspect(g tf.Continuous, fraction *big.Rat) (Inspection, error) {
 	x := Inspection{Function: g}
 	x.Reduced, x.Hidden = g.LowestTerms()
 	var err error
-	if x.HiddenModes, err = x.Hidden.HalfPlane(); err != nil {
+	if x.HiddenModes, err = sides(x.Hidden); err != nil {
 		return Inspection{}, fmt.Errorf("lti: hidden modes: %w", err)
 	}
-	if x.Poles, err = x.Reduced.Denominator().HalfPlane(); err != nil {
+	if x.Poles, err = sides(x.Reduced.Denominator()); err != nil {
 		return Inspection{}, fmt.Errorf("lti: poles: %w", err)
 	}
 	if fraction == nil || fraction.Sign() <= 0 || x.Reduced.Numerator().IsZero() {
@@ -76,6 +76,31 @@ func Inspect(g tf.Continuous, fraction *big.Rat) (Inspection, error) {
 		}
 	}
 	return x, nil
+}
+
+// sides counts roots by the side of the imaginary axis that they lie on, exactly.
+func sides(p poly.Poly) (c poly.Counts, err error) {
+	if c, err = p.HalfPlane(); !errors.Is(err, ErrLimit) {
+		return c, err
+	}
+	roots, err := p.Roots() // goes further
+	if err != nil {
+		return poly.Counts{}, err
+	}
+	c = poly.Counts{}
+	for _, r := range roots {
+		switch {
+		case r.IsImaginary():
+			c.On += r.Multiplicity
+		case real(r.Value) < 0:
+			c.Inside += r.Multiplicity
+		case real(r.Value) > 0:
+			c.Outside += r.Multiplicity
+		default: // too small for a float64
+			return poly.Counts{}, ErrLimit
+		}
+	}
+	return c, nil
 }
 
 // nearest returns the zero that is nearest to a pole, if one is closer than the

@@ -1,6 +1,7 @@
 package lti_test
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"math/big"
@@ -42,6 +43,21 @@ func TestInspectHidden(t *testing.T) {
 		if err != nil || !back.Equal(x.Function) {
 			t.Errorf("%s: the reduced function times the factor is %v, %v", c.text, back, err)
 		}
+	}
+}
+
+// Beyond the limit of the exact count the signs of the roots decide: a chain of
+// 100 pools is stable, and its first level sees all of it.
+func TestInspectLongChain(t *testing.T) {
+	g, err := build(t, chain(100)).TransferFunction("u", "x0")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, err := g.Denominator().HalfPlane(); !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("the count has an answer: %v", err)
+	}
+	if x, err := lti.Inspect(g, nil); err != nil || x.Poles != (poly.Counts{Inside: 100}) || x.Hidden.Degree() != 0 {
+		t.Errorf("%v, %v", x, err)
 	}
 }
 
