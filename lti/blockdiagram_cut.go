@@ -1,6 +1,7 @@
 package lti
 
 import (
+	"fmt"
 	"math/big"
 
 	"github.com/qofs/qofs/internal/intpoly"
@@ -50,6 +51,15 @@ func (d *Diagram[G]) Cut(signal string) (LoopCut[G], error) {
 		c.like = d.record.blocks[0].function
 	}
 	return c, nil
+}
+
+// String is the signal and the loop transfer function.
+func (c LoopCut[G]) String() string {
+	l, err := c.LoopTransferFunction()
+	if err != nil {
+		return fmt.Sprintf("cut at %s: %v", c.signal, err)
+	}
+	return fmt.Sprintf("cut at %s: %v", c.signal, l)
 }
 
 // Signal is the signal at the cut.

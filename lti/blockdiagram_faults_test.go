@@ -197,12 +197,13 @@ func TestWarnings(t *testing.T) {
 	d := lti.NewBlockDiagram()
 	d.Input("a", "m")
 	d.Input("idle", "m")
+	d.Input("lost", "m")
 	d.Output("b", "m")
 	d.Signal("c", "m")
 	d.Signal("p", "m")
 	d.Output("q", "m")
 	d.Sum("b", lti.Plus("a"))
-	d.Sum("c", lti.Plus("a"))
+	d.Sum("c", lti.Plus("a"), lti.Minus("lost"))
 	d.Block("one", tf.MustParse("1/(s + 1) [m -> m]"), "p", "q")
 	d.Block("two", tf.MustParse("-1/(s + 1) [m -> m]"), "q", "p")
 	var got []string
@@ -211,6 +212,7 @@ func TestWarnings(t *testing.T) {
 	}
 	want := []string{
 		"idle | input idle: no block and no sum reads it",
+		"lost | input lost reaches no output",
 		"c | signal c: no block and no sum reads it; declare it with Output if it is read outside",
 		"p q | no input reaches p, q",
 	}
@@ -233,8 +235,8 @@ func TestDiagramJSON(t *testing.T) {
 	if !g.Equal(h) {
 		t.Errorf("%v comes back as %v", g, h)
 	}
-	if twice := tf.Must(again.MarshalText()); string(twice) != string(text) {
-		t.Errorf("%s comes back as %s", text, twice)
+	if once, twice := tf.Must(diagram.MarshalText()), tf.Must(again.MarshalText()); string(twice) != string(once) || !strings.Contains(string(once), "->") {
+		t.Errorf("%s comes back as %s", once, twice)
 	}
 	var discrete lti.Diagram[tf.Discrete]
 	if err := json.Unmarshal(text, &discrete); err == nil {
@@ -257,6 +259,42 @@ func TestDiagramJSON(t *testing.T) {
 		if err == nil || !strings.Contains(err.Error(), c.says) {
 			t.Errorf("%s: %v does not say %q", c.text, err, c.says)
 		}
+	}
+}
+
+func TestDiagramTextLimits(t *testing.T) {
+	for _, function := range []string{"1/(s + 1)^400", "1/s"} {
+		var b strings.Builder
+		b.WriteString(`{"inputs": {"a": "1"}, "blocks": {`)
+		for i := range 2000 {
+			fmt.Fprintf(&b, `"b%d": {"from": "a", "to": "x%d", "function": "%s"}, `, i, i, function)
+		}
+		b.WriteString(`"b": {"from": "a", "to": "y", "function": "1"}}}`)
+		var syntax *lti.SyntaxError
+		if _, err := lti.ParseBlockDiagram(b.String()); !errors.Is(err, lti.ErrLimit) || !errors.As(err, &syntax) {
+			t.Errorf("2000 blocks %s: %v", function, err)
+		}
+	}
+	if _, err := lti.ParseBlockDiagram(strings.Repeat(" ", 1<<20+1)); !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("a long text: %v", err)
+	}
+	// Blocks beside all loops are bounded too: 300 of degree 16 make 4800.
+	d := lti.NewBlockDiagram()
+	d.Input("x0", "1")
+	for i := 1; i <= 300; i++ {
+		name := fmt.Sprint("x", i)
+		d.Signal(name, "1")
+		d.Block(name, tf.MustParse("1/(s^16 + 1)"), fmt.Sprint("x", i-1), name)
+	}
+	diagram := tf.Must(d.Build())
+	if _, err := diagram.CharacteristicPolynomial(); !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("characteristic polynomial of degree 4800: %v", err)
+	}
+	if _, err := diagram.TransferFunction("x0", "x300"); !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("transfer function of degree 4800: %v", err)
+	}
+	if _, err := diagram.TransferFunction("x0", "x9"); !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("transfer function with hidden modes of degree 4656: %v", err)
 	}
 }
 

@@ -23,8 +23,9 @@ import (
 //
 // A function is what tf.Parse reads. The order of the names is kept. The errors
 // are *SyntaxError for the JSON itself, also for a field of another name and a
-// field given twice, *WiringError for a function that cannot be read, and those
-// of BlockDiagram.Build.
+// field given twice, *WiringError for a function that cannot be read, ErrLimit
+// for a text beyond 1 MiB or functions with a total degree beyond 16384, and
+// those of BlockDiagram.Build.
 func ParseBlockDiagram(text string) (*Diagram[tf.Continuous], error) {
 	return parseBlockDiagram[tf.Continuous](text)
 }
@@ -39,7 +40,7 @@ func parseBlockDiagram[G tf.Block[G]](text string) (*Diagram[G], error) {
 	if len(text) > lex.MaxLength {
 		return nil, lex.Fault(text, lex.MaxLength, fmt.Sprintf("a text of %d bytes", len(text)), fmt.Sprintf("at most %d", lex.MaxLength), ErrLimit)
 	}
-	r := &diagramReader[G]{&reader{text: text, decoder: json.NewDecoder(bytes.NewReader([]byte(text)))}, &BlockDiagram[G]{}}
+	r := &diagramReader[G]{&reader{text: text, decoder: json.NewDecoder(bytes.NewReader([]byte(text)))}, &BlockDiagram[G]{}, 0}
 	if err := r.fields(map[string]func() error{
 		"inputs":  func() error { return r.pairs("a unit", r.record.Input) },
 		"outputs": func() error { return r.pairs("a unit", r.record.Output) },
@@ -58,7 +59,12 @@ func parseBlockDiagram[G tf.Block[G]](text string) (*Diagram[G], error) {
 type diagramReader[G tf.Block[G]] struct {
 	*reader
 	record *BlockDiagram[G]
+	degree int // of all functions together
 }
+
+// maxTextDegree bounds the degrees of all functions in a text, so that a short
+// text of high powers is short work.
+const maxTextDegree = 4 * maxProductDegree
 
 // fields reads an object whose fields are known, each at most once.
 func (r *diagramReader[G]) fields(read map[string]func() error, want string) error {
@@ -118,10 +124,16 @@ func (r *diagramReader[G]) block(name string) error {
 	}, `"from", "to" or "function"`); err != nil {
 		return err
 	}
+	if len(r.record.blocks) >= maxBlocks || r.degree > maxTextDegree {
+		return lex.Fault(r.text, int(r.decoder.InputOffset()), "one block too many",
+			fmt.Sprintf("at most %d blocks, with a total degree of %d", maxBlocks, maxTextDegree), ErrLimit)
+	}
 	var g G
 	if err := any(&g).(encoding.TextUnmarshaler).UnmarshalText([]byte(text)); err != nil {
 		return &WiringError{Block: name, Reason: "function: " + err.Error(), Err: err}
 	}
+	f := takeApart(g)
+	r.degree += max(0, f.num.Degree()) + f.den.Degree()
 	r.record.Block(name, g, from, to)
 	return nil
 }
@@ -201,8 +213,10 @@ func (w *jsonWriter) quote(text string) {
 		w.WriteByte(',')
 	}
 	w.open = false
-	q, _ := json.Marshal(text) // a string always has a form
-	w.Write(q)
+	e := json.NewEncoder(w)
+	e.SetEscapeHTML(false)  // -> stays legible
+	_ = e.Encode(text)      // a string always has a form,
+	w.Truncate(w.Len() - 1) // followed by a new line
 }
 
 func (w *jsonWriter) key(name string) { w.quote(name); w.begin(":") }

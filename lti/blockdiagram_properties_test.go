@@ -160,6 +160,70 @@ func TestRandomPositiveFeedback(t *testing.T) {
 	}
 }
 
+// Trees of Series, Parallel, Feedback and PositiveFeedback, and the same drawn as
+// a diagram.
+func TestCompositionTrees(t *testing.T) {
+	r := rand.New(rand.NewPCG(51, 52))
+	loops := 0
+	for k := range 200 {
+		d := lti.NewBlockDiagram()
+		count := 0
+		signal := func() string {
+			count++
+			name := "x" + strconv.Itoa(count)
+			d.Signal(name, "1")
+			return name
+		}
+		failed := false
+		keep := func(g tf.Continuous, err error) tf.Continuous {
+			failed = failed || err != nil
+			return g
+		}
+		var draw func(depth int, from string) (tf.Continuous, string)
+		draw = func(depth int, from string) (tf.Continuous, string) {
+			kind := r.IntN(4)
+			switch {
+			case depth == 0 || r.IntN(5) == 0:
+				to, g := signal(), randomBlock(r)
+				d.Block(to, g, from, to)
+				return g, to
+			case kind == 0:
+				g, middle := draw(depth-1, from)
+				h, to := draw(depth-1, middle)
+				return keep(tf.Series(g, h)), to
+			case kind == 1:
+				g, a := draw(depth-1, from)
+				h, b := draw(depth-1, from)
+				to := signal()
+				d.Sum(to, lti.Plus(a), lti.Plus(b))
+				return keep(tf.Parallel(g, h)), to
+			}
+			loops++
+			sum := signal()
+			g, to := draw(depth-1, sum)
+			h, back := draw(depth-1, to)
+			if kind == 2 {
+				d.Sum(sum, lti.Plus(from), lti.Minus(back))
+				return keep(tf.Feedback(g, h)), to
+			}
+			d.Sum(sum, lti.Plus(from), lti.Plus(back))
+			return keep(tf.PositiveFeedback(g, h)), to
+		}
+		d.Input("r", "1")
+		want, to := draw(3, "r")
+		diagram, err := d.Build()
+		if failed || err != nil { // TestMason has the algebraic loops
+			continue
+		}
+		if g, err := diagram.TransferFunction("r", to); err != nil || !g.Equivalent(want) {
+			t.Fatalf("%d: %v, %v, want %v\n%v", k, g, err, want, diagram)
+		}
+	}
+	if loops < 100 {
+		t.Errorf("only %d loops", loops)
+	}
+}
+
 // slowSign is the sign of a function near s = 0, from the right, and 0 where it
 // vanishes there.
 func slowSign(g tf.Continuous) int {

@@ -169,6 +169,14 @@ func TestCanalAgainstComposition(t *testing.T) {
 	if w := diagram.Warnings(); len(w) > 0 {
 		t.Errorf("warnings: %v", w)
 	}
+	// The gain margin of the scenario is 10.5 dB, a factor of 3.35.
+	for _, c := range []struct{ factor, unstable int64 }{{320, 0}, {350, 2}} {
+		louder := tf.Must(diagram.WithBlock("controller", tf.Scale(block("controller"), big.NewRat(c.factor, 100))))
+		counts := tf.Must(tf.Must(louder.CharacteristicPolynomial()).HalfPlane())
+		if counts.Outside != int(c.unstable) {
+			t.Errorf("with %d %% of the gain: %+v", c.factor, counts)
+		}
+	}
 }
 
 // With its dead time the loop is exact where it is cut.
@@ -263,6 +271,7 @@ func TestAlgebraicLoops(t *testing.T) {
 		{[]string{"e = +r +b", "e y:(2 s + 1)/(s + 3)", "y b:1/2"}, []string{"e", "y", "b"}},                          // only at infinity
 		{[]string{"e = +r +b +c", "e y:2", "y b:1/2", "y c:1/(s + 1)"}, []string{"e", "y", "b"}},                      // the lagging way apart
 		{[]string{"e = +r -b", "e y:1/s", "y b:-s"}, []string{"e", "y", "b"}},                                         // improper
+		{[]string{"e = +r +b +q", "e y:2", "y b:1/2", "y q:exp(-1 s) 3"}, []string{"e", "y", "b"}},                    // beside a dead time
 		{[]string{"a = +r +b +k", "a b:s + 1", "b c:1/s", "e = +c +f", "e f:1", "f k:1/s"}, []string{"e", "f"}},       // beside a sound improper one
 		{[]string{"a = +r +b", "b = +a -c", "c d:1/s", "d e:3", "c = +e +r"}, []string{"a", "b"}},                     // no block at all
 		{[]string{"e = +r -b", "e y:2/(s + 1)", "y b:1", "f = +y +h", "f g:-4", "g h:-1/4"}, []string{"f", "g", "h"}}, // the second of two

@@ -27,8 +27,8 @@ const (
 
 // Warnings returns what in the diagram deserves a second look:
 //
-//   - an input that nothing reads, and a signal that nothing reads and that is
-//     no Output;
+//   - an input that nothing reads or from which no way leads to any Output, and
+//     a signal that nothing reads and that is no Output;
 //   - a signal that no input reaches;
 //   - a loop with positive feedback at zero frequency, as a controller that acts
 //     direct instead of reverse makes it: the product of the static gains
@@ -42,19 +42,29 @@ const (
 func (d *Diagram[G]) Warnings() []Warning {
 	n := &d.network
 	var out []Warning
-	readers := n.readers()
-	var inputs []int
+	var inputs, outputs []int
 	for i, s := range d.record.signals {
-		switch {
-		case s.role == isInput:
+		switch s.role {
+		case isInput:
 			inputs = append(inputs, i)
-			if len(readers[i]) == 0 {
-				out = append(out, Warning{[]string{s.name}, fmt.Sprintf("input %s: no block and no sum reads it", s.name)})
-			}
-		case s.role == isInner && len(readers[i]) == 0:
-			out = append(out, Warning{[]string{s.name}, fmt.Sprintf(
-				"signal %s: no block and no sum reads it; declare it with Output if it is read outside", s.name)})
+		case isOutput:
+			outputs = append(outputs, i)
 		}
+	}
+	readers := n.readers()
+	for i, s := range d.record.signals {
+		text := ""
+		switch unread := len(readers[i]) == 0; {
+		case s.role == isInput && unread:
+			text = fmt.Sprintf("input %s: no block and no sum reads it", s.name)
+		case s.role == isInput && len(outputs) > 0 && !slices.ContainsFunc(outputs, n.reached(i)):
+			text = fmt.Sprintf("input %s reaches no output", s.name)
+		case s.role == isInner && unread:
+			text = fmt.Sprintf("signal %s: no block and no sum reads it; declare it with Output if it is read outside", s.name)
+		default:
+			continue
+		}
+		out = append(out, Warning{[]string{s.name}, text})
 	}
 	var apart []string
 	for i, reached := range n.downstream(inputs...) {
@@ -68,30 +78,40 @@ func (d *Diagram[G]) Warnings() []Warning {
 	return append(out, n.positiveFeedback(constantPoint[G]())...)
 }
 
+// reached returns a function that reports whether a source reaches a signal.
+func (n *network) reached(source int) func(int) bool {
+	down := n.downstream(source)
+	return func(i int) bool { return down[i] }
+}
+
 // slow is how a function behaves near the point that stands for a constant
-// signal: as gain·(s − point)^order.
+// signal: as gain·(s − point)^order, s above the point. The gain serves for its
+// sign, which is exact, and for a few digits.
 type slow struct {
 	order int
-	gain  *big.Rat
+	gain  *big.Float
 }
+
+const gainBits = 128 // far more than the digits that are shown need
 
 func near(point int64, num, den intpoly.Poly) slow {
 	if point != 0 {
 		num, den = num.TaylorShift(big.NewInt(point)), den.TaylorShift(big.NewInt(point))
 	}
 	i, j := num.Valuation(), den.Valuation()
-	return slow{i - j, new(big.Rat).SetFrac(num.Coefficient(i), den.Coefficient(j))}
+	above := new(big.Float).SetPrec(gainBits).SetInt(num.Coefficient(i))
+	return slow{i - j, above.Quo(above, new(big.Float).SetPrec(gainBits).SetInt(den.Coefficient(j)))}
 }
 
 func (a slow) times(b slow) slow {
-	return slow{a.order + b.order, new(big.Rat).Mul(a.gain, b.gain)}
+	return slow{a.order + b.order, new(big.Float).Mul(a.gain, b.gain)}
 }
 
 // loopSearch walks all elementary loops of a part, within the bounds.
 type loopSearch struct {
 	*network
 	readers [][]int
-	gains   []map[int]slow // by signal, of what it reads
+	gains   []map[int]slow // by signal, of what it reads in its part
 	inside  []bool         // signals of the part that may still be passed
 	steps   int
 	path    []int
@@ -104,21 +124,24 @@ type positiveLoop struct {
 }
 
 func (n *network) positiveFeedback(point int64) []Warning {
-	s := &loopSearch{network: n, readers: n.readers(), gains: make([]map[int]slow, len(n.rows))}
-	for i, row := range n.rows {
-		s.gains[i] = map[int]slow{}
-		for _, t := range row.terms {
-			s.gains[i][t.from] = near(point, t.num, row.den)
-		}
-	}
+	s := &loopSearch{network: n, readers: n.readers(), gains: make([]map[int]slow, len(n.rows)), inside: make([]bool, len(n.rows))}
 	for _, part := range n.parts {
-		s.inside = make([]bool, len(n.rows))
 		for _, i := range part {
-			s.inside[i] = true
+			s.inside[i] = isLoop(part)
+		}
+		for _, i := range part {
+			s.gains[i] = map[int]slow{}
+			for _, t := range n.rows[i].terms {
+				if s.inside[t.from] {
+					s.gains[i][t.from] = near(point, t.num, n.rows[i].den)
+				}
+			}
 		}
 		for _, i := range slices.Sorted(slices.Values(part)) {
-			s.walk(i, i, slow{0, big.NewRat(1, 1)})
-			s.inside[i] = false // its loops are done
+			if s.inside[i] {
+				s.walk(i, i, slow{0, big.NewFloat(1)})
+				s.inside[i] = false // its loops are done
+			}
 		}
 	}
 	return s.warnings()
@@ -166,7 +189,8 @@ func (s *loopSearch) warnings() []Warning {
 		}
 		gain := "it integrates with a positive gain"
 		if l.slow.order == 0 {
-			gain = "the static gain around it is +" + decimal.Significant(l.slow.gain, 4)
+			k, _ := l.slow.gain.Rat(nil)
+			gain = "the static gain around it is +" + decimal.Significant(k, 4)
 		}
 		w.Text = fmt.Sprintf("positive feedback at zero frequency in the loop %s: %s; check whether the action is direct or reverse, and the signs of the sums",
 			shortened(w.Signals), gain)
