@@ -149,7 +149,7 @@ func TestLongProducts(t *testing.T) {
 		rounds = 6
 	}
 	for range rounds {
-		m, n := 1+r.IntN(420), 1+r.IntN(420)
+		m, n := 1+r.IntN(700), 1+r.IntN(700)
 		if r.IntN(2) == 0 {
 			m, n = 1+r.IntN(80), 1+r.IntN(80)
 		}
@@ -159,6 +159,24 @@ func TestLongProducts(t *testing.T) {
 		}
 		if !same(SumOfProducts(a.p, b.p, a.p, a.p, -1), a.q.Mul(b.q).Sub(a.q.Mul(a.q))) {
 			t.Fatalf("difference of products of %d and %d terms", m, n)
+		}
+	}
+}
+
+func TestTransformAgainstOracle(t *testing.T) {
+	r := rand.New(rand.NewPCG(17, 18))
+	for range 200 {
+		a, b := newPair(coefficients(r, 1+r.IntN(100))), newPair(coefficients(r, 1+r.IntN(100)))
+		if a.p.IsZero() || b.p.IsZero() {
+			continue
+		}
+		span := a.p.span() + b.p.span() + 7
+		if got := transformSum(a.p, b.p, Poly{}, Poly{}, span, 1); !same(got, a.q.Mul(b.q)) {
+			t.Fatalf("product of %d and %d terms", a.p.terms(), b.p.terms())
+		}
+		span = max(span, 2*b.p.span()+7) + 1
+		if got := transformSum(a.p, b.p, b.p, b.p, span, -1); !same(got, a.q.Mul(b.q).Sub(b.q.Mul(b.q))) {
+			t.Fatalf("difference of products of %d and %d terms", a.p.terms(), b.p.terms())
 		}
 	}
 }
@@ -311,7 +329,7 @@ func TestFloatSumsAtTheirBound(t *testing.T) {
 
 func BenchmarkThresholds(b *testing.B) {
 	for _, width := range []uint{32, 50, 128, 256} {
-		for _, terms := range []int{8, 16, 24, 32, 64, 128, 192, 256, 384} {
+		for _, terms := range []int{8, 16, 24, 32, 64, 128, 192, 256, 384, 1024} {
 			r := rand.New(rand.NewPCG(13, 14))
 			c, d := make([]*big.Int, terms), make([]*big.Int, terms)
 			for i := range c {
@@ -333,6 +351,14 @@ func BenchmarkThresholds(b *testing.B) {
 			b.Run(fmt.Sprintf("width=%d/terms=%d/limbs=%d/packed", width, terms, n*terms), func(b *testing.B) {
 				for b.Loop() {
 					longSum(p, q, Poly{}, Poly{}, n, 1)
+				}
+			})
+			if terms < 128 {
+				continue
+			}
+			b.Run(fmt.Sprintf("width=%d/terms=%d/limbs=%d/transform", width, terms, n*terms), func(b *testing.B) {
+				for b.Loop() {
+					transformSum(p, q, Poly{}, Poly{}, p.span()+q.span()+10, 1)
 				}
 			})
 		}

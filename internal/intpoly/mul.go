@@ -1,6 +1,10 @@
 package intpoly
 
-import "math/bits"
+import (
+	"math/bits"
+
+	"github.com/qofs/qofs/internal/modp"
+)
 
 // From how many limbs on, that is terms of the shorter factor times limbs of a
 // result coefficient, a product goes through math/big. BenchmarkThresholds
@@ -10,6 +14,13 @@ const (
 	kroneckerWord = 640
 	kroneckerFour = 200
 	kroneckerWide = 64
+)
+
+// From how many terms of the shorter factor on, and from how many limbs, such a
+// product goes through transforms modulo primes.
+const (
+	transformTerms = 200
+	transformLimbs = 1200
 )
 
 // Mul returns p·q.
@@ -40,6 +51,9 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 	words := max(a.n, b.n, c.n, d.n) == 1 && n <= 2
 	limbs := n * max(min(a.terms(), b.terms()), min(c.terms(), d.terms()))
 	if isLong(limbs, words, a, b) {
+		if limbs >= transformLimbs && limbs >= n*transformTerms && transformPrimes(span) <= modp.MaxTransforms {
+			return transformSum(a, b, c, d, span, sign)
+		}
 		return longSum(a, b, c, d, n, sign)
 	}
 	w := make([]uint64, terms*n)

@@ -46,7 +46,9 @@ func (f *Field) cancelTop(a, b []uint64, inverse uint64) (factor uint64) {
 }
 
 // Power returns x^n for n ≥ 0.
-func (f *Field) Power(x uint64, n int) uint64 {
+func (f *Field) Power(x uint64, n int) uint64 { return f.powerWord(x, uint64(n)) }
+
+func (f *Field) powerWord(x, n uint64) uint64 {
 	r := f.one
 	for ; n > 0; n >>= 1 {
 		if n&1 == 1 {

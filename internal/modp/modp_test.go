@@ -1,6 +1,7 @@
 package modp
 
 import (
+	"fmt"
 	"math/big"
 	"math/rand/v2"
 	"testing"
@@ -197,4 +198,66 @@ func TestEuclid(t *testing.T) {
 func FuzzField(f *testing.F) {
 	f.Add(uint64(1))
 	f.Fuzz(func(t *testing.T, seed uint64) { checkField(t, rand.New(rand.NewPCG(seed, 1))) })
+}
+
+// The cyclic product of two polynomials by the transform is that by its
+// definition.
+func TestTransform(t *testing.T) {
+	r := rand.New(rand.NewPCG(5, 6))
+	for index := range MaxTransforms {
+		for _, n := range []int{1, 2, 4, 8, 64} {
+			tr := NewTransform(index, n)
+			p := new(big.Int).SetUint64(tr.P)
+			if !p.ProbablyPrime(20) || tr.P>>61 != 1 {
+				t.Fatalf("%d is no prime between 2^61 and 2^62", tr.P)
+			}
+			a, b := make([]uint64, n), make([]uint64, n)
+			want := make([]*big.Int, n)
+			for i := range a {
+				a[i], b[i] = r.Uint64N(tr.P), r.Uint64N(tr.P)
+				want[i] = new(big.Int)
+			}
+			for i, x := range a {
+				for j, y := range b {
+					k := (i + j) % n
+					xy := new(big.Int).Mul(new(big.Int).SetUint64(x), new(big.Int).SetUint64(y))
+					want[k].Mod(want[k].Add(want[k], xy), p)
+				}
+			}
+			tr.Forward(a)
+			tr.Forward(b)
+			for i := range a {
+				a[i] = tr.Mul(tr.Below(a[i]), tr.Below(b[i]))
+			}
+			tr.Backward(a)
+			tr.Scale(a)
+			for i := range a {
+				if a[i] != want[i].Uint64() {
+					t.Fatalf("order %d modulo %d: coefficient %d is %d, want %v", n, tr.P, i, a[i], want[i])
+				}
+			}
+		}
+	}
+}
+
+func BenchmarkTransform(b *testing.B) {
+	for _, n := range []int{256, 2048, 16384, 1 << 17} {
+		tr := NewTransform(0, n)
+		a := make([]uint64, n)
+		b.Run(fmt.Sprintf("order=%d", n), func(b *testing.B) {
+			for b.Loop() {
+				tr.Forward(a)
+			}
+		})
+		b.Run(fmt.Sprintf("back=%d", n), func(b *testing.B) {
+			for b.Loop() {
+				tr.Backward(a)
+			}
+		})
+		b.Run(fmt.Sprintf("new=%d", n), func(b *testing.B) {
+			for b.Loop() {
+				NewTransform(0, n)
+			}
+		})
+	}
 }
