@@ -10,9 +10,16 @@ import (
 // nothing; all images have the same number of terms.
 type Images struct {
 	terms, limbs int
-	x            []uint64 // unsigned residues, limbs each
+	stride       int      // limbs from one number of x to the next; those beyond are 0
+	x            []uint64 // unsigned residues
 	modulus      []uint64 // limbs
 }
+
+// NewImages returns one with room for a number of primes.
+func NewImages(primes int) *Images { return &Images{stride: primes} }
+
+// at returns the residue i.
+func (c *Images) at(i int) []uint64 { return c.x[i*c.stride : i*c.stride+c.limbs] }
 
 // bits is a lower bound on the length of the modulus.
 func (c *Images) bits() int { return 64*(c.limbs-1) + bits.Len64(c.modulus[c.limbs-1]) - 1 }
@@ -23,7 +30,7 @@ func (c *Images) bits() int { return 64*(c.limbs-1) + bits.Len64(c.modulus[c.lim
 func (c *Images) looksSmall() bool {
 	m := c.modulus[c.limbs-1]
 	slack := m>>4 + 1
-	for i := c.limbs - 1; i < len(c.x); i += c.limbs {
+	for i := c.limbs - 1; i < len(c.x); i += c.stride {
 		if x := c.x[i]; x > slack && x < m-slack {
 			return false
 		}
@@ -31,42 +38,61 @@ func (c *Images) looksSmall() bool {
 	return true
 }
 
-// Add takes in the plain residues modulo another prime, the next of modp.Primes.
+// Add takes in the plain residues modulo another prime.
 func (c *Images) Add(f *modp.Field, residues []uint64) {
 	if c.limbs == 0 {
-		c.terms, c.limbs = len(residues), 1
-		c.x = append([]uint64(nil), residues...)
+		c.terms, c.limbs, c.stride = len(residues), 1, max(1, c.stride)
+		c.x = make([]uint64, c.terms*c.stride)
+		for i, r := range residues {
+			c.x[i*c.stride] = r
+		}
 		c.modulus = []uint64{f.P}
 		return
 	}
-	n := c.limbs + 1
-	x := make([]uint64, c.terms*n)
-	// Residues come multiplied by 2^(−64 limbs); grow undoes that.
-	grow := f.Grow(f.Stored(1), c.limbs)
-	residue := func(x []uint64) uint64 { return f.Mul(f.Image(x), grow) }
+	if c.limbs == c.stride {
+		c.widen()
+	}
+	// Image is quicker for few limbs; its results come multiplied by
+	// 2^(−64 limbs), which grow undoes.
+	few := c.limbs < 8
+	var grow uint64
+	var weights []uint64
+	if few {
+		grow = f.Grow(f.Stored(1), c.limbs)
+	} else {
+		weights = make([]uint64, c.limbs)
+		f.Weights(weights)
+	}
+	residue := func(x []uint64) uint64 {
+		if few {
+			return f.Mul(f.Image(x), grow)
+		}
+		return f.Remainder(x, weights)
+	}
 	inverse := f.Inverse(f.Stored(residue(c.modulus)))
 	for i := range c.terms {
-		old, v := c.x[i*c.limbs:(i+1)*c.limbs], x[i*n:(i+1)*n]
-		copy(v, old)
+		v := c.at(i)
 		// x + modulus·d, d = (residue − x)/modulus
-		d := f.Mul(f.Sub(residues[i], residue(old)), inverse)
-		v[c.limbs] = addProduct(v[:c.limbs], c.modulus, d)
+		d := f.Mul(f.Sub(residues[i], residue(v)), inverse)
+		if top := addProduct(v, c.modulus, d); top != 0 {
+			c.x[i*c.stride+c.limbs] = top
+		}
 	}
-	modulus := make([]uint64, n)
-	modulus[c.limbs] = addProduct(modulus[:c.limbs], c.modulus, f.P)
-	c.x, c.limbs, c.modulus = x, n, modulus
-	if modulus[n-1] == 0 { // the top limb is not needed yet
-		c.shrink()
+	modulus := make([]uint64, c.limbs, c.limbs+1)
+	if top := addProduct(modulus, c.modulus, f.P); top != 0 {
+		modulus = append(modulus, top)
 	}
+	c.modulus, c.limbs = modulus, len(modulus)
 }
 
-// shrink drops the top limb, which is 0 everywhere.
-func (c *Images) shrink() {
-	n := c.limbs - 1
+// widen makes room for twice the limbs.
+func (c *Images) widen() {
+	n := 2 * c.stride
+	x := make([]uint64, c.terms*n)
 	for i := range c.terms {
-		copy(c.x[i*n:(i+1)*n], c.x[i*c.limbs:])
+		copy(x[i*n:], c.at(i))
 	}
-	c.x, c.modulus, c.limbs = c.x[:c.terms*n], c.modulus[:n], n
+	c.x, c.stride = x, n
 }
 
 // addProduct adds x·d to z, of the same length, and returns the carry.
@@ -100,7 +126,7 @@ func (c *Images) Poly(from, to int) Poly {
 		}
 	}
 	for i := range to - from {
-		x, v := c.x[(from+i)*c.limbs:(from+i+1)*c.limbs], w[i*n:(i+1)*n]
+		x, v := c.at(from+i), w[i*n:(i+1)*n]
 		copy(v, x)
 		var borrow uint64
 		for k := range half { // half − x

@@ -21,8 +21,9 @@ func transformSum(a, b, c, d Poly, span, sign int) Poly {
 	if !c.IsZero() {
 		second = make([]uint64, terms)
 	}
-	var all Images
-	for k := range transformPrimes(span) {
+	primes := transformPrimes(span)
+	all := NewImages(primes)
+	for k := range primes {
 		t := modp.NewTransform(k, order)
 		productImage(t, product, room, a, b)
 		if !c.IsZero() {

@@ -70,25 +70,6 @@ func (f *Field) Sub(x, y uint64) uint64 {
 	return t + f.P&-borrow
 }
 
-// Add returns x + y.
-func (f *Field) Add(x, y uint64) uint64 {
-	t := x + y
-	if t >= f.P {
-		t -= f.P
-	}
-	return t
-}
-
-// At returns the value at x of the polynomial with the coefficients c, which
-// ascend, all of them stored.
-func (f *Field) At(c []uint64, x uint64) uint64 {
-	var v uint64
-	for i := len(c) - 1; i >= 0; i-- {
-		v = f.Add(f.Mul(v, x), c[i])
-	}
-	return v
-}
-
 // Neg returns −x.
 func (f *Field) Neg(x uint64) uint64 { return f.Sub(0, x) }
 
@@ -149,6 +130,10 @@ func (f *Field) Images(out, w []uint64, n int) {
 		return
 	}
 	scale := f.Shrink(1, n)
+	if n >= 8 && len(out) >= 8 {
+		f.manyImages(out, w, n, scale)
+		return
+	}
 	for i := range out {
 		c := w[i*n : (i+1)*n]
 		mask := uint64(int64(c[n-1]) >> 63)

@@ -189,7 +189,7 @@ func (s *system) work(p *plan, results int) float64 {
 // reconstruct returns numerators and determinant.
 func (s *system) reconstruct(p *plan, columns []int) (nums [][]intpoly.Poly, den intpoly.Poly, err error) {
 	terms, results := s.degree+1, 1+s.rhs*len(columns)
-	var all intpoly.Images
+	all := intpoly.NewImages(s.primes())
 	var primes modp.Primes
 	for used, tried := 0, 0; used < s.primes(); tried++ {
 		if tried > 2*s.primes()+64 {
