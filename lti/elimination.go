@@ -79,15 +79,16 @@ func (e *elimination) singular(found *polymatrix.SingularError) error {
 	}
 	// The null space of the transposed set holds the rows that add up to 0.
 	_, _, err := polymatrix.SolveAll(transposed, nil, nil)
-	which := "the equations"
+	what := "the equations repeat or contradict each other and leave"
 	if rows, ok := err.(*polymatrix.SingularError); ok {
 		for _, i := range rows.Undetermined {
 			out.Dependent = append(out.Dependent, i+1)
 		}
-		which = numbered(out.Dependent)
+		if what = numbered(out.Dependent) + " repeat or contradict each other and leave"; len(out.Dependent) == 1 {
+			what = numbered(out.Dependent) + " holds none of the unknown signals, so that the others leave"
+		}
 	}
-	out.Reason = fmt.Sprintf("%s%s repeat or contradict each other and leave %s open%s", s.with(e.inputs), which,
-		shortened(out.Open), s.twice(out.Dependent))
+	out.Reason = fmt.Sprintf("%s%s %s open%s", s.with(e.inputs), what, shortened(out.Open), s.twice(out.Dependent))
 	return out
 }
 

@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math/big"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"testing"
 
@@ -174,7 +175,16 @@ func TestSingular(t *testing.T) {
 	e.Equation("2 x + 2 y = u")
 	s := build(t, e)
 	var d *lti.DeterminacyError
-	if _, err := s.TransferFunction("u", "x"); !errors.As(err, &d) || strings.Join(d.Open, " ") != "x y" {
+	if _, err := s.TransferFunction("u", "x"); !errors.As(err, &d) || strings.Join(d.Open, " ") != "x y" || !slices.Equal(d.Dependent, []int{2, 3}) ||
+		err.Error() != "with u as the input equations 2 and 3 repeat or contradict each other and leave x, y open" {
+		t.Errorf("%v", err)
+	}
+	if _, err := s.TransferFunctions([]string{"u", "v"}, []string{"x", "y"}); !errors.As(err, &d) || !strings.Contains(err.Error(), "too many") {
+		t.Errorf("%v", err)
+	}
+	one := build(t, record(map[string]string{"u": "m", "v": "m", "x": "m", "y": "m"}, nil, "v = u", "x + y = u"))
+	if _, err := one.TransferFunction("u", "x", "v"); !errors.As(err, &d) || !slices.Equal(d.Dependent, []int{1}) ||
+		!strings.Contains(err.Error(), "equation 1 holds none of the unknown signals") {
 		t.Errorf("%v", err)
 	}
 	var unknown *lti.UnknownNameError
