@@ -42,7 +42,7 @@ func ExampleSystem_InitialState() {
 	fmt.Println(tf.Must(state.Response("level", tf.Must(system.Step("opening", "50 mm")))))
 	fmt.Println(tf.Must(state.Response("level'", tf.Must(system.Step("opening", "50 mm")))))
 	// Output:
-	// initial values: the equations are of order 1 and need as many initial values; none is given; it suffices to give level too
+	// initial values: the equations are of order 1 and need as many initial values; none is given; it suffices to give level
 	// initial value inflow = 1 m^3/s: the equations make it -0.5 m^3/s, as level = 0.2 m
 	// -0.5 m^3/s -3/22400 m/s
 	// 0.2 e^(−3 t/4480) [m]

@@ -1,6 +1,7 @@
 package lti
 
 import (
+	"cmp"
 	"fmt"
 	"math/big"
 	"slices"
@@ -101,16 +102,20 @@ func (s *System) InitialState(inputs []string, values ...InitialValue) (*Initial
 }
 
 // bySignificance orders the unknowns: the higher a derivative of one stands in
-// the equations, the sooner it counts as a state.
+// the equations as they were entered, the sooner it counts as a state; where that
+// is the same, in the equations without their integrals.
 func (x *InitialState) bySignificance(unknowns []int) []int {
-	order := make(map[int]int, len(unknowns))
+	order, entered := make(map[int]int, len(unknowns)), make(map[int]int, len(unknowns))
 	for _, r := range x.system.rows {
 		for t := range r.terms {
 			order[t.signal] = max(order[t.signal], t.order)
+			entered[t.signal] = max(entered[t.signal], t.order-r.integrals)
 		}
 	}
 	sorted := slices.Clone(unknowns)
-	slices.SortStableFunc(sorted, func(i, j int) int { return order[j] - order[i] })
+	slices.SortStableFunc(sorted, func(i, j int) int {
+		return cmp.Or(entered[j]-entered[i], order[j]-order[i])
+	})
 	for _, signal := range sorted {
 		x.orders = append(x.orders, order[signal])
 	}
@@ -268,15 +273,17 @@ func (x *InitialState) require(k *knowledge, given int) error {
 		}
 	}
 	e.Reason = fmt.Sprintf("the equations are of order %d and need as many initial values; ", n)
+	suffices := fmt.Sprintf("; it suffices to give %s too", shortened(e.Missing))
 	switch {
 	case given == 0:
 		e.Reason += "none is given"
+		suffices = strings.TrimSuffix(suffices, " too")
 	case known == given:
 		e.Reason += fmt.Sprintf("%d given", given)
 	default:
 		e.Reason += fmt.Sprintf("%d given, of which only %d do not follow from the others", given, known)
 	}
-	e.Reason += fmt.Sprintf("; it suffices to give %s too", shortened(e.Missing))
+	e.Reason += suffices
 	return e
 }
 

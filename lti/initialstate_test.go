@@ -25,7 +25,7 @@ func TestInitialStateRefusals(t *testing.T) {
 		values []lti.InitialValue
 		says   []string
 	}{
-		{both, nil, []string{"the equations are of order 2 and need as many initial values; none is given; it suffices to give x, x' too"}},
+		{both, nil, []string{"the equations are of order 2 and need as many initial values; none is given; it suffices to give x, x'"}},
 		{both, []lti.InitialValue{lti.Initially("x", "3 mm")}, []string{"1 given; it suffices to give x' too"}},
 		{both, []lti.InitialValue{lti.Initially("x'", "3 mm/s")}, []string{"1 given; it suffices to give x too"}},
 		{both, []lti.InitialValue{lti.Initially("x", "3 mm"), lti.Initially("x", "0.3 cm")}, []string{"2 given, of which only 1 do not follow from the others; it suffices to give x' too"}},

@@ -9,6 +9,7 @@ import (
 
 	"github.com/qofs/qofs/lti"
 	"github.com/qofs/qofs/poly"
+	"github.com/qofs/qofs/tf"
 )
 
 var heldPool = map[string]string{"setpoint": "m", "error": "m", "opening": "mm", "level": "m", "offtake": "m^3/s"}
@@ -142,4 +143,33 @@ func ExampleEquations_Equation() {
 	fmt.Println(system.TransferFunction("setpoint", "level"))
 	// Output:
 	// (33600 s + 21)/(1.12e8 s^2 + 108600 s + 21) [setpoint: m -> level: m] <nil>
+}
+
+// A loop that is let go with the level 0.1 m too high and the gate where it was:
+// where the controller's integral stands follows from both.
+func ExampleInitialState_FreeResponse() {
+	loop := lti.NewEquations()
+	loop.Signal("setpoint", "m")
+	loop.Signal("error", "m")
+	loop.Signal("opening", "mm")
+	loop.Signal("level", "m")
+	loop.Constant("kp", "400 mm/m")
+	loop.Constant("ki", "0.25 mm/(m*s)")
+	loop.Constant("kq", "0.0042 m^3/(s*mm)")
+	loop.Constant("area", "5600 m^2")
+	loop.Constant("weir", "3.75 m^2/s")
+	loop.Equation("error = setpoint - level")
+	loop.Equation("opening = kp error + ki integral(error)")
+	loop.Equation("area level' + weir level = kq opening")
+	system := tf.Must(loop.Build())
+	_, err := system.InitialState([]string{"setpoint"})
+	fmt.Println(err)
+	state := tf.Must(system.InitialState([]string{"setpoint"}, lti.Initially("level", "0.1 m"), lti.Initially("opening", "0 mm")))
+	level := tf.Must(state.FreeResponse("level"))
+	fmt.Printf("%.4g\n", level)
+	fmt.Printf("after ten minutes %.2g m\n", tf.Must(level.At(600)))
+	// Output:
+	// initial values: the equations are of order 2 and need as many initial values; none is given; it suffices to give level, opening
+	// 0.007622 e^(−0.0002668 t) + 0.09238 e^(−0.0007029 t) [m]
+	// after ten minutes 0.067 m
 }
