@@ -29,7 +29,10 @@ const (
 //	diagram, err := d.Build()
 //	loop, err := diagram.TransferFunction("setpoint", "level")
 //
-// Its methods only record; Build reports every fault at once. All blocks are
+// Draw what is there once: a plant that is drawn as two blocks, one for each of
+// its inputs, has each of its modes twice.
+//
+// The methods only record; Build reports every fault at once. All blocks are
 // tf.Continuous (NewBlockDiagram) or all are tf.Discrete
 // (NewDiscreteBlockDiagram). It is not safe for concurrent use; the Diagram is.
 type BlockDiagram[G tf.Block[G]] struct {

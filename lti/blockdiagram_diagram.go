@@ -212,11 +212,24 @@ func (d *Diagram[G]) String() string {
 		fmt.Fprintf(&b, "block %s, %s to %s: %v\n", k.name, k.from, k.to, k.function)
 	}
 	for _, s := range d.record.sums {
-		fmt.Fprintf(&b, "sum %s =", s.to)
-		for _, t := range s.terms {
-			fmt.Fprintf(&b, " %s", t)
-		}
-		b.WriteByte('\n')
+		fmt.Fprintf(&b, "sum %s = %s\n", s.to, inWords(s.terms))
 	}
 	return strings.TrimSuffix(b.String(), "\n")
+}
+
+// inWords writes a sum as a person would: setpoint − measured.
+func inWords(terms []Summand) string {
+	var b strings.Builder
+	for i, t := range terms {
+		switch {
+		case i > 0 && t.sign > 0:
+			b.WriteString(" + ")
+		case i > 0:
+			b.WriteString(" − ")
+		case t.sign < 0:
+			b.WriteString("−")
+		}
+		b.WriteString(t.signal)
+	}
+	return b.String()
 }
