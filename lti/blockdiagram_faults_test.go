@@ -30,6 +30,8 @@ func TestDiagramFaults(t *testing.T) {
 		says []string
 	}{
 		{"unknown unit", func(d diagram) { d.Input("x", "furlongs") }, new(*lti.DeclarationError), []string{"input x", "furlongs"}},
+		{"unknown unit at a block", func(d diagram) { d.Output("x", "furlongs"); d.Block("b", gain, "in", "x") }, new(*lti.DeclarationError), []string{"output x", "furlongs"}},
+		{"unknown unit in a sum", func(d diagram) { d.Output("x", "furlongs"); d.Sum("x", lti.Plus("in")) }, new(*lti.DeclarationError), []string{"output x", "furlongs"}},
 		{"bad name", func(d diagram) { d.Input("x y", "m") }, new(*lti.DeclarationError), []string{"letters"}},
 		{"declared twice", func(d diagram) { d.Signal("in", "mA") }, new(*lti.DeclarationError), []string{"signal in", "already"}},
 		{"undetermined", func(d diagram) { d.Signal("x", "mA") }, new(*lti.DeclarationError), []string{"signal x", "Input"}},
@@ -263,16 +265,16 @@ func TestDiagramJSON(t *testing.T) {
 }
 
 func TestDiagramTextLimits(t *testing.T) {
-	for _, function := range []string{"1/(s + 1)^400", "1/s"} {
+	for function, count := range map[string]int{"1/(s + 1)^400": 300, "1/s": 2000} {
 		var b strings.Builder
 		b.WriteString(`{"inputs": {"a": "1"}, "blocks": {`)
-		for i := range 2000 {
+		for i := range count {
 			fmt.Fprintf(&b, `"b%d": {"from": "a", "to": "x%d", "function": "%s"}, `, i, i, function)
 		}
 		b.WriteString(`"b": {"from": "a", "to": "y", "function": "1"}}}`)
 		var syntax *lti.SyntaxError
 		if _, err := lti.ParseBlockDiagram(b.String()); !errors.Is(err, lti.ErrLimit) || !errors.As(err, &syntax) {
-			t.Errorf("2000 blocks %s: %v", function, err)
+			t.Errorf("%d blocks %s: %v", count, function, err)
 		}
 	}
 	if _, err := lti.ParseBlockDiagram(strings.Repeat(" ", 1<<20+1)); !errors.Is(err, lti.ErrLimit) {

@@ -218,6 +218,11 @@ func TestHiddenModes(t *testing.T) {
 			t.Errorf("hidden from %s to %s: %v, %v, want %s", c.from, c.to, modes, err, c.want)
 		}
 	}
+	// Integers without a common divisor, whatever the loops are multiplied out to.
+	even := pure(t, "e = +r -y", "e u:3/(2 s + 1)", "u y:1/(2 s + 1)")
+	if p := tf.Must(even.CharacteristicPolynomial()); p.Text("s") != "s^2 + s + 1" { // (2 s + 1)^2 + 3
+		t.Errorf("characteristic polynomial %v", p)
+	}
 	g := tf.Must(diagram.TransferFunction("u", "y"))
 	if !g.Numerator().IsZero() {
 		t.Errorf("no path: %v", g)
