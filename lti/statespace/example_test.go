@@ -1,0 +1,49 @@
+package statespace_test
+
+import (
+	"fmt"
+	"math/big"
+
+	"github.com/qofs/qofs/lti/statespace"
+	"github.com/qofs/qofs/tf"
+	"github.com/qofs/qofs/units"
+)
+
+// The pool of a canal behind a gate: numbers belong to the units of the signals.
+func ExampleNew() {
+	level := []units.Signal{{Name: "level", Unit: units.MustParse("m")}}
+	opening := []units.Signal{{Name: "opening", Unit: units.MustParse("mm")}}
+	pool, err := statespace.New(level, opening, level, statespace.Matrices{
+		State:  [][]*big.Rat{{big.NewRat(-375, 560000)}}, // 3.75 m²/s over 5600 m²
+		Input:  [][]*big.Rat{{big.NewRat(42, 56000000)}}, // 0.0042 m³/(s·mm)
+		Output: [][]*big.Rat{{big.NewRat(1, 1)}},
+	})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	fmt.Printf("%.4g\n", pool)
+	fmt.Println(tf.Must(pool.TransferFunction("opening", "level")))
+	// Output:
+	// level' = -0.0006696 level + 7.5e-7 opening [m/s]
+	// level = level [m]
+	// 21/(2.8e7 s + 18750) [opening: mm -> level: m]
+}
+
+// The heater of a kiln zone and a thermocouple that has the same lag as the load:
+// one mode is hidden.
+func ExampleContinuous_MinimalRealization() {
+	g := tf.MustParse("(40 s + 1)/((40 s + 1) (9392 s + 1)) [power: W -> reading: K]")
+	zone := tf.Must(statespace.ControllableForm(g, "zone"))
+	minimal, hidden, err := zone.MinimalRealization()
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	fmt.Println(len(zone.States()), "states,", len(minimal.States()), "of them shown; hidden:", hidden.Unobservable.Text("s"))
+	fmt.Println(minimal)
+	// Output:
+	// 2 states, 1 of them shown; hidden: s + 0.025
+	// zone_1_observed' = -1/9392 zone_1_observed + 40 power [W*s]
+	// reading = 1/375680 zone_1_observed [K]
+}

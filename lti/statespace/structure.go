@@ -1,0 +1,233 @@
+package statespace
+
+import (
+	"math/big"
+	"slices"
+
+	"github.com/qofs/qofs/poly"
+	"github.com/qofs/qofs/units"
+)
+
+// maxEntry bounds the entries that come up in the search for a subspace, in
+// bits.
+const maxEntry = 1 << 17
+
+// subspace is spanned by rows in reduced echelon form: in the column pivots[k]
+// row k has 1 and the others have 0. The rows are in no particular order.
+type subspace struct {
+	rows   matrix
+	pivots []int
+}
+
+// add takes in a row and returns what was new in it, nil if nothing was.
+func (s *subspace) add(row []*big.Rat) ([]*big.Rat, error) {
+	r := make([]*big.Rat, len(row))
+	for j, v := range row {
+		r[j] = new(big.Rat).Set(v)
+	}
+	for k, p := range s.pivots {
+		subtract(r, s.rows[k], new(big.Rat).Set(r[p]))
+	}
+	pivot := slices.IndexFunc(r, func(v *big.Rat) bool { return v.Sign() != 0 })
+	if pivot < 0 {
+		return nil, nil
+	}
+	inverse := new(big.Rat).Inv(r[pivot])
+	for _, v := range r {
+		if v.Mul(v, inverse); v.Num().BitLen() > maxEntry || v.Denom().BitLen() > maxEntry {
+			return nil, ErrLimit
+		}
+	}
+	for _, other := range s.rows {
+		subtract(other, r, new(big.Rat).Set(other[pivot]))
+	}
+	s.rows, s.pivots = append(s.rows, r), append(s.pivots, pivot)
+	return r, nil
+}
+
+// subtract takes k·s off r.
+func subtract(r, s []*big.Rat, k *big.Rat) {
+	if k.Sign() == 0 {
+		return
+	}
+	for j, v := range s {
+		if v.Sign() != 0 {
+			r[j].Sub(r[j], new(big.Rat).Mul(k, v))
+		}
+	}
+}
+
+// sort puts the rows into the order of their pivots.
+func (s *subspace) sort() {
+	order := make([]int, len(s.pivots))
+	for k := range order {
+		order[k] = k
+	}
+	slices.SortFunc(order, func(k, l int) int { return s.pivots[k] - s.pivots[l] })
+	s.rows = s.rows.rows(order)
+	slices.Sort(s.pivots)
+}
+
+// closure returns the smallest subspace that holds the generators and, with each
+// row r, r·m.
+func closure(generators, m matrix) (*subspace, error) {
+	s := &subspace{}
+	queue := slices.Clone(generators)
+	for len(queue) > 0 {
+		row := queue[0]
+		queue = queue[1:]
+		fresh, err := s.add(row)
+		if err != nil {
+			return nil, err
+		}
+		if fresh != nil && len(s.rows) < len(m) {
+			queue = append(queue, matrix{fresh}.times(m, len(m))[0])
+		}
+	}
+	s.sort()
+	return s, nil
+}
+
+func (c model) controllable() (*subspace, error) {
+	return closure(c.input.transpose(len(c.inputs)), c.state.transpose(len(c.states)))
+}
+
+func (c model) observable() (*subspace, error) { return closure(c.output, c.state) }
+
+// ControllabilityRank returns the dimension of the space of states that the
+// inputs can reach from 0 (Kalman 1960): the number of states where the model is
+// controllable. The rank is exact. The error is ErrLimit where numbers of more
+// than 131072 bits come up.
+func (c model) ControllabilityRank() (int, error) {
+	s, err := c.controllable()
+	if err != nil {
+		return 0, err
+	}
+	return len(s.rows), nil
+}
+
+// ObservabilityRank returns the number of combinations of states that the outputs
+// tell (Kalman 1960): the number of states where the model is observable. The
+// rank is exact; the error is that of ControllabilityRank.
+func (c model) ObservabilityRank() (int, error) {
+	s, err := c.observable()
+	if err != nil {
+		return 0, err
+	}
+	return len(s.rows), nil
+}
+
+// HiddenModes are the modes of a model that its transfer functions do not show,
+// as monic polynomials that are 1 where there are none. Their roots may be
+// unstable.
+type HiddenModes struct {
+	_ [0]func()
+	// Uncontrollable modes are reached by no input.
+	Uncontrollable poly.Poly
+	// Unobservable modes are reached, and shown by no output.
+	Unobservable poly.Poly
+}
+
+// minimal returns the controllable and observable part.
+func (c model) minimal() (reduced model, hidden HiddenModes, err error) {
+	reached, err := c.controllable()
+	if err != nil {
+		return model{}, hidden, err
+	}
+	part, rest := c.split(reached)
+	if hidden.Uncontrollable, err = rest.CharacteristicPolynomial(); err != nil {
+		return model{}, hidden, err
+	}
+	seen, err := part.observable()
+	if err != nil {
+		return model{}, hidden, err
+	}
+	reduced = part.project(seen)
+	all, err := part.CharacteristicPolynomial()
+	if err != nil {
+		return model{}, hidden, err
+	}
+	shown, err := reduced.CharacteristicPolynomial()
+	if err != nil {
+		return model{}, hidden, err
+	}
+	hidden.Unobservable, _, err = all.QuoRem(shown)
+	return reduced, hidden, err
+}
+
+// split returns the model on the states x = (rows of s)ᵀ·z, which is closed under
+// the state matrix, and the state matrix of what is left. As the rows are in
+// echelon form, z are the states at the pivots, with their names and units.
+func (c model) split(s *subspace) (part, rest model) {
+	v := s.rows.transpose(len(c.states)) // x = v·z
+	others := others(len(c.states), s.pivots)
+	part = model{states: at(c.states, s.pivots), inputs: c.inputs, outputs: c.outputs,
+		state: c.state.rows(s.pivots).times(v, len(s.pivots)), input: c.input.rows(s.pivots),
+		output: c.output.times(v, len(s.pivots)), feedthrough: c.feedthrough}
+	// w = x[others] − v[others]·x[pivots] follows its own equation.
+	rest = model{states: at(c.states, others), input: zeros(len(others), 0),
+		state: c.state.rows(others).columns(others).minus(v.rows(others).times(c.state.rows(s.pivots).columns(others), len(others)))}
+	return part, rest
+}
+
+// project returns the model of z = (rows of s)·x, on which alone the outputs
+// depend. A row with more than its pivot is a combination of states.
+func (c model) project(s *subspace) model {
+	w := s.rows
+	out := model{inputs: c.inputs, outputs: c.outputs, feedthrough: c.feedthrough,
+		state: w.times(c.state, len(c.states)).columns(s.pivots), input: w.times(c.input, len(c.inputs)), output: c.output.columns(s.pivots)}
+	taken := map[string]bool{}
+	for _, p := range s.pivots {
+		taken[c.states[p].Name] = true
+	}
+	for k, p := range s.pivots {
+		signal := c.states[p]
+		if slices.IndexFunc(w[k][p+1:], func(v *big.Rat) bool { return v.Sign() != 0 }) >= 0 {
+			for signal.Name += "_observed"; taken[signal.Name]; signal.Name += "_" {
+			}
+			taken[signal.Name] = true
+		}
+		out.states = append(out.states, signal)
+	}
+	return out
+}
+
+// others returns the indices below n that are not in a list.
+func others(n int, indices []int) []int {
+	var out []int
+	for i := range n {
+		if !slices.Contains(indices, i) {
+			out = append(out, i)
+		}
+	}
+	return out
+}
+
+func at(signals []units.Signal, indices []int) []units.Signal {
+	out := make([]units.Signal, len(indices))
+	for k, i := range indices {
+		out[k] = signals[i]
+	}
+	return out
+}
+
+// MinimalRealization returns the model without the modes that no transfer function
+// shows, and these modes. It has the same transfer functions, each with the
+// hidden factors cancelled.
+//
+// States of the result are states of c where no unobservable mode was removed. A
+// state in which others are mixed to what the outputs depend on has
+// "_observed" at the end of its name.
+//
+// The method is the decomposition of Kalman (1963) with exact subspaces. The
+// error is ErrLimit, as for ControllabilityRank and CharacteristicPolynomial.
+func (c Continuous) MinimalRealization() (Continuous, HiddenModes, error) {
+	m, hidden, err := c.minimal()
+	return Continuous{model: m}, hidden, err
+}
+
+// MinimalRealization is Continuous.MinimalRealization.
+func (d Discrete) MinimalRealization() (Discrete, HiddenModes, error) {
+	m, hidden, err := d.minimal()
+	return Discrete{model: m, period: d.period}, hidden, err
+}
