@@ -66,6 +66,13 @@ func BenchmarkChain(b *testing.B) {
 				}
 			}
 		})
+		b.Run(fmt.Sprintf("StateSpace/%d", n), func(b *testing.B) {
+			for b.Loop() {
+				if _, err := s.StateSpace([]string{"u"}, []string{last}); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
 		b.Run(fmt.Sprintf("FreeResponse/%d", n), func(b *testing.B) {
 			state, err := s.InitialState([]string{"u"}, values...)
 			if err != nil {

@@ -37,8 +37,8 @@
 // in an equation, and no other. The name "integral" is reserved.
 //
 // TransferFunctions does so for several inputs and outputs at once, Inspect says
-// in words what a function hides, and InitialState goes on from initial values
-// that are not 0.
+// in words what a function hides, StateSpace brings the equations to first order,
+// and InitialState goes on from initial values that are not 0.
 package lti
 
 import (

@@ -6,6 +6,7 @@ import (
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/lex"
+	"github.com/qofs/qofs/lti/statespace"
 )
 
 // ErrLimit: a documented bound on size or work was reached.
@@ -100,3 +101,19 @@ func (e *InitialValueError) Error() string {
 
 // Unwrap returns the error behind the fault.
 func (e *InitialValueError) Unwrap() error { return e.Err }
+
+// ImproperError tells that a signal follows a derivative of an input, so that
+// the equations have no state-space form with it.
+type ImproperError struct {
+	Signal, Input string
+	Order         int // of the derivative
+}
+
+// Error names both and says what mends it.
+func (e *ImproperError) Error() string {
+	return fmt.Sprintf("%s follows a derivative of order %d of %s, which no state-space form does; "+
+		"leave it out of the outputs, take the derivative for the input, or add the lag that the machine has", e.Signal, e.Order, e.Input)
+}
+
+// Unwrap returns statespace.ErrImproper.
+func (e *ImproperError) Unwrap() error { return statespace.ErrImproper }

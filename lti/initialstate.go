@@ -1,7 +1,6 @@
 package lti
 
 import (
-	"cmp"
 	"fmt"
 	"math/big"
 	"slices"
@@ -94,32 +93,12 @@ func (s *System) InitialState(inputs []string, values ...InitialValue) (*Initial
 		return nil, ErrLimit
 	}
 	x := &InitialState{system: s, inputs: at}
-	x.elimination = s.elimination(nil, x.bySignificance(unknowns))
+	unknowns, x.orders = s.bySignificance(unknowns)
+	x.elimination = s.elimination(nil, unknowns)
 	if err := x.complete(values); err != nil {
 		return nil, err
 	}
 	return x, nil
-}
-
-// bySignificance orders the unknowns: the higher a derivative of one stands in
-// the equations as they were entered, the sooner it counts as a state; where that
-// is the same, in the equations without their integrals.
-func (x *InitialState) bySignificance(unknowns []int) []int {
-	order, entered := make(map[int]int, len(unknowns)), make(map[int]int, len(unknowns))
-	for _, r := range x.system.rows {
-		for t := range r.terms {
-			order[t.signal] = max(order[t.signal], t.order)
-			entered[t.signal] = max(entered[t.signal], t.order-r.integrals)
-		}
-	}
-	sorted := slices.Clone(unknowns)
-	slices.SortStableFunc(sorted, func(i, j int) int {
-		return cmp.Or(entered[j]-entered[i], order[j]-order[i])
-	})
-	for _, signal := range sorted {
-		x.orders = append(x.orders, order[signal])
-	}
-	return sorted
 }
 
 // complete finds the states.

@@ -1,6 +1,7 @@
 package lti
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 	"strings"
@@ -68,6 +69,28 @@ func (s *System) unknowns(inputs, outputs, zero []int, call string) ([]int, erro
 		return nil, s.miscounted(inputs, rest, zero, signs, call)
 	}
 	return rest, nil
+}
+
+// bySignificance orders unknowns, and returns the highest order of each in the
+// rows. The higher a derivative of one stands in the equations as they were
+// entered, the sooner it counts as a state; where that is the same, in the
+// equations without their integrals.
+func (s *System) bySignificance(unknowns []int) (sorted, orders []int) {
+	order, entered := make(map[int]int, len(unknowns)), make(map[int]int, len(unknowns))
+	for _, r := range s.rows {
+		for t := range r.terms {
+			order[t.signal] = max(order[t.signal], t.order)
+			entered[t.signal] = max(entered[t.signal], t.order-r.integrals)
+		}
+	}
+	sorted = slices.Clone(unknowns)
+	slices.SortStableFunc(sorted, func(i, j int) int {
+		return cmp.Or(entered[j]-entered[i], order[j]-order[i])
+	})
+	for _, signal := range sorted {
+		orders = append(orders, order[signal])
+	}
+	return sorted, orders
 }
 
 // miscounted explains that the number of equations is not that of unknowns.

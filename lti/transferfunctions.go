@@ -56,18 +56,8 @@ func (s *System) transferFunctions(call string, inputs, outputs, held []string) 
 	if len(inputs)*len(outputs) > maxPairs {
 		return nil, ErrLimit
 	}
-	in, err := s.lookUp(slices.Concat(inputs, held))
+	in, out, zero, err := s.parts(inputs, outputs, held)
 	if err != nil {
-		return nil, err
-	}
-	out := make([]derivative, len(outputs))
-	for i, name := range outputs {
-		if out[i], err = s.derivative(name); err != nil {
-			return nil, err
-		}
-	}
-	in, zero := in[:len(inputs)], in[len(inputs):]
-	if err := s.apart(in, out, zero); err != nil {
 		return nil, err
 	}
 	solved, err := s.solved(in, out, zero, fmt.Sprintf(call, quoted(inputs), quoted(outputs)))
@@ -85,6 +75,22 @@ func (s *System) transferFunctions(call string, inputs, outputs, held []string) 
 		}
 	}
 	return all, nil
+}
+
+// parts looks up the signals of a choice of inputs and outputs.
+func (s *System) parts(inputs, outputs, held []string) (in []int, out []derivative, zero []int, err error) {
+	all, err := s.lookUp(slices.Concat(inputs, held))
+	if err != nil {
+		return nil, nil, nil, err
+	}
+	out = make([]derivative, len(outputs))
+	for i, name := range outputs {
+		if out[i], err = s.derivative(name); err != nil {
+			return nil, nil, nil, err
+		}
+	}
+	in, zero = all[:len(inputs)], all[len(inputs):]
+	return in, out, zero, s.apart(in, out, zero)
 }
 
 // apart checks that no signal has two parts to play.
