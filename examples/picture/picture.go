@@ -65,7 +65,14 @@ type Panel struct {
 
 // New returns a panel with a curve through the points (x, y), ascending in x, and
 // an axis named for what it shows, such as "level / mm".
-func New(axis string, x, y []float64, ink color.Color) *Panel {
+func New(axis string, x, y []float64, ink color.Color) *Panel { return newPanel(axis, x, y, ink, 1.6) }
+
+// NewFine is New with a fine line, for what scatters.
+func NewFine(axis string, x, y []float64, ink color.Color) *Panel {
+	return newPanel(axis, x, y, ink, 0.6)
+}
+
+func newPanel(axis string, x, y []float64, ink color.Color, width float64) *Panel {
 	p := &Panel{plot: plot.New(), x: x}
 	p.plot.Y.Label.Text = axis
 	for _, a := range []*plot.Axis{&p.plot.X, &p.plot.Y} {
@@ -91,7 +98,7 @@ func New(axis string, x, y []float64, ink color.Color) *Panel {
 		zero.Width, zero.Color = 0.4, Slate
 		p.ground = append(p.ground, zero)
 	}
-	p.Curve(x, y, ink, 1.6)
+	p.Curve(x, y, ink, width)
 	return p
 }
 
