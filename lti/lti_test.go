@@ -179,6 +179,13 @@ func TestSingular(t *testing.T) {
 		err.Error() != "with u as the input equations 2 and 3 repeat or contradict each other and leave x, y open" {
 		t.Errorf("%v", err)
 	}
+	message := "equations 2 and 3 repeat or contradict each other and leave x, y open"
+	if _, err := s.InitialState([]string{"u"}); !errors.As(err, &d) || err.Error() != message {
+		t.Errorf("%v", err)
+	}
+	if _, err := s.StateSpace([]string{"u"}, []string{"x"}); !errors.As(err, &d) || err.Error() != "with u as the input "+message {
+		t.Errorf("%v", err)
+	}
 	if _, err := s.TransferFunctions([]string{"u", "v"}, []string{"x", "y"}); !errors.As(err, &d) || !strings.Contains(err.Error(), "too many") {
 		t.Errorf("%v", err)
 	}
