@@ -71,6 +71,13 @@ func TestTransferFunctionsRefusals(t *testing.T) {
 	if _, err := s.TransferFunctions([]string{"opening"}, many, "offtake"); !errors.Is(err, lti.ErrLimit) {
 		t.Errorf("%v", err)
 	}
+	most := "level" + strings.Repeat("'", 16)
+	if _, err := s.TransferFunction("opening", most, "offtake"); err != nil {
+		t.Errorf("%v", err)
+	}
+	if _, err := s.TransferFunction("opening", most+"'", "offtake"); !errors.Is(err, lti.ErrLimit) {
+		t.Errorf("%v", err)
+	}
 	var unknown *lti.UnknownNameError
 	if _, err := s.TransferFunctions([]string{"opening"}, []string{"levle"}, "offtake"); !errors.As(err, &unknown) {
 		t.Errorf("%v", err)
