@@ -19,6 +19,7 @@ var above = map[string][]string{
 	"tf":             {"poly", "units"},
 	"lti":            {"poly", "units", "tf", "lti/statespace"},
 	"lti/statespace": {"poly", "units", "tf"},
+	"lti/impedance":  {"poly", "units", "tf"},
 	"lti/response":   {"poly", "units", "tf", "lti", "lti/statespace"},
 	"lti/stability":  {"poly", "units", "tf", "lti", "lti/statespace", "lti/response"},
 	"lti/design":     {"poly", "units", "tf", "lti", "lti/statespace", "lti/response", "lti/stability"},
