@@ -1,0 +1,436 @@
+package lti
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"math/big"
+
+	"gonum.org/v1/gonum/mat"
+	"gonum.org/v1/gonum/num/dual"
+
+	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/lex"
+	"github.com/qofs/qofs/lti/statespace"
+	"github.com/qofs/qofs/units"
+)
+
+// ModelError tells that the function of a Nonlinear does not do as it should.
+type ModelError struct {
+	Reason string
+	Err    error // the error behind it, or nil
+}
+
+// Error gives the reason.
+func (e *ModelError) Error() string { return "nonlinear model: " + e.Reason }
+
+// Unwrap returns the error behind the fault.
+func (e *ModelError) Unwrap() error { return e.Err }
+
+// OperatingError tells what is wrong with a value of an operating point.
+type OperatingError struct {
+	Signal string
+	Reason string
+	Err    error // the error behind it, or nil
+}
+
+// Error names the signal and the reason.
+func (e *OperatingError) Error() string {
+	if e.Signal == "" {
+		return "operating point: " + e.Reason
+	}
+	return fmt.Sprintf("operating point, %s: %s", lex.Excerpt(e.Signal, 0), e.Reason)
+}
+
+// Unwrap returns the error behind the fault.
+func (e *OperatingError) Unwrap() error { return e.Err }
+
+// NotAtRestError tells that an operating point is no equilibrium, and how the
+// states drift there.
+type NotAtRestError struct {
+	Drifts []Drift
+}
+
+// Drift is a state and its rate.
+type Drift struct {
+	State units.Signal
+	Rate  float64 // in the unit of the state per second
+}
+
+// Error is "not an equilibrium: level drifts 3.1 mm/s".
+func (e *NotAtRestError) Error() string {
+	text := "not an equilibrium: "
+	for i, d := range e.Drifts {
+		if i > 0 {
+			text += ", "
+		}
+		text += fmt.Sprintf("%s drifts %.2g %s", d.State.Name, d.Rate, d.State.Unit.Div(units.MustParse("s")))
+	}
+	return text + "; Equilibrium finds a point at rest"
+}
+
+// exactFloat returns the number that a float64 is.
+func exactFloat(v float64) (*big.Rat, error) {
+	if r := new(big.Rat).SetFloat64(v); r != nil {
+		return r, nil
+	}
+	return nil, fault.ErrNotFinite
+}
+
+func unknownSignal(name string, signals []units.Signal) error {
+	e := &UnknownNameError{Kind: "signal", Name: name}
+	for _, s := range signals {
+		e.Have = append(e.Have, s.Name)
+	}
+	return e
+}
+
+// operation is a model at a point.
+type operation struct {
+	m      Nonlinear
+	values []float64 // of states and inputs
+	given  []bool    // whether there is a value at all
+	sought []bool
+}
+
+func newOperation(m Nonlinear, values []OperatingValue) (*operation, error) {
+	n := len(m.States) + len(m.Inputs)
+	o := &operation{m: m, values: make([]float64, n), given: make([]bool, n), sought: make([]bool, n)}
+	if m.Equations == nil {
+		return nil, &ModelError{Reason: "Equations is nil"}
+	}
+	// The signals are checked as those of the result will be.
+	if _, err := statespace.New(m.States, m.Inputs, m.Outputs, statespace.Matrices{}); err != nil {
+		return nil, err
+	}
+	for i := range n {
+		for j := range i {
+			if o.signal(i).Name == o.signal(j).Name {
+				return nil, &OperatingError{Signal: o.signal(i).Name, Reason: "is both a state and an input"}
+			}
+		}
+	}
+	for _, v := range values {
+		i := 0
+		for i < n && o.signal(i).Name != v.Signal {
+			i++
+		}
+		if i == n {
+			var all []units.Signal
+			for k := range n {
+				all = append(all, o.signal(k))
+			}
+			// Outputs follow from the others.
+			if len(v.Signal) > 0 && containsSignal(m.Outputs, v.Signal) {
+				continue
+			}
+			return nil, unknownSignal(v.Signal, all)
+		}
+		if o.given[i] {
+			return nil, &OperatingError{Signal: v.Signal, Reason: "has two values"}
+		}
+		number, err := v.number(o.signal(i).Unit)
+		if err != nil {
+			return nil, &OperatingError{Signal: v.Signal, Reason: err.Error(), Err: err}
+		}
+		o.values[i], o.given[i], o.sought[i] = number, true, v.Sought
+	}
+	return o, nil
+}
+
+func containsSignal(signals []units.Signal, name string) bool {
+	for _, s := range signals {
+		if s.Name == name {
+			return true
+		}
+	}
+	return false
+}
+
+// number reads the absolute quantity in a unit.
+func (v OperatingValue) number(unit units.Unit) (float64, error) {
+	if v.found != nil {
+		return *v.found, nil
+	}
+	q, err := units.ParseAbsolute(v.Quantity)
+	if err != nil {
+		return 0, err
+	}
+	return q.In(unit)
+}
+
+// signal returns a state or an input.
+func (o *operation) signal(i int) units.Signal {
+	if n := len(o.m.States); i >= n {
+		return o.m.Inputs[i-n]
+	}
+	return o.m.States[i]
+}
+
+// slopes are the values of rates and outputs, and their derivatives by states and
+// inputs.
+type slopes struct {
+	values []float64
+	matrix *mat.Dense
+}
+
+// slopes calls the model once for each state and input.
+func (o *operation) slopes() (*slopes, error) {
+	rows, columns := len(o.m.States)+len(o.m.Outputs), len(o.values)
+	s := &slopes{}
+	if rows > 0 && columns > 0 {
+		s.matrix = mat.NewDense(rows, columns, nil)
+	}
+	for j := range max(1, columns) {
+		out, err := o.call(j)
+		if err != nil {
+			return nil, err
+		}
+		s.values = s.values[:0]
+		for i, v := range out {
+			s.values = append(s.values, v.Real)
+			if columns > 0 {
+				s.matrix.Set(i, j, v.Emag)
+			}
+		}
+	}
+	return s, nil
+}
+
+// call evaluates the model with the dual part on one variable.
+func (o *operation) call(j int) (out []dual.Number, err error) {
+	x := make([]dual.Number, len(o.values))
+	for i, v := range o.values {
+		x[i].Real = v
+	}
+	if j < len(x) {
+		x[j].Emag = 1
+	}
+	n := len(o.m.States)
+	rates, outputs, err := o.guarded(x[:n:n], x[n:])
+	if err != nil {
+		return nil, err
+	}
+	if len(rates) != n || len(outputs) != len(o.m.Outputs) {
+		return nil, &ModelError{Reason: fmt.Sprintf("Equations returned %d rates and %d outputs for %d states and %d outputs",
+			len(rates), len(outputs), n, len(o.m.Outputs))}
+	}
+	out = append(append(make([]dual.Number, 0, n+len(outputs)), rates...), outputs...)
+	for i, v := range out {
+		if math.IsNaN(v.Real-v.Real) || math.IsNaN(v.Emag-v.Emag) {
+			name := "the rate of "
+			if i >= n {
+				name = "the output "
+				i -= n
+				name += o.m.Outputs[i].Name
+			} else {
+				name += o.m.States[i].Name
+			}
+			what := fmt.Sprintf("%s is %v", name, v.Real)
+			if !math.IsNaN(v.Real - v.Real) {
+				what = fmt.Sprintf("the slope of %s by %s is %v", name, o.signal(j).Name, v.Emag)
+			}
+			return nil, &ModelError{Reason: what + " at this point", Err: fault.ErrNotFinite}
+		}
+	}
+	return out, nil
+}
+
+// guarded calls the user's function and turns a panic into an error.
+func (o *operation) guarded(x, u []dual.Number) (rates, outputs []dual.Number, err error) {
+	defer func() {
+		if r := recover(); r != nil {
+			e := &ModelError{Reason: fmt.Sprintf("Equations panicked: %v", r)}
+			if cause, ok := r.(error); ok {
+				e.Err = cause
+			}
+			err = e
+		}
+	}()
+	rates, outputs = o.m.Equations(x, u)
+	return rates, outputs, nil
+}
+
+// weight is what the terms of a rate would make if they did not balance.
+func (o *operation) weight(s *slopes, i int) float64 {
+	sum := 0.0
+	for j, v := range o.values {
+		sum += math.Abs(s.matrix.At(i, j)) * scaleOf(v)
+	}
+	return sum
+}
+
+// atRest checks the rates.
+func (o *operation) atRest(s *slopes) error {
+	e := &NotAtRestError{}
+	for i, state := range o.m.States {
+		if rate := s.values[i]; math.Abs(rate) > restTolerance*o.weight(s, i) {
+			e.Drifts = append(e.Drifts, Drift{state, rate})
+		}
+	}
+	if len(e.Drifts) > 0 {
+		return e
+	}
+	return nil
+}
+
+// search looks for a point at rest.
+func (o *operation) search() error {
+	var free []int
+	for i := range o.values {
+		if !o.given[i] {
+			o.values[i] = 1 // somewhere in the unit of the signal
+		}
+		if !o.given[i] || o.sought[i] {
+			free = append(free, i)
+		}
+	}
+	if n := len(o.m.States); len(free) != n {
+		var names []string
+		for _, i := range free {
+			names = append(names, o.signal(i).Name)
+		}
+		return &OperatingError{Reason: fmt.Sprintf("%d states at rest determine as many values, and %d are sought (%s): give more with At, or fewer",
+			n, len(free), shortened(names))}
+	}
+	for range maxNewton {
+		s, err := o.slopes()
+		if err != nil {
+			return err
+		}
+		step, solve, err := o.newton(s, free)
+		if err != nil {
+			return err
+		}
+		if norm := o.size(step, free); norm < 1e-14 {
+			return nil
+		}
+		done, err := o.descend(step, solve, free)
+		if err != nil || done {
+			return err
+		}
+	}
+	return &OperatingError{Reason: fmt.Sprintf("no point at rest was found in %d steps of Newton's method: start nearer with Near", maxNewton)}
+}
+
+const maxNewton = 100
+
+// newton returns the step that would bring all rates to 0, and the solver of its
+// equations.
+func (o *operation) newton(s *slopes, free []int) (step []float64, solve func(rates []float64) ([]float64, error), err error) {
+	n := len(o.m.States)
+	if n == 0 {
+		return nil, func([]float64) ([]float64, error) { return nil, nil }, nil
+	}
+	a := mat.NewDense(n, n, nil)
+	for k, j := range free {
+		effect := false
+		for i := range n {
+			a.Set(i, k, s.matrix.At(i, j)*scaleOf(o.values[j]))
+			effect = effect || a.At(i, k) != 0
+		}
+		if !effect {
+			return nil, nil, &OperatingError{Signal: o.signal(j).Name, Reason: "has no effect on any rate here, so that no value of it can be found"}
+		}
+	}
+	for i, state := range o.m.States {
+		if w := mat.Norm(a.RowView(i), 2); w > 0 {
+			for k := range n {
+				a.Set(i, k, a.At(i, k)/w)
+			}
+		} else {
+			return nil, nil, &OperatingError{Signal: state.Name, Reason: "its rate depends on none of the values sought"}
+		}
+	}
+	var lu mat.LU
+	lu.Factorize(a)
+	if c := lu.Cond(); c > 1e14 || math.IsNaN(c) {
+		return nil, nil, &OperatingError{Reason: "the rates do not determine the values sought here: the slopes are singular"}
+	}
+	weights := make([]float64, n)
+	for i := range n {
+		for k, j := range free {
+			if a.At(i, k) != 0 {
+				weights[i] = s.matrix.At(i, j) * scaleOf(o.values[j]) / a.At(i, k)
+				break
+			}
+		}
+	}
+	scales := make([]float64, n)
+	for k, j := range free {
+		scales[k] = scaleOf(o.values[j])
+	}
+	solve = func(rates []float64) ([]float64, error) {
+		b := mat.NewVecDense(n, nil)
+		for i := range n {
+			b.SetVec(i, -rates[i]/weights[i])
+		}
+		var x mat.VecDense
+		if err := lu.SolveVecTo(&x, false, b); err != nil {
+			return nil, &OperatingError{Reason: "the slopes are singular", Err: err}
+		}
+		out := make([]float64, n)
+		for k := range out {
+			out[k] = x.AtVec(k) * scales[k]
+		}
+		return out, nil
+	}
+	step, err = solve(s.values)
+	return step, solve, err
+}
+
+// size is the largest step in parts of its value.
+func (o *operation) size(step []float64, free []int) float64 {
+	largest := 0.0
+	for k, j := range free {
+		largest = max(largest, math.Abs(step[k])/scaleOf(o.values[j]))
+	}
+	return largest
+}
+
+// descend takes the longest part of the step after which the next one, by the same
+// slopes, is shorter; done tells that nothing moves any more.
+func (o *operation) descend(step []float64, solve func([]float64) ([]float64, error), free []int) (done bool, err error) {
+	before := make([]float64, len(free))
+	for k, j := range free {
+		before[k] = o.values[j]
+	}
+	norm := o.size(step, free)
+	for part := 1.0; part > 1e-10; part /= 2 {
+		for k, j := range free {
+			o.values[j] = before[k] + part*step[k]
+		}
+		out, err := o.call(len(o.values))
+		var model *ModelError
+		if errors.As(err, &model) && errors.Is(err, fault.ErrNotFinite) {
+			continue // outside of where the model is defined
+		} else if err != nil {
+			return false, err
+		}
+		rates := make([]float64, len(o.m.States))
+		for i := range rates {
+			rates[i] = out[i].Real
+		}
+		next, err := solve(rates)
+		if err != nil {
+			return false, err
+		}
+		for k, j := range free { // measured in parts of the values before
+			o.values[j], before[k] = before[k], o.values[j]
+		}
+		shorter := o.size(next, free) < (1-part/4)*norm
+		for k, j := range free {
+			o.values[j], before[k] = before[k], o.values[j]
+		}
+		if shorter {
+			return false, nil
+		}
+		if norm < 1e-9 { // as near as float64 gets
+			return true, nil
+		}
+	}
+	for k, j := range free {
+		o.values[j] = before[k]
+	}
+	return false, &OperatingError{Reason: "Newton's method makes no progress here: start nearer with Near, or there is no point at rest"}
+}
