@@ -4,6 +4,7 @@ go 1.25.0
 
 require (
 	github.com/qofs/qofs v0.0.0-00010101000000-000000000000
+	gonum.org/v1/gonum v0.17.0
 	gonum.org/v1/plot v0.17.0
 )
 
@@ -17,7 +18,6 @@ require (
 	golang.org/x/image v0.30.0 // indirect
 	golang.org/x/text v0.28.0 // indirect
 	golang.org/x/tools v0.36.0 // indirect
-	gonum.org/v1/gonum v0.17.0 // indirect
 )
 
 replace github.com/qofs/qofs => ../

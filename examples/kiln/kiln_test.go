@@ -40,6 +40,15 @@ func TestZone(t *testing.T) {
 	}
 }
 
+// The slopes of radiation, computed from the data beforehand: 132 and 60 W/K.
+func TestRadiation(t *testing.T) {
+	for temperature, want := range map[string]float64{"900 degC": 132, "900 K": 60} {
+		if _, got, err := slope(temperature); err != nil || math.Abs(got-want) > 0.5 {
+			t.Errorf("%s: %v W/K, %v, want %v", temperature, got, err, want)
+		}
+	}
+}
+
 func TestStepTest(t *testing.T) {
 	folder := t.TempDir()
 	var out strings.Builder

@@ -45,6 +45,9 @@ func run(arguments []string, w io.Writer) error {
 	if err := z.report(w); err != nil {
 		return err
 	}
+	if err := radiation(w); err != nil {
+		return err
+	}
 	name := *source
 	if name == "" {
 		if err := os.MkdirAll(folder, 0o755); err != nil {
