@@ -160,6 +160,11 @@ func TestUnits(t *testing.T) {
 	if !g.Equivalent(want) {
 		t.Errorf("%v, want %v", g, want)
 	}
+	// A state is read like an output.
+	upper := tf.Must(c.TransferFunction("inflow", "upper"))
+	if want := tf.MustParse("(1/60)/(s + 0.01) [inflow: L/min -> upper: mm]"); !upper.Equivalent(want) || !upper.Output().Equal(want.Output()) {
+		t.Errorf("%v, want %v", upper, want)
+	}
 	if text := c.String(); text != "upper' = -0.01 upper + 1/60 inflow [mm/s]\nlower' = 0.01 upper - 0.02 lower [mm/s]\ndepth = 0.001 lower [m]" {
 		t.Error(text)
 	}
@@ -219,7 +224,7 @@ func TestRefusals(t *testing.T) {
 		"name":      {second2(New(signals("m", ""), u, y, Matrices{})), &signal, `state "m": has no name`},
 		"twice":     {second2(New(signals("m", "x", "x"), u, y, Matrices{})), &signal, `state "x: m": stands twice in the list`},
 		"unknown":   {second2(tf.Must(New(x, u, y, Matrices{})).TransferFunction("torque", "x")), &unknown, `no input "torque": there are force`},
-		"no output": {second2(tf.Must(New(x, u, y, Matrices{})).TransferFunction("force", "v")), &unknown, `no output "v": there are x`},
+		"no output": {second2(tf.Must(New(x, u, y, Matrices{})).TransferFunction("force", "w")), &unknown, `no output "w": there are x, x, v`},
 	} {
 		if c.err == nil || !errors.As(c.err, c.as) || c.err.Error() != c.text {
 			t.Errorf("%s: %v", name, c.err)

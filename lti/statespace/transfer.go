@@ -26,10 +26,39 @@ func (c model) CharacteristicPolynomial() (poly.Poly, error) {
 	return poly.Poly(ratpoly.FromInteger(den)).Monic(), nil
 }
 
+// reading is an output, or a state read as one.
+type reading struct {
+	signal units.Signal
+	states []*big.Rat // coefficients of the states
+	fed    []*big.Rat // and of the inputs
+}
+
+// readings returns the outputs, and where there is none, the states, of some
+// names.
+func (c model) readings(names []string) ([]reading, error) {
+	out := make([]reading, len(names))
+	for k, name := range names {
+		named := func(s units.Signal) bool { return s.Name == name }
+		if o := slices.IndexFunc(c.outputs, named); o >= 0 {
+			out[k] = reading{c.outputs[o], c.output[o], c.feedthrough[o]}
+			continue
+		}
+		i, err := find("output", append(slices.Clone(c.outputs), c.states...), []string{name})
+		if err != nil {
+			return nil, err
+		}
+		x := i[0] - len(c.outputs)
+		unit := zeros(2, max(len(c.states), len(c.inputs)))
+		unit[0][x].SetInt64(1)
+		out[k] = reading{c.states[x], unit[0][:len(c.states)], unit[1][:len(c.inputs)]}
+	}
+	return out, nil
+}
+
 // rows returns the equations (s·I − state)·x = input·u and, below them, y −
-// output·x = feedthrough·u for some inputs and outputs, each multiplied by a
+// output·x = feedthrough·u for some inputs and readings, each multiplied by a
 // number that makes it whole.
-func (c model) rows(inputs, outputs []int) (a, right [][]intpoly.Poly) {
+func (c model) rows(inputs []int, outputs []reading) (a, right [][]intpoly.Poly) {
 	n := len(c.states)
 	size := n + len(outputs)
 	a, right = make([][]intpoly.Poly, size), make([][]intpoly.Poly, len(inputs))
@@ -51,7 +80,7 @@ func (c model) rows(inputs, outputs []int) (a, right [][]intpoly.Poly) {
 		fill(i, c.state[i], c.input[i], intpoly.FromBigs(nil, one))
 	}
 	for k, o := range outputs {
-		fill(n+k, c.output[o], c.feedthrough[o], intpoly.FromBigs(one))
+		fill(n+k, o.states, o.fed, intpoly.FromBigs(one))
 	}
 	return a, right
 }
@@ -81,11 +110,11 @@ func whole(v *big.Rat, scale *big.Int) *big.Int {
 }
 
 // functions returns numerators by input and output, and the denominator.
-func (c model) functions(inputs, outputs []string) (from, to []int, nums [][]poly.Poly, den poly.Poly, err error) {
+func (c model) functions(inputs, outputs []string) (from []int, to []reading, nums [][]poly.Poly, den poly.Poly, err error) {
 	if from, err = find("input", c.inputs, inputs); err != nil {
 		return nil, nil, nil, den, err
 	}
-	if to, err = find("output", c.outputs, outputs); err != nil {
+	if to, err = c.readings(outputs); err != nil {
 		return nil, nil, nil, den, err
 	}
 	a, right := c.rows(from, to)
@@ -122,8 +151,8 @@ func find(kind string, signals []units.Signal, names []string) ([]int, error) {
 	return out, nil
 }
 
-// TransferFunction returns the transfer function from an input to an output, in
-// their units and under their names, exactly. Its denominator is the
+// TransferFunction returns the transfer function from an input to an output, or to
+// a state, in their units and under their names, exactly. Its denominator is the
 // characteristic polynomial up to a constant: nothing is cancelled, so that modes
 // which the pair does not show are common factors (tf.Continuous.LowestTerms
 // returns them). The errors are *UnknownSignalError, and ErrLimit as for
@@ -154,7 +183,7 @@ func (c Continuous) TransferFunctions(inputs, outputs []string) ([][]tf.Continuo
 			if err != nil {
 				return nil, err
 			}
-			if g, err = g.WithSignals(c.inputs[u], c.outputs[o]); err != nil {
+			if g, err = g.WithSignals(c.inputs[u], o.signal); err != nil {
 				return nil, err
 			}
 			out[k] = append(out[k], g)
@@ -185,7 +214,7 @@ func (d Discrete) TransferFunctions(inputs, outputs []string) ([][]tf.Discrete, 
 			if err != nil {
 				return nil, err
 			}
-			if g, err = g.WithSignals(d.inputs[u], d.outputs[o]); err != nil {
+			if g, err = g.WithSignals(d.inputs[u], o.signal); err != nil {
 				return nil, err
 			}
 			out[k] = append(out[k], g)
