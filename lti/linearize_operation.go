@@ -345,7 +345,7 @@ func (o *operation) newton(s *slopes, free []int) (step []float64, solve func(ra
 	var lu mat.LU
 	lu.Factorize(a)
 	if c := lu.Cond(); c > 1e14 || math.IsNaN(c) {
-		return nil, nil, &OperatingError{Reason: "the rates do not determine the values sought here: the slopes are singular"}
+		return nil, nil, o.singular(a, free)
 	}
 	weights := make([]float64, n)
 	for i := range n {
