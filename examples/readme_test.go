@@ -23,7 +23,7 @@ func TestReadmeIsTrue(t *testing.T) {
 		}
 		return false
 	}
-	for _, name := range []string{"firstloop", "tour"} {
+	for _, name := range []string{"firstloop", "tour", "waysin"} {
 		source, err := os.ReadFile(name + "/main.go")
 		if err != nil {
 			t.Fatal(err)

@@ -1,4 +1,6 @@
-// Package lti holds models that are given as equations.
+// Package lti holds models that are given as equations, as block diagrams, and as
+// nonlinear functions that are linearised at an operating point: Equations,
+// BlockDiagram and Linearize.
 //
 // Equations records signals, constants and linear differential equations as
 // text; Build checks every term for its dimension and returns a System, from
@@ -14,8 +16,8 @@
 //	plant, err := system.TransferFunction("inflow", "level")
 //
 // In an equation x' is the derivative of x by time in seconds and integral(x)
-// its integral, a space multiplies, a name is a signal or a constant and never a unit, and a literal
-// is a pure number. Signals and constants may be in any units: the equation is
+// its integral, a space multiplies, a name is a signal or a constant and never a
+// unit, and a literal is a pure number. Signals and constants may be in any units: the equation is
 // one between physical quantities, so that millimetres beside metres are
 // converted exactly. The radian is weightless there, as in the SI. A constant in
 // a unit that counts cycles or degrees, such as Hz, is refused, because 2π gets

@@ -51,9 +51,9 @@ func (e *DeclarationError) Error() string {
 // Unwrap returns the error behind the fault.
 func (e *DeclarationError) Unwrap() error { return e.Err }
 
-// UnknownNameError tells that no signal or constant has a name.
+// UnknownNameError tells that no signal, constant or block has a name.
 type UnknownNameError struct {
-	Kind string   // "signal" or "constant"
+	Kind string   // "signal", "constant" or "block"
 	Name string   // what was asked for
 	Have []string // what there is
 }

@@ -334,7 +334,7 @@ func (k *kind) warn(f *Fit, s *separable, natural []float64, correlation float64
 	step := r.interval()
 	delay := natural[len(natural)-1]
 	add := func(format string, args ...any) { f.warnings = append(f.warnings, fmt.Sprintf(format, args...)) }
-	if delay > 0 && delay < step {
+	if delay > 0 && delay < step/2 {
 		add("a dead time of %.3g s is shorter than the %.3g s from row to row: it says little", delay, step)
 	}
 	if delay > 0.9*r.duration() {
