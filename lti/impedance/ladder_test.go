@@ -1,0 +1,98 @@
+package impedance
+
+import (
+	"math/big"
+	"testing"
+
+	"github.com/qofs/qofs/tf"
+)
+
+var one = big.NewRat(1, 1)
+
+// All functions of two short ladders, by hand: a divider of currents and of
+// voltages (common practice), and a pipe into a tank.
+func TestLadderFunctions(t *testing.T) {
+	type call = func(Ladder) (tf.Continuous, error)
+	for _, c := range []struct {
+		name string
+		arms []Arm
+		call call
+		want string
+	}{
+		// 6 ohm to ground, then 3 ohm in the line: current divides as 6/(6 + 3).
+		{"through", []Arm{ShuntArm(MustParse("6 ohm")), SeriesArm(MustParse("3 ohm"))}, Ladder.ThroughRatio, "2/3 [A -> A]"},
+		{"across, open", []Arm{ShuntArm(MustParse("6 ohm")), SeriesArm(MustParse("3 ohm"))}, Ladder.AcrossRatio, "1 [V -> V]"},
+		{"admittance", []Arm{ShuntArm(MustParse("6 ohm")), SeriesArm(MustParse("3 ohm"))}, Ladder.TransferAdmittance, "1/3 [V -> A]"},
+		{"impedance", []Arm{ShuntArm(MustParse("6 ohm")), SeriesArm(MustParse("3 ohm"))}, Ladder.TransferImpedance, "6 [A -> V]"},
+		{"input", []Arm{SeriesArm(MustParse("3 ohm")), ShuntArm(MustParse("6 ohm"))}, Ladder.InputImpedance, "9 [A -> V]"},
+		{"across", []Arm{SeriesArm(MustParse("3 ohm")), ShuntArm(MustParse("6 ohm"))}, Ladder.AcrossRatio, "2/3 [V -> V]"},
+		// Fluid column 2 and resistance 3 into a tank of 1/4: 1/(1/4 (2 s + 3) s + 1).
+		{"pipe", []Arm{SeriesArm(MustParse("3 Pa*s/m^3 + 2 kg/m^4")), ShuntArm(MustParse("0.25 m^3/Pa"))}, Ladder.AcrossRatio,
+			"1/(0.5 s^2 + 0.75 s + 1) [Pa -> Pa]"},
+		{"flow into the pipe", []Arm{SeriesArm(MustParse("3 Pa*s/m^3 + 2 kg/m^4"))}, Ladder.TransferAdmittance, "1/(2 s + 3) [Pa -> m^3/s]"},
+		// A force at the top of 2 kg on a spring of 8 N/m that stands on a held floor.
+		{"force on the floor", []Arm{ShuntArm(MustParse("2 kg")), SeriesArm(MustParse("8 N/m"))}, Ladder.ThroughRatio, "8/(2 s^2 + 8) [N -> N]"},
+		{"motion of the top", []Arm{SeriesArm(MustParse("8 N/m")), ShuntArm(MustParse("2 kg"))}, Ladder.AcrossRatio, "8/(2 s^2 + 8) [m/s -> m/s]"},
+	} {
+		g, err := c.call(tf.Must(NewLadder(c.arms...)))
+		if want := tf.MustParse(c.want); err != nil || !g.Equivalent(want) {
+			t.Errorf("%s: %v, %v, want %v", c.name, g, err, want)
+		}
+	}
+}
+
+// Reciprocity (Rayleigh 1873): voltages forth divide as currents back.
+func TestReciprocity(t *testing.T) {
+	r := &random{state: 9}
+	for i := range 40 {
+		arms := append(r.arms(Domain(1+i%4), 1+int(r.next()%6)), SeriesArm(r.element(Domain(1+i%4), false)))
+		back := make([]Arm, len(arms))
+		for k, a := range arms {
+			back[len(arms)-1-k] = a
+		}
+		l, m := tf.Must(NewLadder(arms...)), tf.Must(NewLadder(back...))
+		g, h := tf.Must(l.AcrossRatio()), tf.Must(m.ThroughRatio())
+		if !g.Numerator().Equal(h.Numerator()) || !g.Denominator().Equal(h.Denominator()) {
+			t.Fatalf("%v: %v forth, %v back", l, g, h)
+		}
+		y, z := tf.Must(l.TransferAdmittance()), tf.Must(m.TransferAdmittance())
+		if !y.Equal(z) {
+			t.Fatalf("%v: %v forth, %v back", l, y, z)
+		}
+	}
+}
+
+// The longest ladder of ordinary values that the limits let pass.
+func TestLongLadder(t *testing.T) {
+	if testing.Short() {
+		t.Skip("seconds")
+	}
+	r := &random{state: 4}
+	var arms []Arm
+	for range MaxElements / 4 {
+		arms = append(arms, SeriesArm(r.element(Electrical, false)), ShuntArm(r.element(Electrical, false)))
+	}
+	l := tf.Must(NewLadder(arms...))
+	g := tf.Must(l.AcrossRatio())
+	stores := 0
+	for _, a := range arms {
+		stores += a.z.port().size.order
+	}
+	if d := g.Denominator().Degree(); d > stores || d < stores/2 {
+		t.Errorf("degree %d with %d stores", d, stores)
+	}
+	// At s = 1 the functions are numbers, which the recurrence gives arm by arm.
+	v, i := onePoly, onePoly.Sub(onePoly)
+	for k := len(arms) - 1; k >= 0; k-- {
+		p := arms[k].z.port()
+		num, den := p.num.AtRat(one), p.den.AtRat(one)
+		if arms[k].shunt {
+			v, i = v.Scale(num), i.Scale(num).Add(v.Scale(den))
+		} else {
+			v, i = v.Scale(den).Add(i.Scale(num)), i.Scale(den)
+		}
+	}
+	if got, want := l.a.AtRat(one), v.Coefficient(0); got.Cmp(want) != 0 {
+		t.Error("the recurrence gives another number")
+	}
+}
