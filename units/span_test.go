@@ -137,7 +137,7 @@ func TestSpanRefusals(t *testing.T) {
 		sentinel error
 	}{
 		{"", 0, nil}, {"4 mA", 4, nil}, {"4-20 mA", 7, nil}, {"4 mA … 4 mA", 8, units.ErrZeroWidth}, {"0 m … 0 mm", 7, units.ErrZeroWidth},
-		{"0 … 0", 5, units.ErrZeroWidth}, {"0 m … 20 mA", 7, nil}, {"0 mx … 2 m", 2, nil}, {"0 m … 2 mx", 10, nil}, {"0 m … 1 m … 2 m", 12, nil},
+		{"0 … 0", 5, units.ErrZeroWidth}, {"0 m … 20 mA", 7, nil}, {"0 mx … 2 m", 2, nil}, {"0 m … 2 mx", 10, nil}, {"0 m … 1 m … 2 m", 12, nil}, {"0 m … 1 m to 2 m", 12, nil},
 		{"… 2 m", 0, nil}, {"0 m …", 7, nil}, {"-300 degC … 0 degC", 0, nil}, {"0 … -300 degC", 5, nil}, {"0 degC … 273.15 K", 10, units.ErrZeroWidth},
 		{"1/0 … 2", 2, units.ErrDivisionByZero}, {strings.Repeat("1", units.MaxText) + "… 2", units.MaxText, units.ErrLimit},
 	} {
@@ -184,6 +184,12 @@ func TestSpanInJSON(t *testing.T) {
 	}
 	if out, err := json.Marshal(config); err != nil || string(out) != text {
 		t.Errorf("comes back as %s, %v", out, err)
+	}
+	// Quantities are amounts: degC in them is a kelvin, not a reading.
+	degC := units.MustParse("degC")
+	r, err := units.NewRange(units.NewQuantity(nil, degC), units.NewQuantity(big.NewRat(100, 1), degC))
+	if err != nil || r.String() != "0 K … 100 K" || !r.Equal(units.MustParseRange(r.String())) {
+		t.Errorf("a range of amounts in degC is %v, %v", r, err)
 	}
 	var zero units.Span
 	if zero.String() != "0 … 1 -> 0 … 1" || !zero.Slope().Equal(units.MustParseQuantity("1")) {
