@@ -39,8 +39,8 @@ var (
 
 // Resistor returns a resistance R > 0, such as 10 kohm. Its impedance is R.
 // As for all elements here, the errors are a *units.MismatchError for a value of
-// another dimension, a *ValueError for one that is not above 0, and ErrLimit for
-// one of more than 2^27 bits.
+// another dimension, a *ValueError for one that is not above 0, and ErrLimit
+// beyond the bounds of MaxElements.
 func Resistor(r units.Quantity) (OnePort, error) { return resistor.of(r) }
 
 // Capacitor returns a capacitance C > 0, such as 100 nF. Its impedance is

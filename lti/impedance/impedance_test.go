@@ -3,7 +3,6 @@ package impedance
 import (
 	"errors"
 	"math"
-	"math/big"
 	"math/cmplx"
 	"strings"
 	"testing"
@@ -315,83 +314,6 @@ func TestKiln(t *testing.T) {
 			t.Errorf("gain %v, want %s", gain, c.want)
 		}
 	}
-}
-
-// a·d − b·c = over² (common practice: reciprocity), the transfer functions turn
-// round with the ladder, and a ladder as a load is its input impedance.
-func TestLadderLaws(t *testing.T) {
-	r := &random{state: 5}
-	for range 60 {
-		arms := r.arms(Electrical, 1+int(r.next()%8))
-		l := tf.Must(NewLadder(arms...))
-		if !l.a.Mul(l.d).Sub(l.b.Mul(l.c)).Equal(l.over.Mul(l.over)) {
-			t.Fatalf("%v: a d - b c is not over^2", l)
-		}
-		backwards := make([]Arm, len(arms))
-		for i, a := range arms {
-			backwards[len(arms)-1-i] = a
-		}
-		m := tf.Must(NewLadder(backwards...))
-		if !l.a.Equal(m.d) || !l.b.Equal(m.b) || !l.c.Equal(m.c) {
-			t.Fatalf("%v: does not turn round", l)
-		}
-		// From the far end on by Series and Parallel.
-		load, some := OnePort{}, false
-		for _, a := range m.arms {
-			switch {
-			case a.shunt && some:
-				load = tf.Must(Parallel(load, a.z))
-			case a.shunt:
-				load, some = a.z, true
-			case some:
-				load = tf.Must(Series(load, a.z))
-			}
-		}
-		in, err := l.InputImpedance()
-		if some != (err == nil) || some && !in.Equivalent(load.Impedance()) {
-			t.Fatalf("%v: input impedance %v, %v, want %v", l, in, err, load.Impedance())
-		}
-	}
-}
-
-// random is a splitmix64 stream.
-type random struct{ state uint64 }
-
-func (r *random) next() uint64 {
-	r.state += 0x9e3779b97f4a7c15
-	z := r.state
-	z = (z ^ z>>30) * 0xbf58476d1ce4e5b9
-	z = (z ^ z>>27) * 0x94d049bb133111eb
-	return z ^ z>>31
-}
-
-func (r *random) element(d Domain, shunt bool) OnePort {
-	for {
-		k := kinds[r.next()%uint64(len(kinds))]
-		if k.domain == d && (shunt || !k.grounded) {
-			return tf.Must(k.of(units.NewQuantity(big.NewRat(1+int64(r.next()%99), 1+int64(r.next()%9)), k.unit)))
-		}
-	}
-}
-
-func (r *random) arms(d Domain, n int) []Arm {
-	arms := make([]Arm, n)
-	for i := range arms {
-		shunt := r.next()%2 == 0
-		z := r.element(d, shunt)
-		for r.next()%3 == 0 {
-			other := r.element(d, false)
-			if r.next()%2 == 0 {
-				z = tf.Must(Series(z, other))
-			} else {
-				z = tf.Must(Parallel(z, other))
-			}
-		}
-		if arms[i] = SeriesArm(z); shunt {
-			arms[i] = ShuntArm(z)
-		}
-	}
-	return arms
 }
 
 func FuzzParse(f *testing.F) {
