@@ -92,10 +92,10 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 
 // GCD returns the monic greatest common divisor of p and q; the polynomial 0
 // when both are 0. The error is ErrLimit for operands whose modular images could
-// take more than 2^32 multiplications of words: beyond degree 16 with 100,000
-// bits, or degree 4000 with 1800 bits.
+// take more than 2^34 multiplications of words: beyond degree 16 with 480,000
+// bits, or degree 8000 with 1900 bits.
 func (p Poly) GCD(q Poly) (Poly, error) {
-	if err := p.bound(q, p.bits()+q.bits(), 1, p.Degree()+1, 1<<32); err != nil {
+	if err := p.bound(q, p.bits()+q.bits(), 1, p.Degree()+1, 1<<34); err != nil {
 		return Poly{}, err
 	}
 	g := fromInteger(p.integer().GCD(q.integer()))
@@ -108,10 +108,10 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 // bound refuses modular work beyond a limit of multiplications: as many primes
 // as the bits of the result ask for, each with an image that costs some times
 // the square of the degrees. Each prime then lengthens every term, at a cost that is the number
-// of primes so far times some 16 multiplications.
+// of primes so far times some 4 multiplications.
 func (p Poly) bound(q Poly, bits, image, terms int, limit float64) error {
 	n, primes := float64(p.Degree()+q.Degree()+2), float64(bits/61+1)
-	if float64(image)*primes*n*n+16*primes*primes*float64(max(terms, 1)) > limit {
+	if float64(image)*primes*n*n+4*primes*primes*float64(max(terms, 1)) > limit {
 		return ErrLimit
 	}
 	return nil
@@ -161,7 +161,7 @@ func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 // resultant would take more than 2^32 multiplications of words: beyond degree 850
 // with 32-bit coefficients, or degree 20 with 20,000 bits.
 func (p Poly) Resultant(q Poly) (*big.Rat, error) {
-	if err := p.bound(q, p.resultantBits(q), 1, 1, 1<<32); err != nil {
+	if err := p.bound(q, p.resultantBits(q), 1, 4, 1<<32); err != nil {
 		return nil, err
 	}
 	// res(P/dp, Q/dq) = res(P, Q)/(dp^deg q · dq^deg p)
@@ -183,7 +183,7 @@ type Factor struct {
 // multiplicity. Their product is p.Monic(); a constant has none. The method is
 // that of Yun (1976). The error is that of GCD.
 func (p Poly) SquareFree() ([]Factor, error) {
-	if err := p.bound(p, 2*p.bits(), 1, p.Degree()+1, 1<<32); err != nil {
+	if err := p.bound(p, 2*p.bits(), 1, p.Degree()+1, 1<<33); err != nil {
 		return nil, err
 	}
 	found := p.integer().SquareFree()

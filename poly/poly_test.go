@@ -303,7 +303,7 @@ func TestDocumentedBounds(t *testing.T) {
 		return FromRats(c...)
 	}
 	extended := func(p Poly) error { return p.bound(p, p.resultantBits(p), 8, 2*p.Degree()+1, 11<<28) }
-	resultant := func(p Poly) error { return p.bound(p, p.resultantBits(p), 1, 1, 1<<32) }
+	resultant := func(p Poly) error { return p.bound(p, p.resultantBits(p), 1, 4, 1<<32) }
 	for name, c := range map[string]struct {
 		within error
 		beyond func() error
@@ -311,8 +311,8 @@ func TestDocumentedBounds(t *testing.T) {
 		"ExtendedGCD":          {extended(of(290, 32)), func() error { _, _, _, err := of(310, 32).ExtendedGCD(of(310, 31)); return err }},
 		"Resultant":            {resultant(of(850, 32)), func() error { _, err := of(1000, 32).Resultant(of(1000, 31)); return err }},
 		"Resultant, long":      {resultant(of(20, 20000)), func() error { _, err := of(20, 40000).Resultant(of(20, 39999)); return err }},
-		"GCD, long":            {of(16, 100000).bound(of(16, 100000), 200000, 1, 17, 1<<32), func() error { _, err := of(16, 200000).GCD(of(16, 199999)); return err }},
-		"GCD, of many terms":   {of(4000, 1800).bound(of(4000, 1800), 3600, 1, 4001, 1<<32), func() error { _, err := of(4000, 8000).GCD(of(4000, 7999)); return err }},
+		"GCD, long":            {of(16, 480000).bound(of(16, 480000), 960000, 1, 17, 1<<34), func() error { _, err := of(16, 600000).GCD(of(16, 599999)); return err }},
+		"GCD, of many terms":   {of(8000, 1900).bound(of(8000, 1900), 3800, 1, 8001, 1<<34), func() error { _, err := of(8000, 2500).GCD(of(8000, 2499)); return err }},
 		"QuoRem, many terms":   {nil, func() error { _, _, err := of(4000, 32).QuoRem(of(2000, 32)); return err }},
 		"Compose, many digits": {nil, func() error { _, err := of(4000, 32).Compose(of(1, 32)); return err }},
 	} {

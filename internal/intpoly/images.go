@@ -26,12 +26,25 @@ func (c *Images) bits() int { return 64*(c.limbs-1) + bits.Len64(c.modulus[c.lim
 
 // looksSmall reports whether the coefficients, taken between minus and plus
 // half the modulus, are likely to be shorter than it by some bits. Nothing
-// depends on the answer but time.
+// depends on the answer but time: with many limbs a trial is dear, and one prime
+// more is not.
 func (c *Images) looksSmall() bool {
-	m := c.modulus[c.limbs-1]
+	last := c.limbs - 1
+	shift := uint(bits.LeadingZeros64(c.modulus[last]))
+	top := func(x []uint64) uint64 { // its first 64 bits, where the modulus begins
+		v := x[last] << shift
+		if last > 0 {
+			v |= x[last-1] >> (64 - shift)
+		}
+		return v
+	}
+	m := top(c.modulus)
 	slack := m>>4 + 1
-	for i := c.limbs - 1; i < len(c.x); i += c.stride {
-		if x := c.x[i]; x > slack && x < m-slack {
+	if c.limbs >= 8 {
+		slack = m >> 30
+	}
+	for i := range c.terms {
+		if x := top(c.at(i)); x > slack && x < m-slack {
 			return false
 		}
 	}

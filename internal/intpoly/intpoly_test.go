@@ -181,6 +181,35 @@ func TestTransformAgainstOracle(t *testing.T) {
 	}
 }
 
+// Products of integers, of equal and of very unequal length, of random bits and of
+// ones alone, are those of math/big.
+func TestLongIntegers(t *testing.T) {
+	r := newLegacy(rand.New(rand.NewPCG(19, 20)))
+	for _, c := range [][2]uint{{1, 1}, {1, 64}, {64, 64}, {65, 6400}, {5000, 5000}, {4096 * 64, 4096 * 64}, {64 * 2049, 64 * 2048}, {64 * 100, 64 * 5003}, {64 * 129, 64 * 640}} {
+		for k := range 4 {
+			x, y := new(big.Int).Rand(r, one(c[0])), new(big.Int).Rand(r, one(c[1]))
+			if k == 0 { // all ones
+				x, y = new(big.Int).Sub(one(c[0]), one(0)), new(big.Int).Sub(one(c[1]), one(0))
+			}
+			if x.Sign() == 0 || y.Sign() == 0 {
+				continue
+			}
+			a, b := limbsOf(x), limbsOf(y)
+			if len(a) > len(b) {
+				a, b = b, a
+			}
+			want := new(big.Int).Mul(x, y)
+			if got := fromLimbs(multiplyLimbs(a, b)); got.Cmp(want) != 0 {
+				t.Fatalf("product of %d and %d bits", c[0], c[1])
+			}
+			x.Neg(x)
+			if got := product(x, y); got.Cmp(want.Neg(want)) != 0 {
+				t.Fatalf("product of −%d and %d bits", c[0], c[1])
+			}
+		}
+	}
+}
+
 func TestDivisionAgainstOracle(t *testing.T) {
 	r := rand.New(rand.NewPCG(5, 6))
 	for range 1500 {
@@ -362,5 +391,22 @@ func BenchmarkThresholds(b *testing.B) {
 				}
 			})
 		}
+	}
+}
+
+func BenchmarkIntegers(b *testing.B) {
+	r := newLegacy(rand.New(rand.NewPCG(19, 20)))
+	for _, n := range []uint{1000, 2000, 4000, 16000, 64000} {
+		x, y := new(big.Int).Rand(r, one(64*n)), new(big.Int).Rand(r, one(64*n))
+		b.Run(fmt.Sprintf("limbs=%d/transform", n), func(b *testing.B) {
+			for b.Loop() {
+				fromLimbs(multiplyLimbs(limbsOf(x), limbsOf(y)))
+			}
+		})
+		b.Run(fmt.Sprintf("limbs=%d/karatsuba", n), func(b *testing.B) {
+			for b.Loop() {
+				new(big.Int).Mul(x, y)
+			}
+		})
 	}
 }

@@ -10,13 +10,13 @@ import (
 // x = 2^(64 n), and math/big multiplies these with its assembly kernels and
 // Karatsuba's method.
 func longSum(a, b, c, d Poly, n, sign int) Poly {
-	sum := new(big.Int).Mul(pack(a, n), pack(b, n))
+	sum := product(pack(a, n), pack(b, n))
 	if !c.IsZero() {
-		product := new(big.Int).Mul(pack(c, n), pack(d, n))
+		second := product(pack(c, n), pack(d, n))
 		if sign < 0 {
-			sum.Sub(sum, product)
+			sum.Sub(sum, second)
 		} else {
-			sum.Add(sum, product)
+			sum.Add(sum, second)
 		}
 	}
 	return unpack(sum, n, max(a.terms()+b.terms(), c.terms()+d.terms())-1)

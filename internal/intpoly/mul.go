@@ -1,10 +1,6 @@
 package intpoly
 
-import (
-	"math/bits"
-
-	"github.com/qofs/qofs/internal/modp"
-)
+import "math/bits"
 
 // From how many limbs on, that is terms of the shorter factor times limbs of a
 // result coefficient, a product goes through math/big. BenchmarkThresholds
@@ -14,13 +10,16 @@ const (
 	kroneckerWord = 640
 	kroneckerFour = 200
 	kroneckerWide = 64
+	kroneckerLong = 50 // limbs of a result coefficient, however few terms there are
 )
 
 // From how many terms of the shorter factor on, and from how many limbs, such a
-// product goes through transforms modulo primes.
+// product goes through transforms modulo primes, and up to how many primes: with
+// more of them it is quicker to pack.
 const (
-	transformTerms = 200
-	transformLimbs = 1200
+	transformTerms = 120
+	transformLimbs = 1100
+	transformMost  = 100
 )
 
 // Mul returns p·q.
@@ -50,8 +49,8 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 	n := limbsFor(span)
 	words := max(a.n, b.n, c.n, d.n) == 1 && n <= 2
 	limbs := n * max(min(a.terms(), b.terms()), min(c.terms(), d.terms()))
-	if isLong(limbs, words, a, b) {
-		if limbs >= transformLimbs && limbs >= n*transformTerms && transformPrimes(span) <= modp.MaxTransforms {
+	if isLong(limbs, n, words, a, b) {
+		if limbs >= transformLimbs && limbs >= n*transformTerms && transformPrimes(span) <= transformMost {
 			return transformSum(a, b, c, d, span, sign)
 		}
 		return longSum(a, b, c, d, n, sign)
@@ -71,7 +70,7 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 }
 
 // isLong reports whether a product pays for packing.
-func isLong(limbs int, words bool, a, b Poly) bool {
+func isLong(limbs, n int, words bool, a, b Poly) bool {
 	four := func(p Poly) bool { s := p.span(); return s > 192 && s <= 256 }
 	switch {
 	case words:
@@ -79,7 +78,7 @@ func isLong(limbs int, words bool, a, b Poly) bool {
 	case four(a) && four(b):
 		return limbs >= kroneckerFour
 	}
-	return limbs >= kroneckerWide && min(a.terms(), b.terms()) > 4
+	return limbs >= kroneckerWide && min(a.terms(), b.terms()) > 4 || n >= kroneckerLong
 }
 
 // wordSums computes a·b + sign·c·d for word-size coefficients into w, one or
