@@ -127,7 +127,7 @@ func (p Poly) resultantBits(q Poly) int {
 // positive; a constant multiple of one of them where the other is the gcd. The
 // error is ErrLimit for operands whose cofactors, which are as long as the
 // resultant, would take more than 11·2^28 multiplications of words: beyond degree
-// 290 with 32-bit coefficients.
+// 350 with 32-bit coefficients.
 func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 	if err := p.bound(q, p.resultantBits(q), 8, p.Degree()+q.Degree()+1, 11<<28); err != nil {
 		return Poly{}, Poly{}, Poly{}, err
@@ -181,7 +181,7 @@ type Factor struct {
 // SquareFree returns the square-free decomposition of p: monic factors of
 // positive degree without multiple roots, pairwise coprime, in ascending
 // multiplicity. Their product is p.Monic(); a constant has none. The method is
-// that of Yun (1976). The error is that of GCD.
+// that of Yun (1976). The error is ErrLimit, as for GCD but from half its work on.
 func (p Poly) SquareFree() ([]Factor, error) {
 	if err := p.bound(p, 2*p.bits(), 1, p.Degree()+1, 1<<33); err != nil {
 		return nil, err

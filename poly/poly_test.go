@@ -308,7 +308,7 @@ func TestDocumentedBounds(t *testing.T) {
 		within error
 		beyond func() error
 	}{
-		"ExtendedGCD":          {extended(of(290, 32)), func() error { _, _, _, err := of(310, 32).ExtendedGCD(of(310, 31)); return err }},
+		"ExtendedGCD":          {extended(of(350, 32)), func() error { _, _, _, err := of(450, 32).ExtendedGCD(of(450, 31)); return err }},
 		"Resultant":            {resultant(of(850, 32)), func() error { _, err := of(1000, 32).Resultant(of(1000, 31)); return err }},
 		"Resultant, long":      {resultant(of(20, 20000)), func() error { _, err := of(20, 40000).Resultant(of(20, 39999)); return err }},
 		"GCD, long":            {of(16, 480000).bound(of(16, 480000), 960000, 1, 17, 1<<34), func() error { _, err := of(16, 600000).GCD(of(16, 599999)); return err }},
