@@ -1,6 +1,7 @@
 package tf
 
 import (
+	"fmt"
 	"math/big"
 	"strconv"
 
@@ -13,17 +14,41 @@ import (
 // unity is the function 1.
 var unity, _ = ratfun.New(intpoly.FromInt64s(1), intpoly.FromInt64s(1))
 
+// maxWords bounds a polynomial of a composition: its coefficients times their
+// words of 64 bits.
+const maxWords = 1 << 23
+
+// size adds up what a composition of functions may take.
+type size struct{ degree, words int }
+
+func (s *size) add(f ratfun.Func) {
+	d, w := f.Size()
+	s.degree, s.words = s.degree+d, s.words+w
+}
+
+// check refuses what would take more than maxWords.
+func (s *size) check(operation string) error {
+	if float64(s.degree+1)*float64(s.words) > maxWords {
+		return fmt.Errorf("tf: %s: a polynomial of degree %d with coefficients of %d words: %w", operation, s.degree, s.words, fault.ErrLimit)
+	}
+	return nil
+}
+
 // Series returns the chain of blocks in the order in which a signal passes
 // them: first's input to the last one's output. Dead times add up, nothing is
 // cancelled. The errors are *JunctionError where an output does not fit the
-// next input and *PeriodError where sampling periods differ.
+// next input, *PeriodError where sampling periods differ, and ErrLimit where a
+// polynomial of the result could take more than 2^23 words of 64 bits.
 //
 // Series is associative; where the signals allow both orders it is commutative
 // up to Equivalent.
 func Series[G Block[G]](first G, rest ...G) (G, error) {
 	c := first.core()
+	var total size
+	total.add(c.f)
 	for i := range rest {
 		r := rest[i].core()
+		total.add(r.f)
 		if !fits(&c.output, &r.input) {
 			return junction[G]("Series", i+1, c.output, "output of block "+strconv.Itoa(i),
 				r.input, "input of block "+strconv.Itoa(i+1))
@@ -39,6 +64,9 @@ func Series[G Block[G]](first G, rest ...G) (G, error) {
 				c.delay = new(big.Rat).Add(c.delay, r.delay)
 			}
 		}
+	}
+	if err := total.check("Series"); err != nil {
+		return first.with(core{}), err
 	}
 	c.f = halves(first, rest, ratfun.Func.Mul)
 	return first.with(c), nil
@@ -56,15 +84,19 @@ func halves[G Block[G]](first G, rest []G, join func(f, g ratfun.Func) ratfun.Fu
 
 // Parallel returns the sum of blocks that share input and output. The errors
 // are *JunctionError where signals do not fit, *PeriodError where sampling
-// periods differ and *DeadTimeError where dead times differ.
+// periods differ, *DeadTimeError where dead times differ, and ErrLimit as for
+// Series.
 //
 // Denominators multiply even where they are equal, because two blocks with the
 // same pole hold it twice; LowestTerms reduces the sum. Parallel is associative
 // and commutative, and Series distributes over it, up to Equivalent.
 func Parallel[G Block[G]](first G, rest ...G) (G, error) {
 	c := first.core()
+	var total size
+	total.add(c.f)
 	for i := range rest {
 		r := rest[i].core()
+		total.add(r.f)
 		if !fits(&c.input, &r.input) {
 			return junction[G]("Parallel", i+1, c.input, "input of the blocks before",
 				r.input, "input of block "+strconv.Itoa(i+1))
@@ -82,6 +114,9 @@ func Parallel[G Block[G]](first G, rest ...G) (G, error) {
 		}
 		c.input, c.output = merge(c.input, r.input), merge(c.output, r.output)
 	}
+	if err := total.check("Parallel"); err != nil {
+		return first.with(core{}), err
+	}
 	c.f = halves(first, rest, ratfun.Func.Add)
 	return first.with(c), nil
 }
@@ -93,8 +128,9 @@ func Parallel[G Block[G]](first G, rest ...G) (G, error) {
 //
 // The errors are *JunctionError where forward's output does not fit back's
 // input, or back's output forward's input; *PeriodError where sampling periods
-// differ; *DeadTimeError where one of the blocks has a dead time; and
-// ErrAlgebraicLoop where 1 + forward·back is identically 0.
+// differ; *DeadTimeError where one of the blocks has a dead time;
+// ErrAlgebraicLoop where 1 + forward·back is identically 0; and ErrLimit as for
+// Series.
 func Feedback[G Block[G]](forward, back G) (G, error) {
 	return feedback("Feedback", forward, back, 1)
 }
@@ -119,6 +155,12 @@ func feedback[G Block[G]](operation string, forward, back G, sign int) (G, error
 	if f.delay != nil || b.delay != nil {
 		return forward.with(core{}), &DeadTimeError{Operation: operation, Index: 1,
 			Earlier: f.delaySeconds(), Later: b.delaySeconds()}
+	}
+	var total size
+	total.add(f.f)
+	total.add(b.f)
+	if err := total.check(operation); err != nil {
+		return forward.with(core{}), err
 	}
 	loop, ok := f.f.Feedback(b.f, sign)
 	if !ok {

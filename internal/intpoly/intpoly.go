@@ -154,6 +154,9 @@ func (p Poly) bigs() []*big.Int {
 // Degree is the degree, −1 for the polynomial 0.
 func (p Poly) Degree() int { return p.terms() - 1 }
 
+// Words is how many 64-bit words each coefficient takes, 0 for the polynomial 0.
+func (p Poly) Words() int { return p.n }
+
 // IsZero reports whether p is 0.
 func (p Poly) IsZero() bool { return len(p.w) == 0 }
 

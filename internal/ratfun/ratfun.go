@@ -91,6 +91,14 @@ func times(a, b uint64) uint64 {
 	return lo
 }
 
+// Size returns the degree and the words of a coefficient, the larger ones of
+// numerator and denominator. Those of a product, a sum or a loop are at most the
+// sums of those of the operands, but for a word.
+func (f Func) Size() (degree, words int) {
+	den := f.Den()
+	return max(f.num.Degree(), den.Degree()), max(f.num.Words(), den.Words())
+}
+
 // Num returns the numerator.
 func (f Func) Num() intpoly.Poly { return f.num }
 
