@@ -27,7 +27,8 @@ import (
 //	}
 //
 // Equations gets the values of states and inputs in the units of their signals,
-// absolutely: a temperature in K, also where the unit is degC. It returns the rates
+// absolutely: a temperature from absolute zero on, in K where the unit is degC. It
+// returns the rates
 // of the states, in their units per second, and the outputs in theirs. It must
 // compute with the dual numbers throughout, must not depend on anything else, and
 // may be called many times.
@@ -120,7 +121,8 @@ const restTolerance = 1e-6
 // fractions that they are.
 //
 // Every state and every input needs a value; Equilibrium finds those that are not
-// known. The errors are *ModelError where the function does not do as it should,
+// known. A point counts as at rest where each rate is below a millionth of what its
+// terms would make if they did not balance (a value of 0 counts as 1 in its unit). The errors are *ModelError where the function does not do as it should,
 // *UnknownNameError and *OperatingError for values, *NotAtRestError, and those of
 // statespace.New.
 func Linearize(m Nonlinear, values ...OperatingValue) (statespace.Continuous, error) {
