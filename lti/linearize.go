@@ -28,10 +28,9 @@ import (
 //
 // Equations gets the values of states and inputs in the units of their signals,
 // absolutely: a temperature from absolute zero on, in K where the unit is degC. It
-// returns the rates
-// of the states, in their units per second, and the outputs in theirs. It must
-// compute with the dual numbers throughout, must not depend on anything else, and
-// may be called many times.
+// returns the rates of the states, in their units per second, and the outputs in
+// theirs. It must compute with the dual numbers throughout, must not depend on
+// anything else, and may be called many times.
 type Nonlinear struct {
 	States, Inputs, Outputs []units.Signal
 
