@@ -3,12 +3,15 @@ package lti
 import (
 	"fmt"
 	"math"
+	"math/big"
 	"slices"
+	"strconv"
 	"strings"
 
 	"gonum.org/v1/gonum/mat"
 	"gonum.org/v1/gonum/num/dual"
 
+	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/lti/statespace"
 	"github.com/qofs/qofs/units"
 )
@@ -43,8 +46,6 @@ type OperatingValue struct {
 	Signal   string
 	Quantity string // absolute: "900 degC" is 1173.15 K
 	Sought   bool   // whether Quantity is only where a search begins
-
-	found *float64 // in the unit of the signal, where Equilibrium found it
 }
 
 // At returns a value that holds at the operating point, such as
@@ -108,20 +109,18 @@ func (p OperatingPoint) String() string {
 	return strings.Join(lines, "\n")
 }
 
-// restTolerance is how far from rest a point may be, in parts of what the terms of
-// a rate would make if they did not balance. An operating point is typed with a few
-// digits; Equilibrium finds all of them.
-const restTolerance = 1e-6
-
 // Linearize returns the model of small deviations from an operating point, which
-// must be at rest, with the signals of m. The slopes are those that automatic
+// must be at rest, with the signals of m. It is at rest if no rate differs from 0 by
+// more than a change of the values by 1e-6 of each and by 1e-13 of its unit would
+// make. The slopes are those that automatic
 // differentiation finds (Wengert 1964), without a step size: exact but for the
 // rounding of the float64 operations of the model, and then read as the binary
-// fractions that they are.
+// fractions that they are. A slope that differs by more than an eighth from what
+// differences of the values show is an error: the model lost a dual part, or has a
+// kink there.
 //
 // Every state and every input needs a value; Equilibrium finds those that are not
-// known. A point counts as at rest where each rate is below a millionth of what its
-// terms would make if they did not balance (a value of 0 counts as 1 in its unit). The errors are *ModelError where the function does not do as it should,
+// known. The errors are *ModelError where the function does not do as it should,
 // *UnknownNameError and *OperatingError for values, *NotAtRestError, and those of
 // statespace.New.
 func Linearize(m Nonlinear, values ...OperatingValue) (statespace.Continuous, error) {
@@ -139,6 +138,9 @@ func Linearize(m Nonlinear, values ...OperatingValue) (statespace.Continuous, er
 		return statespace.Continuous{}, err
 	}
 	if err := o.atRest(s); err != nil {
+		return statespace.Continuous{}, err
+	}
+	if err := o.compare(s); err != nil {
 		return statespace.Continuous{}, err
 	}
 	n := len(m.States)
@@ -171,7 +173,7 @@ func Equilibrium(m Nonlinear, values ...OperatingValue) (OperatingPoint, error) 
 	if err != nil {
 		return OperatingPoint{}, err
 	}
-	if err := o.search(); err != nil {
+	if err := o.find(); err != nil {
 		return OperatingPoint{}, err
 	}
 	s, err := o.slopes()
@@ -185,20 +187,39 @@ func Equilibrium(m Nonlinear, values ...OperatingValue) (OperatingPoint, error) 
 		values: slices.Concat(o.values, s.values[len(m.States):])}, nil
 }
 
-// Values returns the values of states and inputs for Linearize, exactly.
+// Values returns the values of states and inputs as Linearize takes them: each
+// text reads as the float64 that was found, and can be stored or replaced.
 func (p OperatingPoint) Values() []OperatingValue {
 	var out []OperatingValue
 	for i, s := range p.signals {
 		if slices.ContainsFunc(out, func(v OperatingValue) bool { return v.Signal == s.Name }) {
 			continue // an output that is a state
 		}
-		v := p.values[i]
-		out = append(out, OperatingValue{Signal: s.Name, Quantity: fmt.Sprintf("%.6g %s", v, s.Unit), found: &v})
+		if q, err := p.text(i); err == nil {
+			out = append(out, At(s.Name, q.String()))
+		}
 	}
 	return out
 }
 
-// scale is the size of a number that may be 0.
+// text is a quantity with the fewest digits that tell its float64 from all others;
+// one of degF, whose size is no decimal of a kelvin, is exact.
+func (p OperatingPoint) text(i int) (units.Quantity, error) {
+	unit := p.signals[i].Unit
+	if unit.Dimension() == kelvin.Dimension() {
+		if !unit.Equal(kelvin) {
+			return p.quantity(i)
+		}
+		unit = kelvin
+	}
+	r, ok := new(big.Rat).SetString(strconv.FormatFloat(p.values[i], 'g', -1, 64))
+	if !ok {
+		return units.Quantity{}, fault.ErrNotFinite
+	}
+	return units.NewQuantity(r, unit), nil
+}
+
+// scaleOf is the size of a number that may be 0.
 func scaleOf(v float64) float64 {
 	if v = math.Abs(v); v > 0 {
 		return v

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"strconv"
 
 	"gonum.org/v1/gonum/mat"
 	"gonum.org/v1/gonum/num/dual"
@@ -63,9 +64,17 @@ func (e *NotAtRestError) Error() string {
 		if i > 0 {
 			text += ", "
 		}
-		text += fmt.Sprintf("%s drifts %.2g %s", d.State.Name, d.Rate, d.State.Unit.Div(units.MustParse("s")))
+		text += fmt.Sprintf("%s drifts %s %s", d.State.Name, rounded(d.Rate), d.State.Unit.Div(second.Unit()))
 	}
 	return text + "; Equilibrium finds a point at rest"
+}
+
+// rounded writes a number with two significant digits, 120 and not 1.2e+02.
+func rounded(v float64) string {
+	if r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 2, 64), 64); err == nil {
+		v = r
+	}
+	return strconv.FormatFloat(v, 'g', -1, 64)
 }
 
 // exactFloat returns the number that a float64 is.
@@ -148,9 +157,6 @@ func containsSignal(signals []units.Signal, name string) bool {
 
 // number reads the absolute quantity in a unit.
 func (v OperatingValue) number(unit units.Unit) (float64, error) {
-	if v.found != nil {
-		return *v.found, nil
-	}
 	q, err := units.ParseAbsolute(v.Quantity)
 	if err != nil {
 		return 0, err
@@ -217,14 +223,7 @@ func (o *operation) call(j int) (out []dual.Number, err error) {
 	out = append(append(make([]dual.Number, 0, n+len(outputs)), rates...), outputs...)
 	for i, v := range out {
 		if math.IsNaN(v.Real-v.Real) || math.IsNaN(v.Emag-v.Emag) {
-			name := "the rate of "
-			if i >= n {
-				name = "the output "
-				i -= n
-				name += o.m.Outputs[i].Name
-			} else {
-				name += o.m.States[i].Name
-			}
+			name := o.row(i)
 			what := fmt.Sprintf("%s is %v", name, v.Real)
 			if !math.IsNaN(v.Real - v.Real) {
 				what = fmt.Sprintf("the slope of %s by %s is %v", name, o.signal(j).Name, v.Emag)
@@ -233,6 +232,14 @@ func (o *operation) call(j int) (out []dual.Number, err error) {
 		}
 	}
 	return out, nil
+}
+
+// row names a rate or an output.
+func (o *operation) row(i int) string {
+	if n := len(o.m.States); i >= n {
+		return "the output " + o.m.Outputs[i-n].Name
+	}
+	return "the rate of " + o.m.States[i].Name
 }
 
 // guarded calls the user's function and turns a panic into an error.
@@ -250,20 +257,25 @@ func (o *operation) guarded(x, u []dual.Number) (rates, outputs []dual.Number, e
 	return rates, outputs, nil
 }
 
-// weight is what the terms of a rate would make if they did not balance.
-func (o *operation) weight(s *slopes, i int) float64 {
-	sum := 0.0
-	for j, v := range o.values {
-		sum += math.Abs(s.matrix.At(i, j)) * scaleOf(v)
-	}
-	return sum
-}
+// restTolerance and restFloor are how far from rest a point may be: a rate may
+// differ from 0 by what these parts of the values, and these parts of their units,
+// would change it. The first is for operating points that are typed with a few
+// digits; Equilibrium finds all of them. The second is for values of 0, about which
+// constants balance but for their rounding, 2^-53 of each.
+const (
+	restTolerance = 1e-6
+	restFloor     = 1e-13
+)
 
 // atRest checks the rates.
 func (o *operation) atRest(s *slopes) error {
 	e := &NotAtRestError{}
 	for i, state := range o.m.States {
-		if rate := s.values[i]; math.Abs(rate) > restTolerance*o.weight(s, i) {
+		allowed := 0.0
+		for j, v := range o.values {
+			allowed += math.Abs(s.matrix.At(i, j)) * (restTolerance*math.Abs(v) + restFloor)
+		}
+		if rate := s.values[i]; math.Abs(rate) > allowed {
 			e.Drifts = append(e.Drifts, Drift{state, rate})
 		}
 	}

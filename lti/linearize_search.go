@@ -4,48 +4,56 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/mat"
 
 	"github.com/qofs/qofs/internal/fault"
 )
 
-// search looks for a point at rest.
-func (o *operation) search() error {
-	var free []int
+const (
+	maxNewton = 100
+	settled   = 1e-14 // a step, in parts of the scales, that float64 hardly resolves
+	stuck     = 1e-9  // a step that may stay as long as it is, where rates are badly rounded
+)
+
+// search is Newton's method for the values in free.
+type search struct {
+	*operation
+	free    []int
+	typical []float64 // the sizes of the values at the start
+}
+
+// find looks for a point at rest.
+func (o *operation) find() error {
+	x := &search{operation: o}
 	for i := range o.values {
 		if !o.given[i] {
 			o.values[i] = 1 // somewhere in the unit of the signal
 		}
 		if !o.given[i] || o.sought[i] {
-			free = append(free, i)
+			x.free = append(x.free, i)
+			x.typical = append(x.typical, scaleOf(o.values[i]))
 		}
 	}
-	if n := len(o.m.States); len(free) != n {
+	if n := len(o.m.States); len(x.free) != n {
 		var names []string
-		for _, i := range free {
+		for _, i := range x.free {
 			names = append(names, o.signal(i).Name)
 		}
 		return &OperatingError{Reason: fmt.Sprintf("%d states at rest determine as many values, and %d are sought (%s): give more with At, or fewer",
-			n, len(free), shortened(names))}
+			n, len(x.free), shortened(names))}
 	}
 	for range maxNewton {
-		s, err := o.slopes()
+		w, step, err := x.next()
 		if err != nil {
 			return err
 		}
-		w, err := o.newton(s, free)
-		if err != nil {
-			return err
-		}
-		step, err := w.step(s.values)
-		if err != nil {
-			return err
-		}
-		if w.size(step) < 1e-14 {
+		if norm := w.size(step); norm < settled {
+			x.polish(norm, step)
 			return nil
 		}
-		done, err := o.descend(w, step, free)
+		done, err := x.descend(w, step)
 		if err != nil || done {
 			return err
 		}
@@ -53,32 +61,66 @@ func (o *operation) search() error {
 	return &OperatingError{Reason: fmt.Sprintf("no point at rest was found in %d steps of Newton's method: start nearer with Near", maxNewton)}
 }
 
-const maxNewton = 100
+// next returns the step that would bring all rates to 0 by the slopes here.
+func (x *search) next() (w *newton, step []float64, err error) {
+	s, err := x.slopes()
+	if err != nil {
+		return nil, nil, err
+	}
+	if w, err = x.newton(s); err != nil {
+		return nil, nil, err
+	}
+	step, err = w.step(s.values)
+	return w, step, err
+}
+
+// polish takes further steps while each is less than half of the one before, for
+// values that are far smaller than where they began.
+func (x *search) polish(norm float64, step []float64) {
+	for range 8 {
+		before := slices.Clone(x.values)
+		for k, j := range x.free {
+			x.values[j] += step[k]
+		}
+		w, next, err := x.next()
+		if err != nil || w.size(next) > norm/2 {
+			x.values = before
+			return
+		}
+		norm, step = w.size(next), next
+		if norm == 0 {
+			return
+		}
+	}
+}
 
 // newton holds the slopes at a point, scaled to values and rates of size 1.
 type newton struct {
 	lu              mat.LU
-	weights, scales []float64 // of the rates and of the values sought
+	weights, scales []float64 // of the rates and of the values sought, these at least typical
 }
 
 // newton prepares the equations of a step; an error names what they leave open.
-func (o *operation) newton(s *slopes, free []int) (*newton, error) {
-	n := len(o.m.States)
+func (x *search) newton(s *slopes) (*newton, error) {
+	n := len(x.m.States)
 	w := &newton{weights: make([]float64, n), scales: make([]float64, n)}
 	if n == 0 {
 		return w, nil
 	}
 	a := mat.NewDense(n, n, nil)
-	for k, j := range free {
-		w.scales[k] = scaleOf(o.values[j])
+	for k, j := range x.free {
+		w.scales[k] = max(x.typical[k], math.Abs(x.values[j]))
 		for i := range n {
 			a.Set(i, k, s.matrix.At(i, j)*w.scales[k])
 		}
 		if mat.Norm(a.ColView(k), 2) == 0 {
-			return nil, &OperatingError{Signal: o.signal(j).Name, Reason: "has no effect on any rate here, so that no value of it can be found"}
+			if err := x.compare(s); err != nil {
+				return nil, err
+			}
+			return nil, &OperatingError{Signal: x.signal(j).Name, Reason: "has no effect on any rate here, so that no value of it can be found"}
 		}
 	}
-	for i, state := range o.m.States {
+	for i, state := range x.m.States {
 		if w.weights[i] = mat.Norm(a.RowView(i), 2); w.weights[i] == 0 {
 			return nil, &OperatingError{Signal: state.Name, Reason: "its rate depends on none of the values sought"}
 		}
@@ -88,7 +130,7 @@ func (o *operation) newton(s *slopes, free []int) (*newton, error) {
 	}
 	w.lu.Factorize(a)
 	if c := w.lu.Cond(); c > 1e14 || math.IsNaN(c) {
-		return nil, o.singular(a, free)
+		return nil, x.singular(a, x.free)
 	}
 	return w, nil
 }
@@ -103,13 +145,13 @@ func (w *newton) step(rates []float64) ([]float64, error) {
 	for i := range n {
 		b.SetVec(i, -rates[i]/w.weights[i])
 	}
-	var x mat.VecDense
-	if err := w.lu.SolveVecTo(&x, false, b); err != nil {
+	var v mat.VecDense
+	if err := w.lu.SolveVecTo(&v, false, b); err != nil {
 		return nil, &OperatingError{Reason: "the slopes are singular", Err: err}
 	}
 	out := make([]float64, n)
 	for k := range out {
-		out[k] = x.AtVec(k) * w.scales[k]
+		out[k] = v.AtVec(k) * w.scales[k]
 	}
 	return out, nil
 }
@@ -125,24 +167,21 @@ func (w *newton) size(step []float64) float64 {
 
 // descend takes the longest part of the step after which the next one, by the same
 // slopes, is shorter; done tells that nothing moves any more.
-func (o *operation) descend(w *newton, step []float64, free []int) (done bool, err error) {
-	before := make([]float64, len(free))
-	for k, j := range free {
-		before[k] = o.values[j]
-	}
+func (x *search) descend(w *newton, step []float64) (done bool, err error) {
+	before := slices.Clone(x.values)
 	norm := w.size(step)
 	for part := 1.0; part > 1e-10; part /= 2 {
-		for k, j := range free {
-			o.values[j] = before[k] + part*step[k]
+		for k, j := range x.free {
+			x.values[j] = before[j] + part*step[k]
 		}
-		out, err := o.call(len(o.values))
+		out, err := x.call(len(x.values))
 		var model *ModelError
 		if errors.As(err, &model) && errors.Is(err, fault.ErrNotFinite) {
 			continue // outside of where the model is defined
 		} else if err != nil {
 			return false, err
 		}
-		rates := make([]float64, len(o.m.States))
+		rates := make([]float64, len(x.m.States))
 		for i := range rates {
 			rates[i] = out[i].Real
 		}
@@ -153,12 +192,9 @@ func (o *operation) descend(w *newton, step []float64, free []int) (done bool, e
 		if w.size(next) < (1-part/4)*norm {
 			return false, nil
 		}
-		if norm < 1e-9 { // as near as float64 gets
+		if norm < stuck { // as near as float64 gets
 			return true, nil
 		}
-	}
-	for k, j := range free {
-		o.values[j] = before[k]
 	}
 	return false, &OperatingError{Reason: "Newton's method makes no progress here: start nearer with Near, or there is no point at rest"}
 }

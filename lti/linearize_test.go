@@ -2,6 +2,7 @@ package lti
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"math/rand/v2"
 	"strings"
@@ -153,7 +154,7 @@ func TestSlopes(t *testing.T) {
 				return []dual.Number{dual.Sub(y, dual.Number{Real: y.Real})}, []dual.Number{y} // at rest everywhere
 			}}
 		x, u := r.NormFloat64(), r.NormFloat64()
-		model, err := Linearize(m, OperatingValue{Signal: "x", found: &x}, OperatingValue{Signal: "u", found: &u})
+		model, err := Linearize(m, At("x", fmt.Sprint(x)), At("u", fmt.Sprint(u)))
 		if err != nil {
 			t.Fatal(err)
 		}
