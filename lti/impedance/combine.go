@@ -5,7 +5,6 @@ import (
 
 	"github.com/qofs/qofs/poly"
 	"github.com/qofs/qofs/tf"
-	"github.com/qofs/qofs/units"
 )
 
 // Series returns one-ports in series: what flows through one flows through
@@ -112,8 +111,6 @@ func divider(operation string, series, shunt OnePort) (tf.Continuous, error) {
 	}
 	return l.AcrossRatio()
 }
-
-var metre = units.MustParse("m")
 
 // Transmissibility returns the motion of what a mount carries over the motion
 // of the ground below it, in m over m: as a ratio it is the same for positions,

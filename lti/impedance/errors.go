@@ -26,8 +26,15 @@ type UnknownElementError struct {
 	Found units.Unit
 }
 
-// Error lists the units that are.
+// Error lists the units that are, or names the one of which Found is the
+// reciprocal.
 func (e *UnknownElementError) Error() string {
+	for _, k := range kinds {
+		if k.unit.Dimension().Mul(e.Found.Dimension()).IsZero() {
+			return fmt.Sprintf("impedance: %s is the reciprocal of the unit of %s: want its value in %s, 1 over this one",
+				e.Found, k.name, k.unit)
+		}
+	}
 	s := fmt.Sprintf("impedance: %s is the unit of no element: want", e.Found)
 	for i, k := range kinds {
 		if i > 0 {

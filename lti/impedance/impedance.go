@@ -18,7 +18,8 @@
 // of a chain.
 //
 // Any unit of the right dimension is taken and converted exactly. All results are
-// in the units of the table; ConvertUnits changes them.
+// in the units of the table; ConvertUnits changes them. For positions instead of
+// velocities there are Transmissibility and Receptance.
 //
 //	mount := impedance.MustParse("50 kN/m || 640 N*s/m")
 //	bench := impedance.MustParse("200 kg")

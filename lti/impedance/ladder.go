@@ -3,7 +3,6 @@ package impedance
 import (
 	"fmt"
 	"slices"
-	"strings"
 
 	"github.com/qofs/qofs/poly"
 	"github.com/qofs/qofs/tf"
@@ -24,14 +23,6 @@ func SeriesArm(z OnePort) Arm { return Arm{z: z} }
 
 // ShuntArm returns z as a shunt arm, which leads from the line to the ground.
 func ShuntArm(z OnePort) Arm { return Arm{z: z, shunt: true} }
-
-// String is the one-port and the place of the arm: "2 mH in series".
-func (a Arm) String() string {
-	if a.shunt {
-		return a.z.String() + " to ground"
-	}
-	return a.z.String() + " in series"
-}
 
 // Ladder is a chain of series and shunt arms from an input port to an output
 // port:
@@ -173,13 +164,4 @@ func quotient(operation string, over, under poly.Poly, in, out units.Unit) (tf.C
 		return tf.Continuous{}, fmt.Errorf("impedance: %s: the input is shorted, or nothing can flow into it: %w", operation, ErrDivisionByZero)
 	}
 	return ratio(over, under, in, out), nil
-}
-
-// String lists the arms from the input on.
-func (l Ladder) String() string {
-	texts := make([]string, len(l.arms))
-	for i, a := range l.arms {
-		texts[i] = a.String()
-	}
-	return strings.Join(texts, ", ")
 }

@@ -24,7 +24,7 @@ const MaxText = 1 << 16
 // Element, Series or Parallel, or ErrLimit for a text beyond MaxText.
 func Parse(text string) (OnePort, error) {
 	if len(text) > MaxText {
-		return OnePort{}, lex.Fault(text, MaxText, fmt.Sprintf("a text of %d bytes", len(text)), fmt.Sprintf("at most %d", MaxText), ErrLimit)
+		return OnePort{}, tooLong(text)
 	}
 	tokens, err := lex.Tokens(text)
 	if err != nil {
