@@ -173,6 +173,27 @@ func TestSpanRefusals(t *testing.T) {
 	}
 }
 
+func TestRangeText(t *testing.T) {
+	want := units.MustParseRange("4 mA … 20 mA")
+	for _, text := range []string{"4 mA to 20 mA", "4 mA\tto\t20 mA", "4 to\n20 mA", "4mA...20mA", " 4…20 mA ", "4 mA  to  0.02 A", "4000 to 20000 uA"} {
+		if r, err := units.ParseRange(text); err != nil || !r.Equal(want) {
+			t.Errorf("%q: %v, %v, want %v", text, r, err, want)
+		}
+	}
+	for _, text := range []string{"4 mA to20 mA", "4 mAto 20 mA", "4 mA TO 20 mA", "4 mA..20 mA", "to 20 mA", "4 mA to", "to"} {
+		var syntax *units.SyntaxError
+		if r, err := units.ParseRange(text); !errors.As(err, &syntax) {
+			t.Errorf("%q: %v, %v, want a *SyntaxError", text, r, err)
+		}
+	}
+	var mismatch *units.MismatchError
+	const missing = `at offset 8 of "4 mA … 20": found an end without a unit, want one in mA: units: the ends of a range: ` +
+		"unit 1 found where mA is needed: the dimensions differ (1 against A)"
+	if _, err := units.ParseRange("4 mA … 20"); !errors.As(err, &mismatch) || err.Error() != missing {
+		t.Errorf("got %v\nwant %s", err, missing)
+	}
+}
+
 func TestSpanInJSON(t *testing.T) {
 	var config struct {
 		Transmitter units.Span

@@ -13,9 +13,9 @@ import (
 //
 //	0 m … 2 m    500 mm ... 2 m    0 … 100 %    0 to 4095 count    -20 … 60 degC
 //
-// Between the ends stands …, three full stops, or the word "to" between spaces.
-// A first end without a unit has that of the second; else the result is in the
-// unit of the first. degC and degF are temperatures themselves, as for
+// Between the ends stands …, three full stops, or the word "to" between
+// white space. A first end without a unit has that of the second; else the result
+// is in the unit of the first. degC and degF are temperatures themselves, as for
 // ParseAbsolute; K is read as by ParseQuantity. "4-20 mA" is refused, because its
 // second end may be −20 mA.
 //
@@ -46,11 +46,14 @@ func ParseRange(text string) (Range, error) {
 	}
 	r, err := NewRange(from, to)
 	if err != nil {
-		found := "ends that do not fit"
-		if errors.Is(err, ErrZeroWidth) {
+		found, want := "ends that do not fit", ""
+		switch {
+		case errors.Is(err, ErrZeroWidth):
 			found = "two equal ends"
+		case to.unit.IsOne():
+			found, want = "an end without a unit", fmt.Sprintf("one in %s", from.unit)
 		}
-		return Range{}, lex.Fault(text, at+length, found, "", err)
+		return Range{}, lex.Fault(text, at+length, found, want, err)
 	}
 	if fromDegree == toDegree {
 		r.degree = fromDegree
@@ -71,9 +74,15 @@ func MustParseRange(text string) Range {
 // separator finds what stands between the ends of a range.
 func separator(text string) (at, length int) {
 	at = len(text)
-	for _, s := range []string{"…", "...", " to "} {
+	for _, s := range []string{"…", "..."} {
 		if i := strings.Index(text, s); i >= 0 && i < at {
 			at, length = i, len(s)
+		}
+	}
+	const white = " \t\r\n"
+	for i := 1; i+2 < at; i++ {
+		if text[i:i+2] == "to" && strings.IndexByte(white, text[i-1]) >= 0 && strings.IndexByte(white, text[i+2]) >= 0 {
+			return i, len("to")
 		}
 	}
 	return at, length
