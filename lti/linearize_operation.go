@@ -246,7 +246,7 @@ func (o *operation) row(i int) string {
 func (o *operation) guarded(x, u []dual.Number) (rates, outputs []dual.Number, err error) {
 	defer func() {
 		if r := recover(); r != nil {
-			e := &ModelError{Reason: fmt.Sprintf("Equations panicked: %v", r)}
+			e := &ModelError{Reason: "Equations panicked: " + lex.Excerpt(fmt.Sprint(r), 40)}
 			if cause, ok := r.(error); ok {
 				e.Err = cause
 			}

@@ -46,7 +46,10 @@ func (o *operation) find() error {
 	}
 	for range maxNewton {
 		w, step, err := x.next()
-		if err != nil {
+		var model *ModelError
+		if errors.As(err, &model) && errors.Is(err, fault.ErrNotFinite) {
+			return &ModelError{Reason: model.Reason + " that the search came to: begin elsewhere with Near", Err: model.Err}
+		} else if err != nil {
 			return err
 		}
 		if norm := w.size(step); norm < settled {
