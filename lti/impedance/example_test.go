@@ -59,3 +59,22 @@ func ExampleSeries() {
 	// impedance: Series: argument 1 is mechanical (translation) (across in m/s, through in N), want electrical (across in V, through in A)
 	// impedance: Divider: argument 0, 200 kg, has an end at the ground, so that nothing passes through it to the next; want it as the shunt element
 }
+
+// A bench and the balance on it, from a line of a configuration: how far a force
+// on the bench moves the pan, and how much of the floor's motion reaches it.
+func ExampleParseLadder() {
+	chain := tf.Must(impedance.ParseLadder("200 kg || 50 kN/m || 640 N*s/m to ground, 75 kN/m || 65 N*s/m in series, 6 kg to ground"))
+	pushed := tf.Must(chain.TransferReceptance())
+	fmt.Println(tf.Must(pushed.StaticGain()))
+
+	shaken := impedance.MustParseLadder("50 kN/m || 640 N*s/m in series, 200 kg to ground, 75 kN/m || 65 N*s/m in series, 6 kg to ground")
+	g := tf.Must(shaken.AcrossRatio())
+	fmt.Printf("%.1f dB at 10 Hz\n", tf.Must(g.FrequencyFunction().Decibels(62.83)))
+
+	_, err := impedance.ParseLadder("50 kN/m in series, 200 kg")
+	fmt.Println(err)
+	// Output:
+	// 0.00002 m/N
+	// -18.4 dB at 10 Hz
+	// at offset 25 of "50 kN/m in series, 200 kg": found the end of an arm, want "in series" or "to ground" after its one-port
+}
