@@ -66,6 +66,7 @@ type OperatingPoint struct {
 	_       [0]func()
 	signals []units.Signal // states, inputs, outputs
 	values  []float64      // in the units of the signals
+	free    int            // how many of them are states and inputs
 }
 
 // Value returns the value of a state, an input or an output at the point: the
@@ -184,17 +185,14 @@ func Equilibrium(m Nonlinear, values ...OperatingValue) (OperatingPoint, error) 
 		return OperatingPoint{}, err
 	}
 	return OperatingPoint{signals: slices.Concat(m.States, m.Inputs, m.Outputs),
-		values: slices.Concat(o.values, s.values[len(m.States):])}, nil
+		values: slices.Concat(o.values, s.values[len(m.States):]), free: len(o.values)}, nil
 }
 
 // Values returns the values of states and inputs as Linearize takes them: each
 // text reads as the float64 that was found, and can be stored or replaced.
 func (p OperatingPoint) Values() []OperatingValue {
 	var out []OperatingValue
-	for i, s := range p.signals {
-		if slices.ContainsFunc(out, func(v OperatingValue) bool { return v.Signal == s.Name }) {
-			continue // an output that is a state
-		}
+	for i, s := range p.signals[:p.free] {
 		if q, err := p.text(i); err == nil {
 			out = append(out, At(s.Name, q.String()))
 		}

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"slices"
 	"strconv"
 
 	"gonum.org/v1/gonum/mat"
@@ -128,9 +129,8 @@ func newOperation(m Nonlinear, values []OperatingValue) (*operation, error) {
 			for k := range n {
 				all = append(all, o.signal(k))
 			}
-			// Outputs follow from the others.
-			if len(v.Signal) > 0 && containsSignal(m.Outputs, v.Signal) {
-				continue
+			if slices.ContainsFunc(m.Outputs, func(s units.Signal) bool { return s.Name == v.Signal }) {
+				return nil, &OperatingError{Signal: v.Signal, Reason: "is an output, which follows from states and inputs"}
 			}
 			return nil, unknownSignal(v.Signal, all)
 		}
@@ -144,15 +144,6 @@ func newOperation(m Nonlinear, values []OperatingValue) (*operation, error) {
 		o.values[i], o.given[i], o.sought[i] = number, true, v.Sought
 	}
 	return o, nil
-}
-
-func containsSignal(signals []units.Signal, name string) bool {
-	for _, s := range signals {
-		if s.Name == name {
-			return true
-		}
-	}
-	return false
 }
 
 // number reads the absolute quantity in a unit.

@@ -191,6 +191,12 @@ func TestLinearizeRefusals(t *testing.T) {
 		"lengths":    {faultOf(Linearize(with(tank), at...)), &model, "1 rates and 1 outputs for 1 states and 0 outputs"},
 		"panic":      {faultOf(Linearize(with(func(x, u []dual.Number) ([]dual.Number, []dual.Number) { return x[2:], nil }), at...)), &model, "panicked"},
 		"not finite": {faultOf(Linearize(fine, At("level", "-1 m"), At("inflow", "1 L/s"))), &model, "the rate of level is NaN"},
+		"infinite": {faultOf(Linearize(with(func(x, u []dual.Number) ([]dual.Number, []dual.Number) {
+			return []dual.Number{{Real: math.Inf(1)}}, nil
+		}), at...)),
+			&model, "the rate of level is +Inf at this point"},
+		"output": {faultOf(Linearize(bench, At("push", "0 N"), At("sag", "50 mm"), At("speed", "0 m/s"), At("force", "2 kN"))),
+			&operating, "force: is an output, which follows from states and inputs"},
 		"endless":    {faultOf(Linearize(fine, At("level", "0 m"), At("inflow", "0 L/s"))), &model, "the slope of the rate of level by level is"},
 		"missing":    {faultOf(Linearize(fine, at[0])), &operating, "inflow: has no value; Equilibrium finds it"},
 		"twice":      {faultOf(Linearize(fine, at[0], at[0])), &operating, "level: has two values"},

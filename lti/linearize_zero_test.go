@@ -111,6 +111,19 @@ func TestValuesAsText(t *testing.T) {
 	}
 }
 
+// Texts have the digits that a float64 needs and no more, and only states and inputs.
+func TestDigitsOfValues(t *testing.T) {
+	point := tf.Must(Equilibrium(bench, At("push", "0.1 N"), Near("sag", "50 mm")))
+	values := point.Values()
+	if len(values) != 3 || values[2] != At("push", "0.1 N") || values[1] != At("speed", "0 m/s") || len(values[0].Quantity) > len("0.04965686415187347 m")+1 {
+		t.Errorf("got %v", values)
+	}
+	zone := tf.Must(Equilibrium(furnace, At("zone", "900.05 degC"))).Values()
+	if len(zone) != 2 || zone[0] != At("zone", "1173.2 K") {
+		t.Errorf("got %v", zone)
+	}
+}
+
 // What the dual parts do not tell is an error, what has no slope is none.
 func TestLostSlopes(t *testing.T) {
 	real := func(v float64) dual.Number { return dual.Number{Real: v} }
