@@ -133,6 +133,9 @@ func Linearize(m Nonlinear, values ...OperatingValue) (statespace.Continuous, er
 		if !given {
 			return statespace.Continuous{}, &OperatingError{Signal: o.signal(i).Name, Reason: "has no value; Equilibrium finds it"}
 		}
+		if o.sought[i] {
+			return statespace.Continuous{}, &OperatingError{Signal: o.signal(i).Name, Reason: "has a value by Near, where a search begins; Equilibrium finds it"}
+		}
 	}
 	s, err := o.slopes()
 	if err != nil {

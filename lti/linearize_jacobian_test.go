@@ -175,3 +175,30 @@ func TestModelFaults(t *testing.T) {
 		t.Errorf("%v, want one that wraps what was panicked with", err)
 	}
 }
+
+// A step that leaves where the model is defined is shortened: from 100 m on, the
+// first one leads to −80 m. A panic there ends the search.
+func TestSearchWithinBounds(t *testing.T) {
+	m := Nonlinear{States: []units.Signal{signalOf("level", "m")}, Inputs: []units.Signal{signalOf("inflow", "m^3/s")},
+		Equations: func(x, u []dual.Number) (rates, outputs []dual.Number) {
+			return []dual.Number{dual.Sub(u[0], dual.Sqrt(x[0]))}, nil
+		}}
+	point, err := Equilibrium(m, At("inflow", "1 m^3/s"), Near("level", "100 m"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if v := floatOf(t, tf.Must(point.Value("level")), nil); v != 1 {
+		t.Errorf("level %v, want 1", v)
+	}
+	defined := m.Equations
+	m.Equations = func(x, u []dual.Number) (rates, outputs []dual.Number) {
+		if x[0].Real < 0 {
+			panic("dry")
+		}
+		return defined(x, u)
+	}
+	_, err = Equilibrium(m, At("inflow", "1 m^3/s"), Near("level", "100 m"))
+	if !errors.As(err, new(*ModelError)) || err.Error() != "nonlinear model: Equations panicked: dry" {
+		t.Errorf("got %v", err)
+	}
+}
