@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/num/dual"
@@ -146,6 +147,7 @@ func TestLostSlopes(t *testing.T) {
 		{"cube at 0", func(x dual.Number) dual.Number { return dual.Mul(x, dual.Mul(x, x)) }, 0, ""},
 		{"constant", func(x dual.Number) dual.Number { return real(7) }, 2, ""},
 		{"root at the edge", func(x dual.Number) dual.Number { return dual.Sqrt(dual.Add(x, real(1e-9))) }, 0, ""},
+		{"root between two steps", func(x dual.Number) dual.Number { return dual.Sqrt(dual.Add(x, real(1e-4))) }, 0, ""},
 		{"steep", func(x dual.Number) dual.Number { return dual.Exp(dual.Scale(1e4, x)) }, 0.01, ""},
 		{"wave", func(x dual.Number) dual.Number { return dual.Sin(dual.Scale(1e9, x)) }, 1, ""},
 		{"small beside a constant", func(x dual.Number) dual.Number {
@@ -166,6 +168,14 @@ func TestLostSlopes(t *testing.T) {
 		if !errors.As(err, new(*ModelError)) || err.Error() != want {
 			t.Errorf("%s:\n got %v\nwant %s", c.name, err, want)
 		}
+	}
+	// One lost slope among others is found, behind a variable at an edge too.
+	mixed := Nonlinear{Inputs: []units.Signal{signalOf("opening", "mm"), signalOf("depth", "m")}, Outputs: []units.Signal{signalOf("head", "m"), signalOf("flow", "L/s")},
+		Equations: func(x, u []dual.Number) (rates, outputs []dual.Number) {
+			return nil, []dual.Number{dual.Add(u[1], dual.Sqrt(dual.Add(u[0], real(1e-9)))), real(3 * u[1].Real)}
+		}}
+	if _, err := Linearize(mixed, At("opening", "0 mm"), At("depth", "2 m")); !errors.As(err, new(*ModelError)) || !strings.Contains(err.Error(), "the slope of the output flow by depth is 3") {
+		t.Errorf("among others: %v", err)
 	}
 	// A search that stands still for it says so too.
 	m := Nonlinear{States: []units.Signal{signalOf("level", "m")}, Equations: func(x, u []dual.Number) (rates, outputs []dual.Number) {
