@@ -194,6 +194,23 @@ func TestRangeText(t *testing.T) {
 	}
 }
 
+// Equal means both ends, and both ranges.
+func TestSpanEqual(t *testing.T) {
+	const text = "0 m … 2 m -> 4 mA … 20 mA"
+	s := units.MustParseSpan(text)
+	for _, c := range []struct {
+		text  string
+		equal bool
+	}{
+		{text, true}, {"0 mm … 2000 mm -> 0.004 A … 20 mA", true}, {"0 m … 3 m -> 4 mA … 20 mA", false}, {"1 m … 2 m -> 4 mA … 20 mA", false},
+		{"0 m … 2 m -> 0 mA … 20 mA", false}, {"0 m … 2 m -> 4 mA … 21 mA", false}, {"2 m … 0 m -> 4 mA … 20 mA", false}, {"0 m … 2 m -> 4 V … 20 V", false},
+	} {
+		if other := units.MustParseSpan(c.text); s.Equal(other) != c.equal || other.Equal(s) != c.equal {
+			t.Errorf("%v equals %v: want %v", s, other, c.equal)
+		}
+	}
+}
+
 func TestSpanInJSON(t *testing.T) {
 	var config struct {
 		Transmitter units.Span

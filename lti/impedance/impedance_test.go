@@ -166,6 +166,20 @@ func TestLimits(t *testing.T) {
 	if !errors.Is(err, ErrLimit) || !errors.Is(wireErr, ErrLimit) {
 		t.Errorf("doubling: %v, %v, want ErrLimit", err, wireErr)
 	}
+	// The bound itself passes, one more does not, alone and in two halves.
+	parts := make([]OnePort, MaxElements)
+	for i := range parts {
+		parts[i] = MustParse("3 ohm")
+	}
+	half := tf.Must(Series(parts[:MaxElements/2]...))
+	for _, c := range []struct {
+		parts []OnePort
+		fine  bool
+	}{{parts, true}, {append(parts, parts[0]), false}, {[]OnePort{half, half}, true}, {[]OnePort{half, half, parts[0]}, false}} {
+		if _, err := Parallel(c.parts...); (err == nil) != c.fine || err != nil && !errors.Is(err, ErrLimit) {
+			t.Errorf("%d parts: %v, want fine %v", len(c.parts), err, c.fine)
+		}
+	}
 	big, arms := MustParse("3e4000 F"), []Arm{}
 	for range MaxElements {
 		arms = append(arms, ShuntArm(big))
