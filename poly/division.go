@@ -16,8 +16,8 @@ const (
 	maxTotal  = 3 << 24
 )
 
-// bits bounds the size of a coefficient of p.
-func (p Poly) bits() int { return p.integer().MaxBitLen() + p.rational().DenominatorBits() }
+// bits is the size of the longest coefficient of p, to a bit.
+func (p Poly) bits() int { return p.integer().Span() + p.rational().DenominatorBits() }
 
 // Pow returns p^n; p^0 is 1. The error is ErrLimit for a negative n, and where
 // the result could pass MaxDegree, MaxBits or 6 MiB in all.

@@ -37,10 +37,10 @@ type SyntaxError = lex.SyntaxError
 // Poly is a polynomial with rational coefficients. It is an immutable value,
 // safe to share; the zero value is the polynomial 0.
 //
-// All coefficients take the room of the longest: a polynomial needs terms times
-// its longest integer coefficient in memory, and sums and products, which cannot
-// fail, take what their results need. Numbers from an untrusted source must be
-// bounded before they come here; Parse bounds text.
+// A polynomial needs terms times its longest integer coefficient in memory, or
+// the sum of its coefficients where these are of very unequal length. Sums and
+// products, which cannot fail, take what their results need. Numbers from an
+// untrusted source must be bounded before they come here; Parse bounds text.
 type Poly ratpoly.Poly
 
 // FromRats returns the polynomial with the given coefficients, ascending: the

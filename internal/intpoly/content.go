@@ -56,8 +56,8 @@ func (p Poly) CommonWord(g uint64) uint64 {
 		if p.n == 1 {
 			r = magnitude(c[0]) % g
 		} else {
-			negative := int64(c[p.n-1]) < 0
-			for k := p.n - 1; k >= 0; k-- {
+			negative := int64(c[len(c)-1]) < 0
+			for k := len(c) - 1; k >= 0; k-- {
 				x := c[k]
 				if negative {
 					x = ^x // −c − 1

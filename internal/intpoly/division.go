@@ -57,7 +57,7 @@ func quoTwoAdic(p, q Poly) (t Poly, ok bool) {
 	switch {
 	case q.at(n - 1)[0]&1 == 1:
 		t = quoFromTop(p, q)
-	case q.w[0]&1 == 1:
+	case q.at(0)[0]&1 == 1:
 		// p/q backwards is p backwards over q backwards, with the powers of x
 		// that reversal drops: q has none, and t has those of p.
 		v := p.Valuation()

@@ -34,8 +34,8 @@ func imageOfGCD(f *modp.Field, p, q Poly, room []uint64) []uint64 {
 		room = make([]uint64, m+n)
 	}
 	a, b := room[:m:m], room[m:m+n]
-	f.Images(a, p.w, p.n)
-	f.Images(b, q.w, q.n)
+	p.imagesInto(a, f)
+	q.imagesInto(b, f)
 	if a[m-1] == 0 || b[n-1] == 0 {
 		return nil
 	}

@@ -63,7 +63,7 @@ func same(p Poly, q naive) bool {
 		}
 	}
 	// the representation must be the smallest
-	return p.n == limbsNeeded(q)
+	return p.Words() == limbsNeeded(q)
 }
 
 func limbsNeeded(q naive) int {
@@ -138,6 +138,64 @@ func TestAgainstOracle(t *testing.T) {
 		if !a.p.Equal(before) {
 			t.Fatal("an operand was changed")
 		}
+	}
+}
+
+// Polynomials with a width for each coefficient obey the same oracle, among
+// themselves and with others.
+func TestUnevenAgainstOracle(t *testing.T) {
+	r := rand.New(rand.NewPCG(21, 22))
+	for range 2000 {
+		a, b := newPair(coefficients(r, 1+r.IntN(9))), newPair(coefficients(r, 1+r.IntN(9)))
+		if a.p.IsZero() {
+			continue
+		}
+		a.p = unevenOf(a.q.c)
+		if !b.p.IsZero() && r.IntN(2) == 0 {
+			b.p = unevenOf(b.q.c)
+		}
+		checkPair(t, a, b, edge(r))
+		checkPair(t, b, a, edge(r))
+		if b.p.IsZero() {
+			continue
+		}
+		if g := a.p.Mul(b.p).GCD(b.p); !same(g, b.q.Mul(a.q).GCD(b.q)) {
+			t.Fatalf("gcd with the product of %v and %v", a.q.c, b.q.c)
+		}
+		product := unevenOf(a.q.Mul(b.q).c)
+		if q, ok := product.QuoExact(b.p); !ok || !same(q, a.q) {
+			t.Fatalf("%v times %v over the second", a.q.c, b.q.c)
+		}
+		if a.p.Resultant(b.p).Cmp(a.q.Resultant(b.q)) != 0 || !same(a.p.even(), a.q) {
+			t.Fatalf("resultant of %v and %v", a.q.c, b.q.c)
+		}
+	}
+}
+
+// One coefficient of half a megabyte among twenty thousand takes a megabyte.
+func TestUnevenMemory(t *testing.T) {
+	c := make([]*big.Int, 20001)
+	for i := range c {
+		c[i] = big.NewInt(1)
+	}
+	c[7] = one(1 << 22)
+	p := FromBigs(c...)
+	if p.n >= 0 || len(p.w) > 120000 {
+		t.Fatalf("%d words", len(p.w))
+	}
+	x := FromBigs(one(1 << 22)).MulPower(20000)
+	y := FromInt64s(0, 1).Mul(p).Add(x)
+	for name, q := range map[string]Poly{"negative": p.Neg(), "sum": p.Add(x), "derivative": p.Derivative(), "reverse": p.Reverse(),
+		"power": x, "product": FromInt64s(3, 0, 1).Mul(p), "chain": y, "difference": y.Sub(x).Sub(FromInt64s(1))} {
+		if q.n >= 0 || len(q.w) > 300000 {
+			t.Errorf("%s: %d words", name, len(q.w))
+		}
+	}
+	if !p.Sub(p).IsZero() || !p.Add(x).Sub(x).Equal(p) || p.Content().Cmp(big.NewInt(1)) != 0 || p.Degree() != 20000 || p.BitLen(7) != 1<<22+1 {
+		t.Error("arithmetic")
+	}
+	if g := p.GCD(p.Derivative()); !g.IsOne() {
+		t.Error("a multiple factor")
 	}
 }
 

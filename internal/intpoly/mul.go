@@ -40,13 +40,24 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 	if c.IsZero() || d.IsZero() {
 		c, d = Poly{}, Poly{}
 	}
+	if min(a.n, b.n, c.n, d.n) < 0 {
+		if sum, ok := sparseSum(a, b, c, d, sign); ok {
+			return sum
+		}
+		a, b, c, d = a.even(), b.even(), c.even(), d.even()
+	}
 	terms := max(a.terms()+b.terms(), c.terms()+d.terms()) - 1
 	// |Σ| ≤ terms·2^(span + span); one more bit for the second sum.
-	span := a.span() + b.span() + bits.Len(uint(min(a.terms(), b.terms())))
+	span := a.evenSpan() + b.evenSpan() + bits.Len(uint(min(a.terms(), b.terms())))
 	if !c.IsZero() {
-		span = max(span, c.span()+d.span()+bits.Len(uint(min(c.terms(), d.terms())))) + 1
+		span = max(span, c.evenSpan()+d.evenSpan()+bits.Len(uint(min(c.terms(), d.terms())))) + 1
 	}
 	n := limbsFor(span)
+	if terms*n > 1<<24 {
+		if sum, ok := sparseSum(a, b, c, d, sign); ok {
+			return sum
+		}
+	}
 	words := max(a.n, b.n, c.n, d.n) == 1 && n <= 2
 	limbs := n * max(min(a.terms(), b.terms()), min(c.terms(), d.terms()))
 	if isLong(limbs, n, words, a, b) {

@@ -40,6 +40,15 @@ func (p Poly) Residues(f *modp.Field) []uint64 {
 	return out
 }
 
+// imagesInto writes the residues of the coefficients up to one factor.
+func (p Poly) imagesInto(out []uint64, f *modp.Field) {
+	if p.n < 0 {
+		copy(out, p.Residues(f))
+		return
+	}
+	f.Images(out, p.w, p.n)
+}
+
 // storedInto writes the stored residues of the coefficients; it returns false
 // where the leading one is 0.
 func storedInto(out []uint64, f *modp.Field, p Poly) bool {
