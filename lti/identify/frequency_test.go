@@ -222,6 +222,15 @@ func TestReadRecord(t *testing.T) {
 	if !strings.Contains(got, "1 row is left out because a value is missing, the first at row 6") || !strings.Contains(got, "time stamps repeat at row 5") {
 		t.Error(got)
 	}
+	// Rows are lines of the file, also after a part has been cut out.
+	late := "# a comment\n\ntime: s, a: V, b: V\n0, 1, 2\n1, 1, -\n2, 2, 2\n3, 2, 3\n# another\n40, 2, 4\n40, 2, 4\n"
+	r, err = ReadRecord(strings.NewReader(late), "a", "b")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := fmt.Sprint(r.Between(2, 50).Warnings()); !strings.Contains(got, "a gap of 37 s before row 9") || !strings.Contains(got, "time stamps repeat at row 10") {
+		t.Error(got)
+	}
 	var row *RowError
 	for text, want := range map[string]string{
 		"time: m, a: V, b: V\n": `row 1, column "time": found m, want a unit of time`,

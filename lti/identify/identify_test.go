@@ -245,11 +245,11 @@ func TestKilnDrift(t *testing.T) {
 // that correlates from row to row.
 func TestCoverage(t *testing.T) {
 	if testing.Short() {
-		t.Skip("200 fits")
+		t.Skip("400 fits")
 	}
 	for name, correlation := range map[string]float64{"white": 0, "correlated": 0.6} {
 		covered := map[string]int{}
-		const runs = 100
+		const runs = 200
 		for seed := range uint64(runs) {
 			p := truth{gain: 2, tau: 30, delay: 8}
 			r := p.stepRecord(seed, 240, 20, 1, 5)
@@ -270,7 +270,7 @@ func TestCoverage(t *testing.T) {
 			}
 		}
 		for parameter, n := range covered {
-			if n < 86 || n > 100 {
+			if n < 174 || n > 199 {
 				t.Errorf("%s: %s covered in %d of %d", name, parameter, n, runs)
 			}
 		}

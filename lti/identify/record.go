@@ -43,6 +43,7 @@ type Record struct {
 	input, output units.Signal
 	time, u, y    []float64 // seconds; the units of the signals
 	joined        bool      // the input moves along straight lines between the stamps
+	lines         []int     // of the file that was read, nil where there was none
 	notes         []string  // warnings from reading
 }
 
@@ -83,7 +84,19 @@ func (r Record) Between(from, to float64) Record {
 	j, _ := slices.BinarySearch(r.time, math.Nextafter(to, math.Inf(1)))
 	j = max(i, j)
 	r.time, r.u, r.y = r.time[i:j:j], r.u[i:j:j], r.y[i:j:j]
+	if r.lines != nil {
+		r.lines = r.lines[i:j:j]
+	}
 	return r
+}
+
+// line is what a person calls the row i: the line of the file that was read, or
+// the row counted from 1.
+func (r Record) line(i int) int {
+	if r.lines == nil {
+		return i + 1
+	}
+	return r.lines[i]
 }
 
 // Len is the number of rows.

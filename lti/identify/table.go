@@ -165,11 +165,8 @@ func ReadRecord(r io.Reader, input, output string) (Record, error) {
 	if missing > 0 {
 		record.notes = append(record.notes, fmt.Sprintf("%s left out because a value is missing, the first at row %d", count(missing, "row is", "rows are"), first))
 	}
-	for i := 1; i < len(lines); i++ {
-		if record.Len() == len(lines) && record.time[i] == record.time[i-1] {
-			record.notes = append(record.notes, fmt.Sprintf("time stamps repeat at row %d", lines[i]))
-			break
-		}
+	if err == nil {
+		record.lines = lines
 	}
 	return record, err
 }

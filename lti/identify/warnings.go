@@ -4,10 +4,10 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"strings"
 )
 
-// Warnings says what a person should look at in the record before it is fitted:
+// Warnings says what a person should look at in the record before it is fitted, by
+// the lines of the file that it was read from, or by rows counted from 1:
 // repeated instants, gaps, missing values, an input or output that never moves or
 // sits at its end, coarse readings.
 func (r Record) Warnings() []string {
@@ -17,8 +17,9 @@ func (r Record) Warnings() []string {
 	}
 	step := r.interval()
 	for i := 1; i < len(r.time); i++ {
-		if r.time[i] == r.time[i-1] && !slices.ContainsFunc(out, func(s string) bool { return strings.HasPrefix(s, "time stamps repeat") }) {
-			out = append(out, fmt.Sprintf("time stamps repeat at row %d", i+1))
+		if r.time[i] == r.time[i-1] {
+			out = append(out, fmt.Sprintf("time stamps repeat at row %d", r.line(i)))
+			break
 		}
 	}
 	gap, at := 0.0, 0
@@ -28,7 +29,7 @@ func (r Record) Warnings() []string {
 		}
 	}
 	if step > 0 && gap > 10*step {
-		out = append(out, fmt.Sprintf("a gap of %.3g s before row %d, where the usual step is %.3g s", gap, at+1, step))
+		out = append(out, fmt.Sprintf("a gap of %.3g s before row %d, where the usual step is %.3g s", gap, r.line(at), step))
 	}
 	if slices.Min(r.u) == slices.Max(r.u) {
 		out = append(out, named(r.input, "the input")+" never moves")
@@ -42,7 +43,7 @@ func (r Record) Warnings() []string {
 	}
 	for _, end := range []float64{low, high} {
 		if n, first := longestRun(r.y, end); n > max(5, len(r.y)/20) && first > 0 && r.resolution() < 0.02*(high-low) {
-			out = append(out, fmt.Sprintf("%s stays at its extreme %.4g %s for %d rows from row %d: is it limited?", named(r.output, "the output"), end, r.output.Unit, n, first+1))
+			out = append(out, fmt.Sprintf("%s stays at its extreme %.4g %s for %d rows from row %d: is it limited?", named(r.output, "the output"), end, r.output.Unit, n, r.line(first)))
 		}
 	}
 	return out
