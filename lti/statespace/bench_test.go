@@ -64,6 +64,19 @@ func BenchmarkLeverrier(b *testing.B) {
 	}
 }
 
+func BenchmarkMinimalRealizationFull(b *testing.B) {
+	for _, n := range []int{10, 20, 40} {
+		b.Run(fmt.Sprintf("states=%d", n), func(b *testing.B) {
+			c := full(n, 0)
+			for b.Loop() {
+				if _, _, err := c.MinimalRealization(); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
 func BenchmarkMinimalRealization(b *testing.B) {
 	for _, n := range []int{4, 10, 20, 40} {
 		b.Run(fmt.Sprintf("states=%d", n), func(b *testing.B) {

@@ -175,6 +175,49 @@ func TestRanksAgainstKalmanMatrix(t *testing.T) {
 	}
 }
 
+// full is a model of n states with full matrices; hidden states of it are reached
+// by no input.
+func full(n, hidden int) Continuous {
+	r := rand.New(rand.NewPCG(uint64(n), 5))
+	c := random(r, n, 1, 1)
+	m := c.Matrices()
+	for i := range n {
+		for j := range n {
+			m.State[i][j] = big.NewRat(r.Int64N(2e9)-1e9, 1+r.Int64N(9))
+			if i >= n-hidden && j < n-hidden {
+				m.State[i][j] = nil
+			}
+		}
+		if m.Input[i][0].SetInt64(int64(i + 1)); i >= n-hidden {
+			m.Input[i][0] = nil
+		}
+		m.Output[0][i].SetInt64(int64(n - i))
+	}
+	return tf.Must(New(c.States(), c.Inputs(), c.Outputs(), m))
+}
+
+// Full matrices come to an end soon, at an answer or at ErrLimit.
+func TestFullMatrices(t *testing.T) {
+	c := full(60, 0)
+	if k := tf.Must(c.ControllabilityRank()); k != 60 {
+		t.Errorf("rank %d", k)
+	}
+	if k := tf.Must(c.ObservabilityRank()); k != 60 {
+		t.Errorf("rank %d", k)
+	}
+	if minimal, hidden, err := full(30, 0).MinimalRealization(); err != nil || len(minimal.States()) != 30 || hidden.Uncontrollable.Degree()+hidden.Unobservable.Degree() != 0 {
+		t.Errorf("%d states, %v", len(minimal.States()), err)
+	}
+	c = full(12, 3)
+	minimal, hidden, err := c.MinimalRealization()
+	if err != nil || len(minimal.States()) != 9 || hidden.Uncontrollable.Degree() != 3 {
+		t.Errorf("%d states, hidden %v, %v", len(minimal.States()), hidden.Uncontrollable, err)
+	}
+	if _, err := full(100, 40).ControllabilityRank(); !errors.Is(err, ErrLimit) {
+		t.Errorf("100 states, 40 of them not reached: %v", err)
+	}
+}
+
 // rank is that of the rows, by elimination.
 func rank(m matrix) int {
 	m = m.clone()
@@ -186,7 +229,10 @@ func rank(m matrix) int {
 			}
 			m[i], m[found] = m[found], m[i]
 			for k := found + 1; k < len(m); k++ {
-				subtract(m[k], m[found], new(big.Rat).Quo(m[k][j], m[found][j]))
+				factor := new(big.Rat).Quo(m[k][j], m[found][j])
+				for l, v := range m[found] {
+					m[k][l].Sub(m[k][l], new(big.Rat).Mul(factor, v))
+				}
 			}
 			found++
 			break

@@ -8,15 +8,15 @@ import (
 	"github.com/qofs/qofs/units"
 )
 
-// maxEntry bounds the entries that come up in the search for a subspace, in
-// bits.
-const maxEntry = 1 << 17
+// maxProducts bounds the search for a subspace, in products of words.
+const maxProducts = 1 << 30
 
 // subspace is spanned by rows in reduced echelon form: in the column pivots[k]
 // row k has 1 and the others have 0. The rows are in no particular order.
 type subspace struct {
 	rows   matrix
 	pivots []int
+	spent  int // products of words, roughly
 }
 
 // add takes in a row and returns what was new in it, nil if nothing was.
@@ -26,7 +26,9 @@ func (s *subspace) add(row []*big.Rat) ([]*big.Rat, error) {
 		r[j] = new(big.Rat).Set(v)
 	}
 	for k, p := range s.pivots {
-		subtract(r, s.rows[k], new(big.Rat).Set(r[p]))
+		if err := s.subtract(r, s.rows[k], new(big.Rat).Set(r[p])); err != nil {
+			return nil, err
+		}
 	}
 	pivot := slices.IndexFunc(r, func(v *big.Rat) bool { return v.Sign() != 0 })
 	if pivot < 0 {
@@ -34,27 +36,34 @@ func (s *subspace) add(row []*big.Rat) ([]*big.Rat, error) {
 	}
 	inverse := new(big.Rat).Inv(r[pivot])
 	for _, v := range r {
-		if v.Mul(v, inverse); v.Num().BitLen() > maxEntry || v.Denom().BitLen() > maxEntry {
-			return nil, ErrLimit
-		}
+		v.Mul(v, inverse)
 	}
 	for _, other := range s.rows {
-		subtract(other, r, new(big.Rat).Set(other[pivot]))
+		if err := s.subtract(other, r, new(big.Rat).Set(other[pivot])); err != nil {
+			return nil, err
+		}
 	}
 	s.rows, s.pivots = append(s.rows, r), append(s.pivots, pivot)
 	return r, nil
 }
 
-// subtract takes k·s off r.
-func subtract(r, s []*big.Rat, k *big.Rat) {
+// subtract takes k·t off r and counts the work: a step with fractions of w words
+// takes some products and greatest common divisors of w² each.
+func (s *subspace) subtract(r, t []*big.Rat, k *big.Rat) error {
 	if k.Sign() == 0 {
-		return
+		return nil
 	}
-	for j, v := range s {
-		if v.Sign() != 0 {
-			r[j].Sub(r[j], new(big.Rat).Mul(k, v))
+	for j, v := range t {
+		if v.Sign() == 0 {
+			continue
 		}
+		w := (k.Num().BitLen() + k.Denom().BitLen() + v.Num().BitLen() + v.Denom().BitLen() + r[j].Num().BitLen() + r[j].Denom().BitLen()) / 64
+		if s.spent += 16 + 8*w*w; s.spent > maxProducts {
+			return ErrLimit
+		}
+		r[j].Sub(r[j], new(big.Rat).Mul(k, v))
 	}
+	return nil
 }
 
 // sort puts the rows into the order of their pivots.
@@ -71,6 +80,9 @@ func (s *subspace) sort() {
 // closure returns the smallest subspace that holds the generators and, with each
 // row r, r·m.
 func closure(generators, m matrix) (*subspace, error) {
+	if fullRank(generators, m) {
+		return wholeSpace(len(m)), nil
+	}
 	s := &subspace{}
 	queue := slices.Clone(generators)
 	for len(queue) > 0 {
@@ -96,8 +108,10 @@ func (c model) observable() (*subspace, error) { return closure(c.output, c.stat
 
 // ControllabilityRank returns the dimension of the space of states that the
 // inputs can reach from 0 (Kalman 1960): the number of states where the model is
-// controllable. The rank is exact. The error is ErrLimit where numbers of more
-// than 131072 bits come up.
+// controllable. The rank is exact: full rank is proved modulo a prime, and less
+// than that is found with fractions. The error is ErrLimit where that takes more
+// than 2^30 products of words: with some 25 states and full matrices of nine
+// digits.
 func (c model) ControllabilityRank() (int, error) {
 	s, err := c.controllable()
 	if err != nil {
@@ -134,7 +148,10 @@ func (c model) minimal() (reduced model, hidden HiddenModes, err error) {
 	if err != nil {
 		return model{}, hidden, err
 	}
-	part, rest := c.split(reached)
+	part, rest := c, model{}
+	if len(reached.rows) < len(c.states) {
+		part, rest = c.split(reached)
+	}
 	if hidden.Uncontrollable, err = rest.CharacteristicPolynomial(); err != nil {
 		return model{}, hidden, err
 	}
@@ -142,7 +159,10 @@ func (c model) minimal() (reduced model, hidden HiddenModes, err error) {
 	if err != nil {
 		return model{}, hidden, err
 	}
-	reduced = part.project(seen)
+	reduced = part
+	if len(seen.rows) < len(part.states) {
+		reduced = part.project(seen)
+	}
 	all, err := part.CharacteristicPolynomial()
 	if err != nil {
 		return model{}, hidden, err

@@ -12,7 +12,8 @@ import (
 	"github.com/qofs/qofs/units"
 )
 
-// CharacteristicPolynomial returns det(s·I − state matrix), which is monic. Its
+// CharacteristicPolynomial returns det(s·I − state matrix), with z in the place of s
+// for a Discrete; it is monic. Its
 // roots are all modes of the model, those included that no input reaches or no
 // output shows. The error is ErrLimit for a matrix whose determinant would take
 // more than 2^31 multiplications: far beyond 100 states in chains and networks,
