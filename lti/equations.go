@@ -38,8 +38,9 @@
 // That adds the integrator's own mode at 0, one for all integrals side by side
 // in an equation, and no other. The name "integral" is reserved.
 //
-// TransferFunctions does so for several inputs and outputs at once, Inspect says
-// in words what a function hides, StateSpace brings the equations to first order,
+// TransferFunctions does so for several inputs and outputs at once, the
+// function Inspect says in words what a transfer function hides (and that a sign is
+// missing, where a plant that should settle is unstable), StateSpace brings the equations to first order,
 // and InitialState goes on from initial values that are not 0.
 package lti
 

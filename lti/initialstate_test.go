@@ -36,7 +36,7 @@ func TestInitialStateRefusals(t *testing.T) {
 			[]string{"x = 3 kg: unit kg found where mm is needed", "x' = 3 mm: unit mm found where mm/s is needed", "y = 1 mm: no signal \"y\"", "900 degC", "N*m"}},
 		{both, []lti.InitialValue{lti.Initially("z", "1 mm"), lti.Initially("spare", "1 V"), lti.Initially("x'''''''''''''''''", "1 mm")},
 			[]string{"z is an input, which is 0 before t = 0", "spare stands in no equation", "limit"}},
-		{[]string{"z"}, nil, []string{"1 equation for 2 unknown signals (", `): name 1 further input to hold at 0, perhaps InitialState([]string{"z", "f"}, …), or add equations`}},
+		{[]string{"z"}, nil, []string{"1 equation for 2 unknown signals (", `): add 1 equation, perhaps for f, or, where what is missing comes from outside, name 1 further input to hold at 0, perhaps InitialState([]string{"z", "f"}, …)`}},
 		{[]string{"z", "z"}, nil, []string{"z is named twice as an input"}},
 		{[]string{"q"}, nil, []string{`no signal "q"`}},
 		{[]string{"z", "f", "x"}, nil, []string{"1 equation for 0 unknown signals"}},

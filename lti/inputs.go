@@ -112,7 +112,8 @@ func (s *System) miscounted(inputs, unknowns, zero []int, signs []determination,
 	weakest := slices.Clone(unknowns)
 	slices.SortStableFunc(weakest, func(i, j int) int { return int(signs[i] - signs[j]) })
 	further := s.namesOf(append(slices.Clone(zero), weakest[:missing]...))
-	e.Reason = fmt.Sprintf("%s: name %s to hold at 0, perhaps %s, or add equations", counts, counted(missing, "further input"), strings.Replace(call, "%s", quoted(further), 1))
+	e.Reason = fmt.Sprintf("%s: add %s, perhaps for %s, or, where what is missing comes from outside, name %s to hold at 0, perhaps %s",
+		counts, counted(missing, "equation"), shortened(s.namesOf(weakest[:missing])), counted(missing, "further input"), strings.Replace(call, "%s", quoted(further), 1))
 	return e
 }
 

@@ -131,7 +131,7 @@ func Linearize(m Nonlinear, values ...OperatingValue) (statespace.Continuous, er
 	}
 	for i, given := range o.given {
 		if !given {
-			return statespace.Continuous{}, &OperatingError{Signal: o.signal(i).Name, Reason: "has no value; Equilibrium finds it"}
+			return statespace.Continuous{}, &OperatingError{Signal: o.signal(i).Name, Reason: "has no value: give one with At, or let Equilibrium find it"}
 		}
 		if o.sought[i] {
 			return statespace.Continuous{}, &OperatingError{Signal: o.signal(i).Name, Reason: "has a value by Near, where a search begins; Equilibrium finds it"}

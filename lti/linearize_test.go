@@ -198,7 +198,7 @@ func TestLinearizeRefusals(t *testing.T) {
 		"output": {faultOf(Linearize(bench, At("push", "0 N"), At("sag", "50 mm"), At("speed", "0 m/s"), At("force", "2 kN"))),
 			&operating, "force: is an output, which follows from states and inputs"},
 		"endless":    {faultOf(Linearize(fine, At("level", "0 m"), At("inflow", "0 L/s"))), &model, "the slope of the rate of level by level is"},
-		"missing":    {faultOf(Linearize(fine, at[0])), &operating, "inflow: has no value; Equilibrium finds it"},
+		"missing":    {faultOf(Linearize(fine, at[0])), &operating, "inflow: has no value: give one with At, or let Equilibrium find it"},
 		"near":       {faultOf(Linearize(fine, at[0], Near("inflow", "1 L/s"))), &operating, "inflow: has a value by Near, where a search begins; Equilibrium finds it"},
 		"twice":      {faultOf(Linearize(fine, at[0], at[0])), &operating, "level: has two values"},
 		"unit":       {faultOf(Linearize(fine, At("level", "1 s"), at[1])), &operating, "level:"},

@@ -54,7 +54,7 @@ func TestMistakes(t *testing.T) {
 		{"two definitions that leave another open", `"cl load' = (element - load)/coupling - leak"`, `"leak = load/loss"`, "equations 2 and 3 repeat or contradict each other and leave element, load, leak open; leak has two definitions, equations 2 and 3"},
 		{"the same twice", `"cl load' = (element - load)/coupling - leak"`, `"2 leak = load/loss + leak"`, "equations 2 and 3 repeat or contradict each other and leave element, load, leak open"},
 		{"an equation that is missing", `,
-	              "leak = load/loss"`, ``, "2 equations for 3 unknown signals (element, load, leak): name 1 further input to hold at 0, perhaps TransferFunction(\"heating\", \"load\", \"leak\"), or add equations"},
+	              "leak = load/loss"`, ``, "2 equations for 3 unknown signals (element, load, leak): add 1 equation, perhaps for leak, or, where what is missing comes from outside, name 1 further input to hold at 0, perhaps TransferFunction(\"heating\", \"load\", \"leak\")"},
 		{"a signal that is never declared", `, "leak": "W"`, ``, "no signal or constant has this name"},
 	} {
 		text := strings.Replace(kiln, c.from, c.to, 1)

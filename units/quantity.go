@@ -183,6 +183,22 @@ func MustParseAbsolute(text string) Quantity {
 	return q
 }
 
+// Reading returns an absolute temperature on the scale of a unit, correctly
+// rounded: 323.15 K is 50 in degC. It is the inverse of ParseAbsolute. A unit
+// without a zero point of its own gives In. The errors are those of In.
+func (q Quantity) Reading(u Unit) (float64, error) {
+	symbol, ok := u.temperature()
+	if !ok {
+		return q.In(u)
+	}
+	k, err := q.ConvertTo(kelvins)
+	if err != nil {
+		return 0, err
+	}
+	v := k.Value()
+	return NewQuantity(v.Quo(v.Sub(v, rationalOfPi(offsets[symbol])), u.Scale()), u).Float64()
+}
+
 var kelvins, seconds = MustParse("K"), MustParse("s")
 
 // temperature returns the symbol of a unit that is the degree of a temperature

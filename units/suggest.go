@@ -32,6 +32,11 @@ func suggest(name string, table map[string]*symbol) string {
 	if reason := refused[strings.TrimSuffix(name, "s")]; reason != "" {
 		return reason
 	}
+	if lower := strings.ToLower(name[:1]) + name[1:]; lower != name && strings.HasPrefix(name, "K") && len(name) > 1 { // KW for kW
+		if _, ok := lookUp(lower, table); ok {
+			return fmt.Sprintf("%q: kilo is a small k", lower)
+		}
+	}
 	for i := range name { // Nm for N*m
 		_, first := lookUp(name[:i], table)
 		_, second := lookUp(name[i:], table)

@@ -131,8 +131,8 @@ var prefixes = map[string]int{
 
 // refused are symbols that a user may try, with the reason why they are none.
 var refused = map[string]string{
-	"dB":  "decibels are read off a response and are no unit here: write the ratio itself",
-	"B":   "decibels are read off a response and are no unit here: write the ratio itself",
+	"dB":  "the ratio itself (decibels are read off a response and are no unit here)",
+	"B":   "the ratio itself (decibels are read off a response and are no unit here)",
 	"Np":  "a level in nepers is no unit here: write the ratio itself",
 	"kn":  "knot",
 	"kt":  "knot for the speed, Gg for a thousand tonnes",

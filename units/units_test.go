@@ -79,3 +79,24 @@ func TestQuantities(t *testing.T) {
 		t.Error("1 Hz was taken for 1/s")
 	}
 }
+
+// Readings are the inverse of ParseAbsolute; the fixed points of the scales are
+// those of NIST SP 811, appendix B.9.
+func TestReading(t *testing.T) {
+	for _, c := range []struct {
+		text, unit string
+		want       float64
+	}{{"323.15 K", "degC", 50}, {"0 K", "degC", -273.15}, {"900 degC", "degC", 900}, {"32 degF", "degC", 0}, {"100 degC", "degF", 212},
+		{"300 K", "K", 300}, {"2 m", "mm", 2000}} {
+		if got, err := MustParseAbsolute(c.text).Reading(MustParse(c.unit)); err != nil || got != c.want {
+			t.Errorf("%s in %s: %v, %v, want %v", c.text, c.unit, got, err, c.want)
+		}
+	}
+	var mismatch *MismatchError
+	if _, err := MustParseQuantity("3 m").Reading(MustParse("degC")); !errors.As(err, &mismatch) {
+		t.Error(err)
+	}
+	if _, err := Parse("KW/K"); err == nil || !strings.Contains(err.Error(), `"kW": kilo is a small k`) {
+		t.Error(err)
+	}
+}

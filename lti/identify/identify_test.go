@@ -307,6 +307,21 @@ func TestWarnings(t *testing.T) {
 	}
 }
 
+// A record that ends early misleads the quick looks, which say so.
+func TestQuickLooksOfEarlyEnds(t *testing.T) {
+	r := truth{gain: 0.12, tau: 400, delay: 20, noise: 0.01}.stepRecord(4, 300, 10, 5, 300)
+	for name, look := range map[string]func(Record) (Fit, error){"two points": TwoPoint, "areas": Area} {
+		f, err := look(r)
+		if err != nil || !strings.Contains(f.String(), "the response is not over when the record ends") {
+			t.Errorf("%s: %v, %v", name, f, err)
+		}
+		whole, err := look(truth{gain: 0.12, tau: 400, delay: 20, noise: 0.01}.stepRecord(4, 900, 10, 5, 300))
+		if err != nil || strings.Contains(whole.String(), "not over") {
+			t.Errorf("%s: %v, %v", name, whole, err)
+		}
+	}
+}
+
 func TestRefusedRecords(t *testing.T) {
 	flat := make([]float64, 20)
 	ramp := make([]float64, 20)

@@ -45,6 +45,14 @@ func mean(v []float64) float64 {
 	return sum / float64(len(v))
 }
 
+// moves reports whether the output still moves over the last tenth of the record:
+// by more than half a per cent of its change from one half of it to the other.
+func (s *stepTest) moves() bool {
+	n := len(s.r.y)
+	half := max(1, n/20)
+	return n >= 40 && math.Abs(mean(s.r.y[n-half:])-mean(s.r.y[n-2*half:n-half])) > 0.005*math.Abs(s.change)
+}
+
 // crossing returns when the response first passes a part of its final change,
 // between rows along a line.
 func (s *stepTest) crossing(part float64) float64 {
@@ -83,8 +91,9 @@ func TwoPoint(r Record) (Fit, error) {
 // which average over noise: with A0 the area between the final value and the
 // response, the sum of dead time and time constant is A0 over the final change, and
 // with A1 the area below the response up to that sum after the step, the time
-// constant is e·A1 over the final change (Åström and Hägglund 1995). Otherwise it
-// is like TwoPoint.
+// constant is e·A1 over the final change (Åström and Hägglund 1995). A record that
+// ends early moves all three numbers, the dead time most. Otherwise it is like
+// TwoPoint.
 func Area(r Record) (Fit, error) {
 	s, err := newStepTest(r)
 	if err != nil {
@@ -137,8 +146,8 @@ func (s *stepTest) fit(tau, delay float64) (Fit, error) {
 	for i, v := range x {
 		f.residuals[i] -= s.initial + gain*v
 	}
-	if part := x[len(x)-1] / s.moved; part < 0.98 {
-		f.warnings = append(f.warnings, fmt.Sprintf("the response is not over when the record ends (about %.0f %% of it): gain and time constant are too small", 100*part))
+	if part := x[len(x)-1] / s.moved; part < 0.98 || s.moves() {
+		f.warnings = append(f.warnings, "the response is not over when the record ends: gain, time constant and dead time of this method are off; FirstOrder extrapolates")
 	}
 	return f, nil
 }

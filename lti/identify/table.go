@@ -51,7 +51,7 @@ func readTable(r io.Reader, header func(cell string) (units.Signal, error)) (*ta
 			for _, c := range cells {
 				s, err := header(strings.TrimSpace(c))
 				if err != nil {
-					return nil, &RowError{Row: line, Found: strconv.Quote(lex.Excerpt(c, 0)), Want: "a column such as \"zone: degC\" (" + err.Error() + ")", Err: err}
+					return nil, &RowError{Row: line, Found: strconv.Quote(lex.Excerpt(c, 0)), Want: "a column such as \"zone: degC\" or \"magnitude: dB re K/kW\" (" + err.Error() + ")", Err: err}
 				}
 				t.columns = append(t.columns, s)
 			}
