@@ -76,7 +76,9 @@ func (e *Equations) Signal(name, unit string) {
 	e.signals = append(e.signals, declaration{name, unit})
 }
 
-// Constant declares a constant with its value, such as "0.0042 m^3/(s*mm)".
+// Constant declares a constant with its value, such as "0.0042 m^3/(s*mm)". A
+// temperature is a difference here, in K: an absolute one belongs into the
+// operating point of Linearize or Equilibrium.
 func (e *Equations) Constant(name, quantity string) {
 	e.constants = append(e.constants, declaration{name, quantity})
 }
@@ -130,7 +132,7 @@ func (e *Equations) Build() (*System, error) {
 	for _, d := range e.constants {
 		q, err := units.ParseQuantity(d.text)
 		if err != nil {
-			fault("constant", d, err.Error(), err)
+			fault("constant", d, reasonAgainst(err), err)
 		}
 		check("constant", d)
 		s.constants = append(s.constants, Constant{d.name, q})

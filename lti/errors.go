@@ -1,12 +1,14 @@
 package lti
 
 import (
+	"errors"
 	"fmt"
 	"strings"
 
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/lex"
 	"github.com/qofs/qofs/lti/statespace"
+	"github.com/qofs/qofs/units"
 )
 
 // ErrLimit: a documented bound on size or work was reached.
@@ -80,6 +82,18 @@ type DeterminacyError struct {
 
 // Error says what is too many, too few or open, and what to do.
 func (e *DeterminacyError) Error() string { return e.Reason }
+
+// reasonAgainst says why a quantity was refused. For a bare temperature it says
+// what a linear model holds.
+func reasonAgainst(err error) string {
+	var bare *units.TemperatureError
+	if !errors.As(err, &bare) {
+		return err.Error()
+	}
+	return fmt.Sprintf("signals and constants of a linear model are deviations from an operating point: write a difference of %s as %q; "+
+		"an absolute temperature is read by units.ParseAbsolute and belongs into the operating point (Linearize, Equilibrium)",
+		lex.Excerpt(bare.Text, 0), lex.Excerpt(bare.Difference.String(), 0))
+}
 
 // InitialValueError tells what is wrong with an initial value, or which are
 // missing.

@@ -28,7 +28,7 @@ func (s *System) Step(input, height string) (tf.TimeFunction, error) {
 		q, err = q.ConvertTo(signal.Unit)
 	}
 	if err != nil {
-		return tf.TimeFunction{}, &InitialValueError{Signal: input, Quantity: height, Reason: err.Error(), Err: err}
+		return tf.TimeFunction{}, &InitialValueError{Signal: input, Quantity: height, Reason: reasonAgainst(err), Err: err}
 	}
 	return tf.NewTimeFunction(poly.FromRats(q.Value()), poly.FromInts(0, 1), signal)
 }

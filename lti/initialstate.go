@@ -190,7 +190,7 @@ func (x *InitialState) read(v InitialValue) (state, *big.Rat, error) {
 		q, err = q.ConvertTo(signal.Unit)
 	}
 	if err != nil {
-		return bad(err.Error(), err)
+		return bad(reasonAgainst(err), err)
 	}
 	number := q.Value()
 	return state{column, d.order}, number.Mul(number, signal.Unit.Scale()), nil

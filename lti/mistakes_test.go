@@ -24,7 +24,8 @@ func TestMistakes(t *testing.T) {
 	}{
 		{"a constant in hertz", `"60 kJ/K"`, `"60 kJ*Hz*s/K"`, "the constant is in Hz, which counts cycles or degrees; an equation needs radians: write 376991.1 m^2*kg*rad/(s^2*K)"},
 		{"a cut-off in hertz", `"0.0075 K/W"`, `"0.0075 K*s*Hz/W"`, "which counts cycles or degrees; an equation needs radians: write 0.04712389"},
-		{"a temperature as a constant", `"0.12 K/W"`, `"900 degC"`, "want K for a difference of temperatures, or ParseAbsolute for the temperature itself"},
+		{"a temperature as a constant", `"0.12 K/W"`, `"900 degC"`, "constant loss = \"900 degC\": signals and constants of a linear model are deviations from an operating point: write a difference of 900 degC as \"900 K\"; an absolute temperature is read by units.ParseAbsolute and belongs into the operating point (Linearize, Equilibrium)"},
+		{"a temperature in Fahrenheit", `"0.12 K/W"`, `"-18 degF"`, "write a difference of -18 degF as \"-10 K\""},
 		{"an unknown unit", `"0.12 K/W"`, `"0.12 kelvin/W"`, "found the unknown unit \"kelvin\", want its symbol, \"K\""},
 		{"a product of signals", `"leak = load/loss"`, `"leak = load load/loss"`, "at \"load load\" (offset 7): a product of signals is not linear"},
 		{"radiation", `"leak = load/loss"`, `"leak = load^4/loss"`, "replace the term by its slope at an operating point"},
@@ -67,6 +68,22 @@ func TestMistakes(t *testing.T) {
 		}
 		if err == nil || !strings.Contains(err.Error(), c.says) {
 			t.Errorf("%s: %v\nwant an error that says %q", c.mistake, err, c.says)
+		}
+	}
+}
+
+// Every door for a quantity of a linear model says that it holds deviations.
+func TestAbsoluteTemperatures(t *testing.T) {
+	s, err := lti.ParseSystem(kiln)
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, constant := s.WithConstant("loss", "60 degC")
+	_, step := s.Step("load", "60 degC")
+	_, initial := s.InitialState([]string{"heating"}, lti.Initially("load", "60 degC"), lti.Initially("element", "60 K"))
+	for door, err := range map[string]error{"WithConstant": constant, "Step": step, "InitialState": initial} {
+		if err == nil || !strings.Contains(err.Error(), `deviations from an operating point: write a difference of 60 degC as "60 K"`) {
+			t.Errorf("%s: %v", door, err)
 		}
 	}
 }

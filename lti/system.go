@@ -57,7 +57,7 @@ func (s *System) WithConstant(name, quantity string) (*System, error) {
 	}
 	q, err := units.ParseQuantity(quantity)
 	if err != nil {
-		return nil, &DeclarationError{"constant", name, quantity, err.Error(), err}
+		return nil, &DeclarationError{"constant", name, quantity, reasonAgainst(err), err}
 	}
 	t := &System{signals: s.signals, constants: slices.Clone(s.constants), equations: s.equations}
 	t.constants[i].Value = q

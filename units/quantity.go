@@ -125,7 +125,8 @@ func (q Quantity) Equal(r Quantity) bool {
 // such as "900 degC" is refused, because it may mean the temperature itself
 // (ParseAbsolute) or a difference: write a difference as "900 K".
 //
-// The error is a *SyntaxError.
+// The error is a *SyntaxError; behind it stands a *TemperatureError for a bare
+// temperature.
 func ParseQuantity(text string) (Quantity, error) {
 	q, err := parseQuantity(text)
 	if err != nil {
@@ -133,7 +134,7 @@ func ParseQuantity(text string) (Quantity, error) {
 	}
 	if symbol, ok := q.unit.temperature(); ok {
 		return Quantity{}, lex.Fault(text, strings.Index(text, symbol), fmt.Sprintf("a bare %q", symbol),
-			"K for a difference of temperatures, or ParseAbsolute for the temperature itself", nil)
+			"K for a difference of temperatures, or ParseAbsolute for the temperature itself", &TemperatureError{Text: text, Difference: q.unambiguous()})
 	}
 	return q, nil
 }

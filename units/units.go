@@ -29,6 +29,18 @@ var (
 // SyntaxError tells what is wrong in a text and where.
 type SyntaxError = lex.SyntaxError
 
+// TemperatureError tells that a text such as "60 degC" may mean a temperature
+// itself, which ParseAbsolute reads, or a difference of temperatures.
+type TemperatureError struct {
+	Text       string
+	Difference Quantity // what the text is as a difference, in K
+}
+
+// Error says what to write for a difference.
+func (e *TemperatureError) Error() string {
+	return fmt.Sprintf("as a difference %q is %v", lex.Excerpt(e.Text, 0), e.Difference)
+}
+
 // MismatchError tells that a quantity in one unit stands where another unit is
 // needed.
 type MismatchError struct {

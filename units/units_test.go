@@ -64,6 +64,13 @@ func TestQuantities(t *testing.T) {
 	if _, err := ParseQuantity("900 degC"); err == nil || !strings.Contains(err.Error(), "ParseAbsolute") {
 		t.Errorf("a bare temperature: %v", err)
 	}
+	for text, difference := range map[string]string{"900 degC": "900 K", "-18 °F": "-10 K", "9/5 degF": "1 K"} {
+		var bare *TemperatureError
+		if _, err := ParseQuantity(text); !errors.As(err, &bare) || bare.Text != text || bare.Difference.String() != difference ||
+			!strings.HasSuffix(err.Error(), " is "+difference) {
+			t.Errorf("%s: %v, want the difference %s", text, err, difference)
+		}
+	}
 	if a, err := ParseAbsolute("900 degC"); err != nil || a.String() != "1173.15 K" {
 		t.Errorf("900 degC is %v, %v", a, err)
 	}
