@@ -278,6 +278,6 @@ func ExampleEquations_Build() {
 	fmt.Println(err)
 	// Output:
 	// constant crest = "1.7 m^(1/2)/s": at offset 8 of "1.7 m^(1/2)/s": found "/", want a closing parenthesis
-	// equation 1, "area level = inflow", at "inflow" (offset 13): the term is in m^3/s (in base units), where "area level" is in m^3
+	// equation 1, "area level = inflow", at "inflow" (offset 13): the term is in m^3/s, where "area level" is in m^3
 	// equation 2, "inflow = area level level'", at "area level level'" (offset 9): a product of signals is not linear: a transfer function holds only for equations that are linear in the signals; replace the term by its slope at an operating point (linearise)
 }

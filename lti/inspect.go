@@ -168,11 +168,7 @@ func (x Inspection) String() string {
 	g := x.Function
 	var b strings.Builder
 	line := func(format string, args ...any) { fmt.Fprintf(&b, format+"\n", args...) }
-	unit := "in " + g.Output().Unit.Div(g.Input().Unit).String()
-	if unit == "in 1" {
-		unit = "a pure number"
-	}
-	line("from %s to %s, %s", g.Input(), g.Output(), unit)
+	line("from %s to %s, %s", g.Input(), g.Output(), inUnit(g.Output().Unit.Div(g.Input().Unit)))
 	degree := x.Reduced.Denominator().Degree()
 	line("order %d, with %s in lowest terms", degree, counted(max(0, x.Reduced.Numerator().Degree()), "zero"))
 	if !x.Reduced.IsProper() {

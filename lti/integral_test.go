@@ -92,7 +92,7 @@ func TestDerivativesOfInputs(t *testing.T) {
 func TestIntegralRefusals(t *testing.T) {
 	deep := strings.Repeat("integral(", 17) + "x" + strings.Repeat(")", 17)
 	for _, c := range []struct{ equation, says string }{
-		{"y = integral(x)", `"integral(x)" (offset 4): the term is in m*s (in base units), where "y" is in m`},
+		{"y = integral(x)", `"integral(x)" (offset 4): the term is in m*s, where "y" is in m`},
 		{"y = a integral(x", "a closing parenthesis"},
 		{"y = a integral", "integral(x) is the integral of x by time"},
 		{"y = a integral x", "integral(x) is the integral of x by time"},

@@ -115,6 +115,26 @@ func inRadians(q units.Quantity) string {
 	return fmt.Sprintf("%.7g", coherent)
 }
 
+// unit is that of a part of the equation, for a message: of a name as it was
+// declared, else the coherent one.
+func (e *evaluator) unit(n *node, v value) units.Unit {
+	if i, ok := e.system.signalIndex(n.name); ok && n.kind == isName {
+		return e.system.signals[i].Unit
+	}
+	if i, ok := e.system.constantIndex(n.name); ok && n.kind == isName {
+		return e.system.constants[i].Value.Unit()
+	}
+	return v.dimension.Unit()
+}
+
+// inUnit is "in mm", or "a pure number".
+func inUnit(u units.Unit) string {
+	if u.IsOne() {
+		return "a pure number"
+	}
+	return "in " + u.String()
+}
+
 // sum adds or subtracts; the dimensions must agree.
 func (e *evaluator) sum(n *node) (value, bool) {
 	a, okA := e.evaluate(n.a)
@@ -136,9 +156,9 @@ func (e *evaluator) add(n *node, a, b value) (value, bool) {
 	case b.zero:
 		return a, true
 	case a.dimension != b.dimension:
-		found, want := b.dimension.Unit(), a.dimension.Unit()
+		found, want := e.unit(n, b), a.dimension.Unit()
 		return e.failWith(n, &units.MismatchError{Found: found, Want: want},
-			"the term is in %s (in base units), the terms before it in %s", found, want)
+			"the term is %s, the terms before it %s", inUnit(found), inUnit(want))
 	}
 	// A value has one owner, so that the terms of a can take those of b: a long
 	// sum is linear work.

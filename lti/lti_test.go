@@ -135,7 +135,7 @@ func TestRefusals(t *testing.T) {
 	}
 	for _, c := range []struct{ equation, says string }{
 		{"x'^2 = y", "not linear"}, {"sin(x) = y", "linearise"}, {"x y = y", "product of signals"}, {"1/x = y", "division by a signal"},
-		{"x' = y", `"y" (offset 5): the term is in m (in base units), where "x'" is in m/s`}, {"a (x + x') = y", "the terms before it in m"}, {"a x' = y + a", `"a" (offset 11): the term is in s (in base units), where "a x'" is in m`}, {"x = z", "declared are"}, {"x = y + 5", "in 1"}, {"w x = y'", "12.56637 rad/s"},
+		{"x' = y", `"y" (offset 5): the term is in m, where "x'" is in m/s`}, {"a (x + x') = y", "the terms before it in m"}, {"a x' = y + a", `"a" (offset 11): the term is in s, where "a x'" is in m`}, {"x = z", "declared are"}, {"x = y + 5", "\"5\" (offset 8): the term is a pure number, where \"x\" is in m"}, {"w x = y'", "12.56637 rad/s"},
 		{"x", "= or an operator"}, {"x = ", "a name, a number"}, {"x'' = \"y", "second derivative"}, {"x = x", "nothing about any signal"}, {"a' x = y", "derivative of a constant"},
 		{"y = x/0", "zero"}, {"", "a name"}, {"x = y'''''''''''''''''", "derivative of order"}, {"a^99 x = y", "exponent"}, {"x = 1/a y", "read in two ways"},
 		{"NaN x = y", "declared are"}, {strings.Repeat("(", 2000), "nesting"}, {"x = 1e999999999 y", "exponent"}, {"x" + strings.Repeat("+x", 9000) + "=y", "parts"},

@@ -22,7 +22,7 @@ func TestMistakes(t *testing.T) {
 		mistake, from, to string // one change of the model
 		says              string
 	}{
-		{"a constant in hertz", `"60 kJ/K"`, `"60 kJ*Hz*s/K"`, "the constant is in Hz, which counts cycles or degrees; an equation needs radians: write 376991.1 m^2*kg*rad/(s^2*K)"},
+		{"a constant in hertz", `"60 kJ/K"`, `"60 kJ*Hz*s/K"`, "the constant is in Hz, which counts cycles or degrees; an equation needs radians: write 376991.1 J*rad/K"},
 		{"a cut-off in hertz", `"0.0075 K/W"`, `"0.0075 K*s*Hz/W"`, "which counts cycles or degrees; an equation needs radians: write 0.04712389"},
 		{"a temperature as a constant", `"0.12 K/W"`, `"900 degC"`, "constant loss = \"900 degC\": signals and constants of a linear model are deviations from an operating point: write a difference of 900 degC as \"900 K\"; an absolute temperature is read by units.ParseAbsolute and belongs into the operating point (Linearize, Equilibrium)"},
 		{"a temperature in Fahrenheit", `"0.12 K/W"`, `"-18 degF"`, "write a difference of -18 degF as \"-10 K\""},
@@ -31,9 +31,9 @@ func TestMistakes(t *testing.T) {
 		{"radiation", `"leak = load/loss"`, `"leak = load^4/loss"`, "replace the term by its slope at an operating point"},
 		{"a limit", `"leak = load/loss"`, `"leak = max(load, element)/loss"`, "at \"max(load, element)\" (offset 7): max of a signal is not linear"},
 		{"a function", `"leak = load/loss"`, `"leak = sqrt(load)/loss"`, "sqrt of a signal is not linear"},
-		{"a missing prime", `cl load'`, `cl load`, "at \"cl load\" (offset 0): the term is in m^2*kg/s^2 (in base units), where \"(element - load)/coupling\" is in m^2*kg/s^3"},
-		{"a prime too many", `cl load'`, `cl load''`, "at \"cl load''\" (offset 0): the term is in m^2*kg/s^4"},
-		{"division for multiplication", `load/loss`, `load loss`, "the term is in s^3*K^2/(m^2*kg) (in base units), where \"leak\" is in m^2*kg/s^3"},
+		{"a missing prime", `cl load'`, `cl load`, "at \"cl load\" (offset 0): the term is in J, where \"(element - load)/coupling\" is in W"},
+		{"a prime too many", `cl load'`, `cl load''`, "at \"cl load''\" (offset 0): the term is in W/s, where"},
+		{"division for multiplication", `load/loss`, `load loss`, "the term is in K^2/W, where \"leak\" is in W"},
 		{"a differential quotient", `cl load'`, `cl dload/dt`, "the derivative of x by time is x'"},
 		{"a dot", `cl load'`, `cl load_dot`, "the derivative of load by time is load', the second one load''"},
 		{"the Laplace variable", `cl load'`, `cl s load`, "x' stands for s x, integral(x) for x/s"},
@@ -44,7 +44,7 @@ func TestMistakes(t *testing.T) {
 		{"a number in a bracket before a name", `load/loss`, `1/loss load`, "what follows a division is read in two ways"},
 		{"two equals signs", `leak = load/loss`, `leak = load/loss = 3`, "want an operator or the end of the equation"},
 		{"an inequality", `leak = load/loss`, `leak > load/loss`, "limits and inequalities are not linear and have no place here"},
-		{"a constant term", `leak = load/loss`, `leak = load/loss + 5`, "the term is in 1 (in base units), where \"leak\" is in m^2*kg/s^3"},
+		{"a constant term", `leak = load/loss`, `leak = load/loss + 5`, "the term is a pure number, where \"leak\" is in W"},
 		{"ambient as a constant", `leak = load/loss`, `leak = (load - ambient)/loss`, "no signal or constant has this name; declared are ce, cl, coupling"},
 		{"an absolute temperature", `leak = load/loss`, `leak = (load + coupling)/loss`, "the terms before it in K"},
 		{"a name declared twice", `"leak": "W"}`, `"leak": "W", "loss": "W"}`, "the name is declared already"},

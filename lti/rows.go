@@ -58,9 +58,9 @@ func (e *evaluator) linear() (row, bool) {
 	sum := value{zero: true}
 	for _, t := range good {
 		if t.value.dimension != model.value.dimension {
-			found, want := t.value.dimension.Unit(), model.value.dimension.Unit()
-			e.failWith(t.node, &units.MismatchError{Found: found, Want: want}, "the term is in %s (in base units), where %q is in %s",
-				found, e.equation.text[model.node.from:model.node.to], want)
+			found, want := e.unit(t.node, t.value), e.unit(model.node, model.value)
+			e.failWith(t.node, &units.MismatchError{Found: found, Want: want}, "the term is %s, where %q is %s",
+				inUnit(found), e.equation.text[model.node.from:model.node.to], inUnit(want))
 			continue
 		}
 		var ok bool

@@ -74,14 +74,15 @@ func (d Dimension) WithoutAngle() Dimension {
 	return d
 }
 
-// Unit returns the coherent unit of d, spelled in base units.
+// Unit returns the coherent unit of d, spelled as String does.
 func (d Dimension) Unit() Unit {
 	if d.beyond {
 		return unbounded
 	}
-	return fromFactors(d.factors())
+	return fromFactors(d.coherentFactors())
 }
 
+// factors spells d in base units.
 func (d Dimension) factors() []factor {
 	var fs []factor
 	for i, e := range d.exponents {
@@ -94,7 +95,9 @@ func (d Dimension) factors() []factor {
 	return fs
 }
 
-// String spells the coherent unit of d: "m*kg/s^2", or "1".
+// String spells the coherent unit of d, by N, Pa, J, W, V, Ω, F or H in the
+// place of the kilogram where that is shorter, else in base units: "W/K", "N/m",
+// "m/s^2", or "1".
 func (d Dimension) String() string {
 	switch {
 	case d.beyond:
@@ -102,7 +105,7 @@ func (d Dimension) String() string {
 	case d.IsZero():
 		return "1"
 	}
-	return spell(d.factors())
+	return spell(d.coherentFactors())
 }
 
 // spell writes factors as text that parses back: a product over one solidus.

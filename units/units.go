@@ -56,12 +56,16 @@ func (e *MismatchError) Error() string {
 		s = e.What + ": " + s
 	}
 	f, w := e.Found.Dimension(), e.Want.Dimension()
+	dimensions := fmt.Sprintf(" (%s against %s)", f, w)
+	if f.String() == e.Found.String() && w.String() == e.Want.String() {
+		dimensions = ""
+	}
 	switch {
 	case f == w:
 		k, _ := e.Found.ConversionTo(e.Want)
 		return s + fmt.Sprintf(": the dimension agrees, convert by the factor %s", shortRat(k))
 	case f.WithoutAngle() == w.WithoutAngle():
-		return s + fmt.Sprintf(": they differ by radians (%s against %s)", f, w)
+		return s + ": they differ by radians" + dimensions
 	}
-	return s + fmt.Sprintf(": the dimensions differ (%s against %s)", f, w)
+	return s + ": the dimensions differ" + dimensions
 }

@@ -55,7 +55,7 @@ func ExampleSeries() {
 	fmt.Println(err)
 	// Output:
 	// 10 kohm + 100 nF has the impedance (10000 s + 1e7)/s [A -> V]
-	// impedance: a resistor: unit nF found where ohm is needed: the dimensions differ (s^4*A^2/(m^2*kg) against m^2*kg/(s^3*A^2))
+	// impedance: a resistor: unit nF found where ohm is needed: the dimensions differ (F against Ω)
 	// impedance: Series: argument 1 is mechanical (translation) (across in m/s, through in N), want electrical (across in V, through in A)
 	// impedance: Divider: argument 0, 200 kg, has an end at the ground, so that nothing passes through it to the next; want it as the shunt element
 }
