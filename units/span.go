@@ -1,9 +1,12 @@
 package units
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"math/big"
+
+	"github.com/qofs/qofs/internal/lex"
 )
 
 // ErrZeroWidth: both ends of a range are the same value.
@@ -16,7 +19,7 @@ var ErrZeroWidth = errors.New("a range of zero width")
 type Range struct {
 	_        [0]func()
 	from, to Quantity // in one unit
-	degree   string   // degC or degF where the text had them
+	degree   string   // degC or degF where the text had one of them
 	set      bool
 }
 
@@ -78,7 +81,10 @@ func (r Range) Equal(t Range) bool { return r.from.Equal(t.from) && r.To().Equal
 //
 // It is exact and immutable; the zero value turns 0 … 1 into 0 … 1. It does not
 // limit: a value outside the range is converted along the same line, and
-// Range.Contains tells.
+// Range.Contains tells. A temperature is the exception: outside a range that was
+// read in degC or degF it is refused, because it is nearly always a difference
+// or a reading in K (60 K for 60 degC) and would give a value that looks like any
+// other.
 type Span struct {
 	_             [0]func()
 	input, output Range
@@ -118,20 +124,53 @@ func (s Span) along(x *big.Rat) *big.Rat {
 }
 
 // Convert returns the output for an input, exactly, in the unit of the output
-// range. A temperature goes in and comes out from absolute zero (ParseAbsolute).
-// The error is a *MismatchError.
+// range. A temperature goes in and comes out from absolute zero: ParseAbsolute
+// reads it, Quantity.Reading gives its number on a scale. The errors are a
+// *MismatchError, and an *OutsideError for a temperature outside a range in degC
+// or degF.
 func (s Span) Convert(input Quantity) (Quantity, error) {
-	q, err := input.ConvertTo(s.input.Unit())
+	q, err := s.input.admit(input)
 	if err != nil {
 		return Quantity{}, fmt.Errorf("units: input of a span: %w", err)
 	}
 	return NewQuantity(s.along(q.rat()), s.output.Unit()), nil
 }
 
+// admit returns a value in the unit of the range.
+func (r Range) admit(q Quantity) (Quantity, error) {
+	q, err := q.ConvertTo(r.Unit())
+	if err != nil || r.degree == "" {
+		return q, err
+	}
+	if inside, err := r.Contains(q); !inside {
+		return q, cmp.Or[error](err, &OutsideError{Value: q, Range: r})
+	}
+	return q, nil
+}
+
+// OutsideError tells that a temperature lies outside of a range that was read in
+// degC or degF.
+type OutsideError struct {
+	Value Quantity // in the unit of the range
+	Range Range
+}
+
+// Error gives the value on the scale of the range, and says what was meant where
+// its number would be a reading within the range.
+func (e *OutsideError) Error() string {
+	s := fmt.Sprintf("%.7g is %s, outside of %s", e.Value, lex.Excerpt(e.Range.end(e.Value), 0), lex.Excerpt(e.Range.String(), 0))
+	if reading, err := absolute("", 0, NewQuantity(e.Value.rat(), MustParse(e.Range.degree))); err == nil {
+		if inside, _ := e.Range.Contains(reading); inside {
+			s += fmt.Sprintf(": a temperature counts from absolute zero; ParseAbsolute reads %s as %.7g", lex.Excerpt(e.Range.end(reading), 0), reading)
+		}
+	}
+	return s + "; Slope and Offset hold beyond the range"
+}
+
 // ConvertBack returns the input for an output, exactly, in the unit of the input
-// range. It undoes Convert. The error is a *MismatchError.
+// range. It undoes Convert, and has its errors for the output.
 func (s Span) ConvertBack(output Quantity) (Quantity, error) {
-	q, err := output.ConvertTo(s.output.Unit())
+	q, err := s.output.admit(output)
 	if err != nil {
 		return Quantity{}, fmt.Errorf("units: output of a span: %w", err)
 	}

@@ -62,7 +62,7 @@ func TestSpans(t *testing.T) {
 		{"100 % ... 0 % → 4 mA to 20 mA", "-0.16 mA/%", "20 mA", "25 %", "16 mA"},
 		{"500 mm … 2 m -> -10 V … 10 V", "20/1500 V/mm", "-50/3 V", "1250 mm", "0 V"},
 		{"0 degC … 1200 degC -> 4 mA … 20 mA", "16/1200 mA/K", "0.358 mA", "900 degC", "16 mA"},
-		{"0 degC … 100 degC -> 32 degF … 212 degF", "1", "0 K", "-40 degC", "-40 degF"}, // one temperature
+		{"0 degC … 100 degC -> 32 degF … 212 degF", "1", "0 K", "37 degC", "98.6 degF"}, // one temperature
 		{"-10 V … 10 V -> 0 … 65536 count", "3276.8 count/V", "32768 count", "2.5 V", "40960 count"},
 		{"-5 K … 5 K -> 0 … 1", "0.1 1/K", "0.5", "0 K", "0.5"},
 		{"0 … 1 -> 0 … 1", "1", "0", "2", "2"}, // outside, along the same line
@@ -127,6 +127,43 @@ func TestSpanLaws(t *testing.T) {
 		if back, err := units.ParseSpan(s.String()); err != nil || !back.Equal(s) {
 			t.Fatalf("%v comes back as %v, %v", s, back, err)
 		}
+	}
+}
+
+// A difference or a reading in K is no temperature of the range, and is told so.
+// The values are worked by hand, with 0 degC at 273.15 K (SI Brochure, 2.3.1).
+func TestSpanOfTemperatures(t *testing.T) {
+	for _, c := range []struct{ span, in, says string }{
+		{"0 degC … 100 degC -> 4 mA … 20 mA", "60 K", "60 K is -213.15 degC, outside of 0 degC … 100 degC: " +
+			"a temperature counts from absolute zero; ParseAbsolute reads 60 degC as 333.15 K; Slope and Offset hold beyond the range"},
+		{"0 degC … 1200 degC -> 4 mA … 20 mA", "60000 mK", "ParseAbsolute reads 60 degC as 333.15 K"},
+		{"32 degF … 212 degF -> 4 mA … 20 mA", "100 K", "ParseAbsolute reads 100 degF as 310.9278 K"},
+		{"0 degC … 212 degF -> 4 mA … 20 mA", "60 K", "outside of 0 degC … 100 degC: a"},
+		{"100 degC … 0 degC -> 4 mA … 20 mA", "374 K", "374 K is 100.85 degC, outside of 100 degC … 0 degC; Slope and Offset"},
+	} {
+		s := units.MustParseSpan(c.span)
+		q := units.MustParseQuantity(c.in)
+		var outside *units.OutsideError
+		_, err := s.Convert(q)
+		if !errors.As(err, &outside) || !outside.Value.Equal(q) || !outside.Range.Equal(s.Input()) || !strings.Contains(err.Error(), c.says) {
+			t.Errorf("%s: %s: %v, want %q", c.span, c.in, err, c.says)
+		}
+		if _, err := s.Inverse().ConvertBack(q); !errors.As(err, &outside) || !strings.Contains(err.Error(), c.says) {
+			t.Errorf("%s backwards: %s: %v, want %q", c.span, c.in, err, c.says)
+		}
+	}
+	s := units.MustParseSpan("0 degC … 100 degC -> 4 mA … 20 mA")
+	for in, out := range map[string]string{"0 degC": "4 mA", "273.15 K": "4 mA", "333.15 K": "13.6 mA", "100 degC": "20 mA", "212 degF": "20 mA"} {
+		if got, err := s.Convert(units.MustParseAbsolute(in)); err != nil || !got.Equal(units.MustParseQuantity(out)) {
+			t.Errorf("%s becomes %v, %v, want %s", in, got, err, out)
+		}
+	}
+	// What comes out is not limited, nor a range in K, which says what it means.
+	if got, err := s.ConvertBack(units.MustParseQuantity("3.6 mA")); err != nil || !got.Equal(units.MustParseAbsolute("-2.5 degC")) {
+		t.Errorf("3.6 mA comes from %v, %v", got, err)
+	}
+	if got, err := units.MustParseSpan("0 K … 50 K -> 4 mA … 20 mA").Convert(units.MustParseQuantity("60 K")); err != nil || got.String() != "23.2 mA" {
+		t.Errorf("60 K becomes %v, %v", got, err)
 	}
 }
 

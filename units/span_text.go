@@ -1,6 +1,7 @@
 package units
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"math/big"
@@ -55,9 +56,7 @@ func ParseRange(text string) (Range, error) {
 		}
 		return Range{}, lex.Fault(text, at+length, found, want, err)
 	}
-	if fromDegree == toDegree {
-		r.degree = fromDegree
-	}
+	r.degree = cmp.Or(fromDegree, toDegree)
 	return r, nil
 }
 
@@ -127,7 +126,7 @@ func moved(err error, text string, offset int) error {
 }
 
 // String writes both ends with their unit, exactly: "4 mA … 20 mA", and
-// "0 degC … 1200 degC" where the range was read so. ParseRange reads it back.
+// "0 degC … 1200 degC" where one end was read so. ParseRange reads it back.
 func (r Range) String() string {
 	return r.end(r.from) + " … " + r.end(r.To())
 }
@@ -137,7 +136,8 @@ func (r Range) end(q Quantity) string {
 		return q.String()
 	}
 	f := symbolFactor(r.degree)
-	v := new(big.Rat).Sub(q.rat(), rationalOfPi(offsets[r.degree]))
+	v := new(big.Rat).Mul(q.rat(), q.unit.scaleRat())
+	v.Sub(v, rationalOfPi(offsets[r.degree]))
 	return exactRat(v.Quo(v, f.scale)) + " " + r.degree
 }
 
