@@ -9,10 +9,10 @@ import (
 	"github.com/qofs/qofs/internal/intpoly"
 )
 
-// Warning is something in a diagram that is no fault of its form but is seldom
-// meant.
+// Warning is something in a diagram or in equations that is no fault of their
+// form but is seldom meant.
 type Warning struct {
-	Signals []string // the signals that it is about
+	Signals []string // the signals that it is about; none for a constant
 	Text    string   // what was found, and what to look at
 }
 

@@ -40,7 +40,8 @@
 //
 // TransferFunctions does so for several inputs and outputs at once, the
 // function Inspect says in words what a transfer function hides (and that a sign is
-// missing, where a plant that should settle is unstable), StateSpace brings the equations to first order,
+// missing, where a plant that should settle is unstable), System.Warnings names
+// declarations and equations that look like slips, StateSpace brings the equations to first order,
 // and InitialState goes on from initial values that are not 0.
 package lti
 
@@ -97,8 +98,11 @@ type Constant struct {
 // Build checks the record and returns the system. The error joins (errors.Join)
 // one *DeclarationError or *EquationError for each fault: an unknown unit or
 // name, a name declared twice, a syntax fault, terms of different dimensions, a
-// constant in hertz or degrees, a term that is not linear. It is ErrLimit for
-// more than 512 signals, 4096 constants or 256 equations.
+// constant in hertz or degrees, a term that is not linear. Where there is none
+// of them it is a *DeterminacyError if some of the equations hold fewer signals
+// than there are of them, so that no choice of inputs helps. It is ErrLimit for
+// more than 512 signals, 4096 constants or 256 equations. What is accepted but
+// seldom meant is in System.Warnings.
 func (e *Equations) Build() (*System, error) {
 	if len(e.signals) > maxSignals || len(e.constants) > maxConstants || len(e.texts) > maxEquations {
 		return nil, ErrLimit
@@ -147,6 +151,9 @@ func (e *Equations) Build() (*System, error) {
 	faults = append(faults, s.link(faulty)...)
 	if len(faults) > 0 {
 		return nil, errors.Join(faults...)
+	}
+	if err := s.overdetermined(); err != nil {
+		return nil, err
 	}
 	return s, nil
 }
