@@ -21,6 +21,7 @@ type Inspection struct {
 	Hidden      poly.Poly
 	HiddenModes poly.Counts        // the roots of Hidden
 	Poles       poly.Counts        // the poles in lowest terms
+	Modes       []Mode             // these poles one by one, in the order of poly.Poly.Roots
 	Near        []NearCancellation // by pole, in the order of poly.Poly.Roots
 }
 
@@ -35,13 +36,14 @@ type NearCancellation struct {
 }
 
 // Inspect examines a transfer function: its order, the modes that it hides,
-// exactly and with their stability, and the poles to which a zero comes closer
-// than a stated fraction of the larger magnitude of the two, with the nearest
+// exactly and with their stability, what each of the others does in time (Mode),
+// and the poles to which a zero comes closer than a stated fraction of the larger magnitude of the two, with the nearest
 // zero. That is decided on enclosures of both as narrow as it takes, so that it
 // is the same on every machine; two that are at the fraction to 4096 bits count
 // as not closer. A fraction of nil or 0 looks for none.
 //
-// The errors are those of poly.Poly.Roots for a function beyond its limits.
+// The errors are those of poly.Poly.Roots for a function beyond its limits, and
+// units.ErrRange for a time constant beyond the largest float64.
 func Inspect(g tf.Continuous, fraction *big.Rat) (Inspection, error) {
 	x := Inspection{Function: g}
 	x.Reduced, x.Hidden = g.LowestTerms()
@@ -52,12 +54,15 @@ func Inspect(g tf.Continuous, fraction *big.Rat) (Inspection, error) {
 	if x.Poles, err = sides(x.Reduced.Denominator()); err != nil {
 		return Inspection{}, fmt.Errorf("lti: poles: %w", err)
 	}
-	if fraction == nil || fraction.Sign() <= 0 || x.Reduced.Numerator().IsZero() {
-		return x, nil
-	}
 	poles, err := x.Reduced.Poles()
 	if err != nil {
 		return Inspection{}, fmt.Errorf("lti: poles: %w", err)
+	}
+	if x.Modes, err = modesOf(poles); err != nil {
+		return Inspection{}, fmt.Errorf("lti: modes: %w", err)
+	}
+	if fraction == nil || fraction.Sign() <= 0 || x.Reduced.Numerator().IsZero() {
+		return x, nil
 	}
 	zeros, err := x.Reduced.Zeros()
 	if err != nil {
@@ -163,7 +168,9 @@ func closeness(p, q poly.Root, fraction *big.Rat) (distance float64, closer bool
 	return 0, false, nil
 }
 
-// String says all of it in words, a line for each item.
+const maxModeLines = 12 // in String
+
+// String says all of it in words, a line for each item, for twelve modes at most.
 func (x Inspection) String() string {
 	g := x.Function
 	var b strings.Builder
@@ -178,6 +185,13 @@ func (x Inspection) String() string {
 		line("dead time %s", t)
 	}
 	line("poles: %s", judged(x.Poles))
+	for i, m := range x.Modes {
+		if i == maxModeLines {
+			line("and %s more", counted(len(x.Modes)-i, "mode"))
+			break
+		}
+		line("mode at %s", m)
+	}
 	if x.Hidden.Degree() > 0 {
 		factor := x.Hidden.Text("s")
 		if len(factor) > 80 {
