@@ -33,7 +33,7 @@ func TestCanalAgainstComposition(t *testing.T) {
 	}
 	back := tf.Must(tf.Series(block("transmitter"), block("controller"), position, pool))
 	unity := tf.MustParse("1 [m -> m]")
-	want = tf.Must(tf.Series(tf.Scale(storage, big.NewRat(-1, 1)), tf.Must(tf.Feedback(unity, back))))
+	want = tf.Must(tf.Series(tf.Must(tf.Scale(storage, big.NewRat(-1, 1))), tf.Must(tf.Feedback(unity, back))))
 	if got = tf.Must(diagram.TransferFunction("offtake", "level")); !got.Equivalent(want) {
 		t.Errorf("offtake to level: %v, want %v", got, want)
 	}
@@ -59,7 +59,7 @@ func TestCanalAgainstComposition(t *testing.T) {
 	}
 	// The gain margin of the scenario is 10.5 dB, a factor of 3.35.
 	for _, c := range []struct{ factor, unstable int64 }{{320, 0}, {350, 2}} {
-		louder := tf.Must(diagram.WithBlock("controller", tf.Scale(block("controller"), big.NewRat(c.factor, 100))))
+		louder := tf.Must(diagram.WithBlock("controller", tf.Must(tf.Scale(block("controller"), big.NewRat(c.factor, 100)))))
 		counts := tf.Must(tf.Must(louder.CharacteristicPolynomial()).HalfPlane())
 		if counts.Outside != int(c.unstable) {
 			t.Errorf("with %d %% of the gain: %+v", c.factor, counts)

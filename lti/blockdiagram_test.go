@@ -260,7 +260,7 @@ func TestDiscreteDiagram(t *testing.T) {
 	if w := diagram.Warnings(); len(w) > 0 {
 		t.Errorf("warnings: %v", w)
 	}
-	wrong := tf.Must(diagram.WithBlock("pool", tf.Scale(g, big.NewRat(-1, 1)))).Warnings()
+	wrong := tf.Must(diagram.WithBlock("pool", tf.Must(tf.Scale(g, big.NewRat(-1, 1))))).Warnings()
 	if len(wrong) != 1 || !strings.Contains(wrong[0].Text, "+1;") {
 		t.Errorf("warnings of the reversed loop: %v", wrong)
 	}

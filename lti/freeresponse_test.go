@@ -195,7 +195,7 @@ func TestFreeResponsesSolveTheEquations(t *testing.T) {
 					continue
 				}
 				d := free(t, state, net.name(x.signal), x.order+shift)
-				sum = tf.Must(tf.Parallel(sum, tf.Scale(rational(d.Laplace()), big.NewRat(x.factor, 1))))
+				sum = tf.Must(tf.Parallel(sum, tf.Must(tf.Scale(rational(d.Laplace()), big.NewRat(x.factor, 1)))))
 			}
 			if !sum.Numerator().IsZero() {
 				t.Errorf("equation %d of %q is off by %v", i+1, net.equations, sum)

@@ -116,7 +116,7 @@ func (net *network) check(t *testing.T, all [][]tf.Continuous, random *rand.Rand
 				case -1:
 					f.Quo(f, s)
 				default:
-					f.Mul(f, poly.FromInts(append(make([]int64, x.order), 1)...).AtRat(s))
+					f.Mul(f, tf.Must(poly.FromInts(append(make([]int64, x.order), 1)...).AtRat(s)))
 				}
 				sum.Add(sum, f)
 			}

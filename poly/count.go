@@ -13,7 +13,14 @@ const (
 	maxSturmWork = 3 << 20
 )
 
-// countable refuses what cannot be counted; bits is the size of a coefficient.
+// countable refuses what cannot be counted.
+func (p Poly) countable(most int) error {
+	if err := p.Err(); err != nil {
+		return err
+	}
+	return countable(p.integer(), most)
+}
+
 func countable(p intpoly.Poly, most int) error {
 	n := p.Degree() + 1
 	switch {
@@ -44,7 +51,7 @@ type Counts struct {
 // times the bits of the largest integer coefficient passes 2^23 (a degree of 400
 // with 32-bit coefficients); the signs of Roots, which are exact, go further.
 func (p Poly) HalfPlane() (Counts, error) {
-	if err := countable(p.integer(), maxCountWork); err != nil {
+	if err := p.countable(maxCountWork); err != nil {
 		return Counts{}, err
 	}
 	return halfPlane(p.integer()), nil
@@ -55,7 +62,7 @@ func (p Poly) HalfPlane() (Counts, error) {
 // z = (1 + w)/(1 − w), which makes the coefficients longer by about twice the
 // degree in bits. The errors are those of HalfPlane.
 func (p Poly) UnitCircle() (Counts, error) {
-	if err := countable(p.integer(), maxCountWork); err != nil {
+	if err := p.countable(maxCountWork); err != nil {
 		return Counts{}, err
 	}
 	// With v = 1 − w, z = −1 + 2/v: shift by −1, scale by 2, reverse, and
@@ -200,7 +207,7 @@ func variations(chain []intpoly.Poly, sign func(intpoly.Poly) int) int {
 // of the largest integer coefficient passes 3·2^20. RealRoots isolates the roots
 // that are counted here.
 func (p Poly) CountRealRoots(lower, upper *big.Rat) (int, error) {
-	if err := countable(p.integer(), maxSturmWork); err != nil {
+	if err := p.countable(maxSturmWork); err != nil {
 		return 0, err
 	}
 	if lower != nil && upper != nil && lower.Cmp(upper) >= 0 {

@@ -17,11 +17,14 @@ const (
 )
 
 // bits is the size of the longest coefficient of p, to a bit.
-func (p Poly) bits() int { return p.integer().Span() + p.rational().DenominatorBits() }
+func (p Poly) bits() int { return p.span() + p.denominatorBits() }
 
 // Pow returns p^n; p^0 is 1. The error is ErrLimit for a negative n, and where
 // the result could pass MaxDegree, MaxBits or 6 MiB in all.
 func (p Poly) Pow(n int) (Poly, error) {
+	if err := p.Err(); err != nil {
+		return Poly{}, err
+	}
 	if n < 0 || n > 0 && (p.Degree() > MaxDegree/n || p.bits() > MaxBits/n) || n > MaxBits ||
 		(p.Degree()*n+1)*p.bits()*n > maxTotal {
 		return Poly{}, ErrLimit
@@ -33,6 +36,9 @@ func (p Poly) Pow(n int) (Poly, error) {
 // Compose returns p(q(x)). The error is ErrLimit where the result could pass
 // MaxDegree, MaxBits or, for a q of positive degree, 6 MiB in all.
 func (p Poly) Compose(q Poly) (Poly, error) {
+	if err := errorOf(p, q); err != nil {
+		return Poly{}, err
+	}
 	m, n := p.Degree(), q.Degree()
 	if m > 0 && n > 0 && (n > MaxDegree/m || q.bits() > (MaxBits-min(p.bits(), MaxBits))/m) || m > MaxDegree {
 		return Poly{}, ErrLimit
@@ -44,7 +50,16 @@ func (p Poly) Compose(q Poly) (Poly, error) {
 	for k := 1; 1<<k <= m; k++ {
 		powers = append(powers, powers[k-1].Mul(powers[k-1]))
 	}
-	return p.compose(powers, 0, m+1), nil
+	out := p.compose(powers, 0, m+1)
+	return out, out.Err()
+}
+
+// errorOf is the first error of p and q.
+func errorOf(p, q Poly) error {
+	if err := p.Err(); err != nil {
+		return err
+	}
+	return q.Err()
 }
 
 // compose returns Σ c_i·q^(i − from) over from ≤ i < to. It splits the sum where
@@ -72,6 +87,9 @@ func (p Poly) compose(powers []Poly, from, to int) Poly {
 // bits of q passes 2^37: beyond degree 2500
 // over 1250 with 32-bit coefficients.
 func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
+	if err := errorOf(p, q); err != nil {
+		return Poly{}, Poly{}, err
+	}
 	if q.IsZero() {
 		return Poly{}, Poly{}, ErrDivisionByZero
 	}
@@ -93,33 +111,19 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 // GCD returns the monic greatest common divisor of p and q; the polynomial 0
 // when both are 0. The error is ErrLimit for operands whose modular images could
 // take more than 2^34 multiplications of words: beyond degree 16 with 480,000
-// bits, or degree 8000 with 1900 bits.
+// bits, degree 1000 with 45,000 bits, or degree 8000 with 1900 bits.
 func (p Poly) GCD(q Poly) (Poly, error) {
-	if err := p.bound(q, p.bits()+q.bits(), 1, p.Degree()+1, 1<<34); err != nil {
+	if err := errorOf(p, q); err != nil {
 		return Poly{}, err
+	}
+	if p.integer().GCDWork(q.integer()) > intpoly.MaxGCDWork {
+		return Poly{}, ErrLimit
 	}
 	g := fromInteger(p.integer().GCD(q.integer()))
 	if g.Degree() == 0 { // 1, as most are
 		return g, nil
 	}
 	return g.Monic(), nil
-}
-
-// bound refuses modular work beyond a limit of multiplications: as many primes
-// as the bits of the result ask for, each with an image that costs some times
-// the square of the degrees. Each prime then lengthens every term, at a cost that is the number
-// of primes so far times some 4 multiplications.
-func (p Poly) bound(q Poly, bits, image, terms int, limit float64) error {
-	n, primes := float64(p.Degree()+q.Degree()+2), float64(bits/61+1)
-	if float64(image)*primes*n*n+4*primes*primes*float64(max(terms, 1)) > limit {
-		return ErrLimit
-	}
-	return nil
-}
-
-// resultantBits bounds the size of the resultant.
-func (p Poly) resultantBits(q Poly) int {
-	return (p.Degree()+1)*(q.bits()+12) + (q.Degree()+1)*(p.bits()+12)
 }
 
 // ExtendedGCD returns the monic greatest common divisor g and polynomials u, v
@@ -129,10 +133,13 @@ func (p Poly) resultantBits(q Poly) int {
 // resultant, would take more than 11·2^28 multiplications of words: beyond degree
 // 350 with 32-bit coefficients.
 func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
-	if err := p.bound(q, p.resultantBits(q), 8, p.Degree()+q.Degree()+1, 11<<28); err != nil {
+	if err := errorOf(p, q); err != nil {
 		return Poly{}, Poly{}, Poly{}, err
 	}
 	a, b := p.integer(), q.integer()
+	if a.CofactorWork(b) > intpoly.MaxCofactorWork {
+		return Poly{}, Poly{}, Poly{}, ErrLimit
+	}
 	h := a.GCD(b)
 	if h.IsZero() {
 		return Poly{}, Poly{}, Poly{}, nil
@@ -161,8 +168,11 @@ func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 // resultant would take more than 2^32 multiplications of words: beyond degree 850
 // with 32-bit coefficients, or degree 20 with 20,000 bits.
 func (p Poly) Resultant(q Poly) (*big.Rat, error) {
-	if err := p.bound(q, p.resultantBits(q), 1, 4, 1<<32); err != nil {
+	if err := errorOf(p, q); err != nil {
 		return nil, err
+	}
+	if p.integer().ResultantWork(q.integer()) > intpoly.MaxResultantWork {
+		return nil, ErrLimit
 	}
 	// res(P/dp, Q/dq) = res(P, Q)/(dp^deg q · dq^deg p)
 	power := func(d *big.Int, n int) *big.Int { return new(big.Int).Exp(d, big.NewInt(int64(max(n, 0))), nil) }
@@ -183,8 +193,11 @@ type Factor struct {
 // multiplicity. Their product is p.Monic(); a constant has none. The method is
 // that of Yun (1976). The error is ErrLimit, as for GCD but from half its work on.
 func (p Poly) SquareFree() ([]Factor, error) {
-	if err := p.bound(p, 2*p.bits(), 1, p.Degree()+1, 1<<33); err != nil {
+	if err := p.Err(); err != nil {
 		return nil, err
+	}
+	if p.integer().GCDWork(p.integer()) > intpoly.MaxGCDWork/2 {
+		return nil, ErrLimit
 	}
 	found := p.integer().SquareFree()
 	out := make([]Factor, len(found))

@@ -14,6 +14,7 @@ package poly
 import (
 	"math"
 	"math/big"
+	"math/bits"
 	"strconv"
 
 	"github.com/qofs/qofs/internal/fault"
@@ -37,11 +38,20 @@ type SyntaxError = lex.SyntaxError
 // Poly is a polynomial with rational coefficients. It is an immutable value,
 // safe to share; the zero value is the polynomial 0.
 //
-// A polynomial needs terms times its longest integer coefficient in memory, or
-// the sum of its coefficients where these are of very unequal length. Sums and
-// products, which cannot fail, take what their results need. Numbers from an
-// untrusted source must be bounded before they come here; Parse bounds text.
+// Sums and products cannot fail, and yet no polynomial grows without bound: over
+// their common denominator the coefficients take at most 2^21 words of 64 bits
+// (terms times the words of the longest), and neither a coefficient nor the
+// denominator is longer than 2^19 bits. What would take more is not formed. As
+// arithmetic with float64 goes on with an infinity, it goes on here with a value
+// that has no coefficients and tells by Err: results that it enters have the
+// error too, and every function that can fail returns it, tf.New among them.
 type Poly ratpoly.Poly
+
+// Err is nil for a polynomial, and wraps ErrLimit for the value that stands for
+// one which would have passed the bounds of Poly. A program whose numbers come
+// from an untrusted source asks it once, at the end of a calculation, unless that
+// ends in a function that returns an error.
+func (p Poly) Err() error { return p.rational().Err() }
 
 // FromRats returns the polynomial with the given coefficients, ascending: the
 // first is the constant term. The numbers are copied; nil reads as 0.
@@ -86,17 +96,23 @@ func (p Poly) integer() intpoly.Poly  { return ratpoly.Poly(p).Integer() }
 
 func fromInteger(p intpoly.Poly) Poly { return Poly(ratpoly.FromInteger(p)) }
 
-// Degree is the degree of p, −1 for the polynomial 0.
+// Degree is the degree of p, −1 for the polynomial 0 and where Err is not nil.
 func (p Poly) Degree() int { return p.integer().Degree() }
 
 // IsZero reports whether p is the polynomial 0.
-func (p Poly) IsZero() bool { return p.integer().IsZero() }
+func (p Poly) IsZero() bool { return p.integer().IsZero() && p.Err() == nil }
 
 // Coefficient returns a copy of the coefficient of the power i; it is 0
-// outside the range 0 … Degree.
-func (p Poly) Coefficient(i int) *big.Rat { return p.rational().Coefficient(i) }
+// outside the range 0 … Degree, and nil where Err is not: no number would be true.
+func (p Poly) Coefficient(i int) *big.Rat {
+	if p.Err() != nil {
+		return nil
+	}
+	return p.rational().Coefficient(i)
+}
 
-// Coefficients returns copies of the coefficients, ascending; none for 0.
+// Coefficients returns copies of the coefficients, ascending; none for 0 and
+// where Err is not nil.
 func (p Poly) Coefficients() []*big.Rat {
 	c := make([]*big.Rat, p.Degree()+1)
 	for i := range c {
@@ -105,11 +121,21 @@ func (p Poly) Coefficients() []*big.Rat {
 	return c
 }
 
-// Equal reports whether p and q are the same polynomial.
-func (p Poly) Equal(q Poly) bool { return p.rational().Equal(q.rational()) }
+// Equal reports whether p and q are the same polynomial; false where the Err of
+// one of them is not nil.
+func (p Poly) Equal(q Poly) bool {
+	return p.Err() == nil && q.Err() == nil && p.rational().Equal(q.rational())
+}
 
 // Add returns p + q.
-func (p Poly) Add(q Poly) Poly { return Poly(p.rational().Add(q.rational())) }
+func (p Poly) Add(q Poly) Poly {
+	// Over the product of the denominators each numerator grows by the other one's.
+	bits := max(p.span()+q.denominatorBits(), q.span()+p.denominatorBits()) + 1
+	if !formed(p, q, max(p.Degree(), q.Degree())+1, bits) {
+		return Poly(ratpoly.TooLong)
+	}
+	return Poly(p.rational().Add(q.rational()))
+}
 
 // Sub returns p − q.
 func (p Poly) Sub(q Poly) Poly { return p.Add(q.Neg()) }
@@ -118,23 +144,38 @@ func (p Poly) Sub(q Poly) Poly { return p.Add(q.Neg()) }
 func (p Poly) Neg() Poly { return Poly(p.rational().Neg()) }
 
 // Mul returns p·q.
-func (p Poly) Mul(q Poly) Poly { return Poly(p.rational().Mul(q.rational())) }
+func (p Poly) Mul(q Poly) Poly {
+	bits := p.span() + q.span() + bits.Len(uint(min(p.Degree(), q.Degree())+1))
+	if !formed(p, q, p.Degree()+q.Degree()+1, bits) {
+		return Poly(ratpoly.TooLong)
+	}
+	return Poly(p.rational().Mul(q.rational()))
+}
 
 // Scale returns k·p; nil reads as 0.
 func (p Poly) Scale(k *big.Rat) Poly {
 	if k == nil {
-		return Poly{}
+		k = new(big.Rat)
+	}
+	if !p.fits(p.Degree()+1, p.span()+k.Num().BitLen(), p.denominatorBits()+k.Denom().BitLen()) {
+		return Poly(ratpoly.TooLong)
 	}
 	return Poly(p.rational().Scale(k))
 }
 
 // Derivative returns dp/dx.
 func (p Poly) Derivative() Poly {
+	if !p.fits(p.Degree(), p.span()+bits.Len(uint(p.Degree()+1)), p.denominatorBits()) {
+		return Poly(ratpoly.TooLong)
+	}
 	return Poly(ratpoly.New(p.integer().Derivative(), p.rational().Denominator()))
 }
 
 // Integral returns the integral of p from 0.
 func (p Poly) Integral() Poly {
+	if p.Err() != nil {
+		return p
+	}
 	c := make([]*big.Rat, p.Degree()+2)
 	for i := range c[1:] {
 		c[i+1] = p.Coefficient(i)
@@ -145,8 +186,21 @@ func (p Poly) Integral() Poly {
 
 // Monic returns p divided by its leading coefficient; the polynomial 0 stays 0.
 func (p Poly) Monic() Poly {
-	if p.IsZero() {
+	if p.integer().IsZero() {
 		return p
 	}
 	return Poly(ratpoly.New(p.integer(), p.integer().Leading()))
 }
+
+// formed reports whether a sum or a product of p and q, of so many terms and bits,
+// may be formed over the product of their denominators.
+func formed(p, q Poly, terms, bits int) bool {
+	return q.Err() == nil && p.fits(terms, bits, p.denominatorBits()+q.denominatorBits())
+}
+
+func (p Poly) fits(terms, bits, denominator int) bool {
+	return p.Err() == nil && ratpoly.Fits(terms, bits, denominator)
+}
+
+func (p Poly) span() int            { return p.integer().Span() }
+func (p Poly) denominatorBits() int { return p.rational().DenominatorBits() }

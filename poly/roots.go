@@ -53,6 +53,9 @@ type Disc struct {
 // The method is the simultaneous iteration of Ehrlich (1967) and Aberth (1973)
 // with a proof that each of n disjoint discs holds one root.
 func (p Poly) Roots() ([]Root, error) {
+	if err := p.Err(); err != nil {
+		return nil, err
+	}
 	found, err := algebraic.Roots(ratpoly.Poly(p).Integer())
 	if err != nil {
 		return nil, err

@@ -2,7 +2,6 @@ package poly
 
 import (
 	"fmt"
-	"math/big"
 
 	"github.com/qofs/qofs/internal/lex"
 	"github.com/qofs/qofs/internal/polytext"
@@ -15,7 +14,7 @@ import (
 //
 // Decimals and fractions are read exactly. The error is a *SyntaxError, which
 // wraps ErrDivisionByZero for a zero denominator and ErrLimit for a text beyond
-// the bounds (1 MiB, degree 4096, nesting 100, coefficients of 2^18 bits).
+// the bounds (1 MiB, degree 4096, nesting 100, coefficients of 2^18 bits, 2^21 words in all).
 func Parse(text string) (Poly, error) {
 	f, _, err := polytext.Parse(text, "")
 	if err != nil {
@@ -38,9 +37,15 @@ func MustParse(text string) Poly {
 }
 
 // Text writes p in the given variable, highest power first, exactly: finite
-// decimals as such, other numbers as fractions. Parse reads it back.
-func (p Poly) Text(variable string) string {
-	return polytext.Plain.Write(p.Coefficients(), variable)
+// decimals as such, other numbers as fractions. Parse reads it back. Where Err is
+// not nil it is "(too long)", which Parse refuses, and so are the other texts.
+func (p Poly) Text(variable string) string { return p.write(polytext.Plain, variable) }
+
+func (p Poly) write(n polytext.Notation, variable string) string {
+	if p.Err() != nil {
+		return n.Opening + "(too long)" + n.Close
+	}
+	return n.Write(p.Coefficients(), variable)
 }
 
 // String is Text("x").
@@ -60,7 +65,7 @@ func (p Poly) Format(f fmt.State, verb rune) {
 		if !ok {
 			digits = 6
 		}
-		fmt.Fprint(f, polytext.Rounded(min(max(digits, 1), 1000)).Write(p.Coefficients(), "x"))
+		fmt.Fprint(f, p.write(polytext.Rounded(min(max(digits, 1), 1000)), "x"))
 	default:
 		fmt.Fprintf(f, "%%!%c(poly.Poly=%s)", verb, p.String())
 	}
@@ -68,16 +73,21 @@ func (p Poly) Format(f fmt.State, verb rune) {
 
 // LaTeX writes p for the mathematics mode of LaTeX.
 func (p Poly) LaTeX(variable string) string {
-	return polytext.LaTeX.Write(p.Coefficients(), variable)
+	return p.write(polytext.LaTeX, variable)
 }
 
 // MathML writes p as presentation MathML, one mrow element.
 func (p Poly) MathML(variable string) string {
-	return polytext.MathML.Write(p.Coefficients(), variable)
+	return p.write(polytext.MathML, variable)
 }
 
-// MarshalText is String, for encoding.TextMarshaler.
-func (p Poly) MarshalText() ([]byte, error) { return []byte(p.String()), nil }
+// MarshalText is String, for encoding.TextMarshaler; the error is that of Err.
+func (p Poly) MarshalText() ([]byte, error) {
+	if err := p.Err(); err != nil {
+		return nil, err
+	}
+	return []byte(p.String()), nil
+}
 
 // UnmarshalText is Parse, for encoding.TextUnmarshaler.
 func (p *Poly) UnmarshalText(text []byte) error {
@@ -86,13 +96,4 @@ func (p *Poly) UnmarshalText(text []byte) error {
 		*p = q
 	}
 	return err
-}
-
-// AtRat returns p(x), exactly; nil reads as 0.
-func (p Poly) AtRat(x *big.Rat) *big.Rat {
-	if x == nil {
-		x = new(big.Rat)
-	}
-	den := new(big.Int).Exp(x.Denom(), big.NewInt(int64(max(p.Degree(), 0))), nil)
-	return new(big.Rat).SetFrac(p.integer().AtRat(x.Num(), x.Denom()), den.Mul(den, p.rational().Denominator()))
 }

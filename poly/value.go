@@ -1,8 +1,11 @@
 package poly
 
 import (
+	"fmt"
 	"math"
 	"math/big"
+
+	"github.com/qofs/qofs/internal/ratpoly"
 )
 
 // At returns p(x) with each component correctly rounded: x is taken as the
@@ -12,6 +15,9 @@ import (
 // the largest float64, and ErrLimit where the degree times the bits that x
 // needs as a fixed-point number pass 2^22.
 func (p Poly) At(x complex128) (complex128, error) {
+	if err := p.Err(); err != nil {
+		return 0, err
+	}
 	re, errRe := fixedPoint(real(x))
 	im, errIm := fixedPoint(imag(x))
 	if errRe != nil || errIm != nil {
@@ -34,6 +40,30 @@ func (p Poly) At(x complex128) (complex128, error) {
 		return 0, ErrRange
 	}
 	return complex(valueRe, valueIm), nil
+}
+
+// maxValueBits bounds the length of a value: the powers of the point take the
+// square of it.
+const maxValueBits = ratpoly.MaxBits
+
+// AtRat returns p(x), exactly; nil reads as 0. The error is ErrLimit where the
+// degree times the bits of x, and the bits of p, pass 2^19.
+func (p Poly) AtRat(x *big.Rat) (*big.Rat, error) {
+	if err := p.Err(); err != nil {
+		return nil, err
+	}
+	if x == nil {
+		x = new(big.Rat)
+	}
+	n, bits := max(p.Degree(), 0), max(x.Num().BitLen(), x.Denom().BitLen())
+	if x.Sign() == 0 {
+		return p.Coefficient(0), nil
+	}
+	if float64(n)*float64(bits)+float64(p.bits()) > maxValueBits {
+		return nil, fmt.Errorf("poly: value at a point of %d bits of a polynomial of degree %d: %w", bits, n, ErrLimit)
+	}
+	den := new(big.Int).Exp(x.Denom(), big.NewInt(int64(n)), nil)
+	return new(big.Rat).SetFrac(p.integer().AtRat(x.Num(), x.Denom()), den.Mul(den, p.rational().Denominator())), nil
 }
 
 func fixedPoint(x float64) (*big.Rat, error) {

@@ -8,15 +8,19 @@ import (
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/intpoly"
 	"github.com/qofs/qofs/internal/ratfun"
+	"github.com/qofs/qofs/internal/ratpoly"
 	"github.com/qofs/qofs/units"
 )
 
 // unity is the function 1.
 var unity, _ = ratfun.New(intpoly.FromInt64s(1), intpoly.FromInt64s(1))
 
-// maxWords bounds a polynomial of a composition: its coefficients times their
-// words of 64 bits.
-const maxWords = 1 << 23
+// maxWords bounds a polynomial of a composition, its coefficients times their
+// words of 64 bits, and maxCoefficient the words of one of them.
+const (
+	maxWords       = ratpoly.MaxWords
+	maxCoefficient = 1 << 14
+)
 
 // size adds up what a composition of functions may take.
 type size struct{ degree, words int }
@@ -26,9 +30,9 @@ func (s *size) add(f ratfun.Func) {
 	s.degree, s.words = s.degree+d, s.words+w
 }
 
-// check refuses what would take more than maxWords.
+// check refuses what would take more.
 func (s *size) check(operation string) error {
-	if float64(s.degree+1)*float64(s.words) > maxWords {
+	if float64(s.degree+1)*float64(s.words) > maxWords || s.words > maxCoefficient {
 		return fmt.Errorf("tf: %s: a polynomial of degree %d with coefficients of %d words: %w", operation, s.degree, s.words, fault.ErrLimit)
 	}
 	return nil
@@ -38,7 +42,8 @@ func (s *size) check(operation string) error {
 // them: first's input to the last one's output. Dead times add up, nothing is
 // cancelled. The errors are *JunctionError where an output does not fit the
 // next input, *PeriodError where sampling periods differ, and ErrLimit where a
-// polynomial of the result could take more than 2^23 words of 64 bits.
+// polynomial of the result could take more than 2^21 words of 64 bits, or a
+// coefficient more than 2^14.
 //
 // Series is associative; where the signals allow both orders it is commutative
 // up to Equivalent.
@@ -210,15 +215,24 @@ func Inverse[G Block[G]](g G) (G, error) {
 }
 
 // Scale returns k·g for a pure number k; nil reads as 0. Signals stay. For a
-// factor with a unit put a Gain in Series.
-func Scale[G Block[G]](g G, k *big.Rat) G {
+// factor with a unit put a Gain in Series. The error is ErrLimit as for Series.
+func Scale[G Block[G]](g G, k *big.Rat) (G, error) {
 	c := g.core()
 	if k == nil {
 		k = new(big.Rat)
 	}
+	var s size
+	s.add(c.f)
+	s.words += wordsOf(k)
+	if err := s.check("Scale"); err != nil {
+		return g.with(core{}), err
+	}
 	c.f = c.f.Scale(k)
-	return g.with(c)
+	return g.with(c), nil
 }
+
+// wordsOf is how many words of 64 bits k takes above or below.
+func wordsOf(k *big.Rat) int { return max(k.Num().BitLen(), k.Denom().BitLen())/64 + 1 }
 
 func junction[G any](operation string, index int, earlier units.Signal, earlierEnd string, later units.Signal, laterEnd string) (g G, err error) {
 	return g, &JunctionError{Operation: operation, Index: index,

@@ -1,7 +1,11 @@
 package tf
 
 import (
+	"fmt"
+
+	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/internal/ratfun"
+	"github.com/qofs/qofs/internal/ratpoly"
 	"github.com/qofs/qofs/poly"
 )
 
@@ -49,23 +53,42 @@ func (g Discrete) Equivalent(h Discrete) bool { return g.c.equivalent(&h.c) }
 // LowestTerms returns g without the polynomial factor that numerator and
 // denominator share, and that factor, with integer coefficients and a positive
 // leading one; it is 1 where there is none. Roots of the factor are modes that
-// g hides: look whether one of them is unstable.
+// g hides: look whether one of them is unstable. Where the greatest common divisor
+// would take more than 2^34 multiplications of words (see poly.Poly.GCD), g comes
+// back as it is, and the Err of the factor is ErrLimit.
 func (g Continuous) LowestTerms() (reduced Continuous, cancelled poly.Poly) {
-	c := g.c
-	f, factor := c.f.LowestTerms()
-	c.f = f
-	return Continuous{c: c}, asPoly(factor)
+	f, cancelled := lowestTerms(g.c.f)
+	g.c.f = f
+	return g, cancelled
 }
 
 // LowestTerms returns g without the polynomial factor that numerator and
 // denominator share, and that factor, with integer coefficients and a positive
 // leading one; it is 1 where there is none. Roots of the factor are modes that
-// g hides: look whether one of them is unstable.
+// g hides: look whether one of them is unstable. Where the greatest common divisor
+// would take more than 2^34 multiplications of words (see poly.Poly.GCD), g comes
+// back as it is, and the Err of the factor is ErrLimit.
 func (g Discrete) LowestTerms() (reduced Discrete, cancelled poly.Poly) {
-	c := g.c
-	f, factor := c.f.LowestTerms()
-	c.f = f
-	return Discrete{c: c}, asPoly(factor)
+	f, cancelled := lowestTerms(g.c.f)
+	g.c.f = f
+	return g, cancelled
+}
+
+func lowestTerms(f ratfun.Func) (ratfun.Func, poly.Poly) {
+	reduced, factor, ok := f.LowestTerms()
+	if !ok {
+		return f, poly.Poly(ratpoly.TooLong)
+	}
+	return reduced, asPoly(factor)
+}
+
+// reduced is LowestTerms with an error that names the operation.
+func reduced(f ratfun.Func, operation string) (ratfun.Func, error) {
+	f, _, ok := f.LowestTerms()
+	if !ok {
+		return f, fmt.Errorf("tf: %s: a greatest common divisor: %w", operation, fault.ErrLimit)
+	}
+	return f, nil
 }
 
 // Poles returns the roots of the denominator with their multiplicities, before

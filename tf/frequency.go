@@ -56,8 +56,8 @@ func (g Continuous) FrequencyFunction() FrequencyFunction {
 	// num·conj(den) = (E O' − E' O)·jω + (E E' + ω² O O') with E(−ω²) and so on
 	e, o := g.c.f.Num().EvenOdd()
 	e2, o2 := g.c.f.Den().EvenOdd()
-	f.isReal = o.Mul(e2).Equal(e.Mul(o2))
-	f.isImaginary = e.Mul(e2).Equal(o.Mul(o2).Mul(intpoly.FromInt64s(0, 1)))
+	f.isReal = intpoly.EqualProducts(o, e2, e, o2)
+	f.isImaginary = intpoly.EqualProducts(e, e2, o.MulPower(1), o2)
 	f.delayShape = sync.OnceValue(f.newDelayShape)
 	f.angles = sync.OnceValues(f.newRootAngles)
 	return FrequencyFunction{p: f}

@@ -27,8 +27,8 @@ func TestLaws(t *testing.T) {
 			{"series distributes", series(a, sum(b, c)), sum(series(a, b), series(a, c))},
 			{"a block and its inverse", series(a, inverse(a)), one},
 			{"inverse of a chain", inverse(series(a, b)), series(inverse(b), inverse(a))},
-			{"a block less itself", sum(a, Scale(a, big.NewRat(-1, 1))), Continuous{}},
-			{"doubling", sum(a, a), Scale(a, big.NewRat(2, 1))},
+			{"a block less itself", sum(a, Must(Scale(a, big.NewRat(-1, 1)))), Continuous{}},
+			{"doubling", sum(a, a), Must(Scale(a, big.NewRat(2, 1)))},
 		}
 		if loop, err := Feedback(a, b); err == nil {
 			push, err := Feedback(series(a, b), one) // a/(1+ab) = (ab/(1+ab))/b
@@ -42,7 +42,7 @@ func TestLaws(t *testing.T) {
 				{"feedback is g/(1+gh)", loop, series(a, inverse(sum(one, series(a, b))))},
 				{"push-through", series(loop, b), push},
 				{"unity feedback", push, Must(UnityFeedback(series(a, b)))},
-				{"positive feedback of -b", loop, Must(PositiveFeedback(a, Scale(b, big.NewRat(-1, 1))))},
+				{"positive feedback of -b", loop, Must(PositiveFeedback(a, Must(Scale(b, big.NewRat(-1, 1)))))},
 				{"undo the loop", a, Must(PositiveFeedback(loop, b))},
 			}...)
 		}

@@ -71,7 +71,10 @@ func leadingRatio(f ratfun.Func, k int) *big.Rat {
 // half-plane; that is decided exactly. The error is a *NoLimitError with the
 // number of poles that do not, or that of poly.Poly.HalfPlane beyond its bounds.
 func (g Continuous) FinalValue() (units.Quantity, error) {
-	f := timesLinear(g.c.f, 0)
+	f, err := timesLinear(g.c.f, 0)
+	if err != nil {
+		return units.Quantity{}, err
+	}
 	counts, err := asPoly(f.Den()).HalfPlane()
 	if err != nil {
 		return units.Quantity{}, err
@@ -91,7 +94,10 @@ func (g Continuous) FinalValue() (units.Quantity, error) {
 // z → 1. The theorem asks that all poles of (z − 1)·g(z) in lowest terms lie
 // within the unit circle; errors as for Continuous.
 func (g Discrete) FinalValue() (units.Quantity, error) {
-	f := timesLinear(g.c.f, 1)
+	f, err := timesLinear(g.c.f, 1)
+	if err != nil {
+		return units.Quantity{}, err
+	}
 	counts, err := asPoly(f.Den()).UnitCircle()
 	if err != nil {
 		return units.Quantity{}, err
@@ -107,10 +113,9 @@ func (g Discrete) FinalValue() (units.Quantity, error) {
 }
 
 // timesLinear is (x − a)·f in lowest terms.
-func timesLinear(f ratfun.Func, a int64) ratfun.Func {
+func timesLinear(f ratfun.Func, a int64) (ratfun.Func, error) {
 	linear, _ := ratfun.New(intpoly.FromInt64s(-a, 1), intpoly.FromInt64s(1))
-	f, _ = f.Mul(linear).LowestTerms()
-	return f
+	return reduced(f.Mul(linear), "FinalValue")
 }
 
 // settles turns counts of poles that do not decay into the error.

@@ -145,7 +145,7 @@ func TestRoundTrip(t *testing.T) {
 			g = Must(g.WithDeadTime(units.NewQuantity(big.NewRat(int64(r.intn(50)), int64(1+r.intn(12))), units.MustParse("s"))))
 		}
 		if r.intn(4) == 0 {
-			g = Scale(g, big.NewRat(int64(r.next()>>1), int64(1+r.next()>>1)))
+			g = Must(Scale(g, big.NewRat(int64(r.next()>>1), int64(1+r.next()>>1))))
 		}
 		for _, text := range []string{g.String(), spell("%d", g)} {
 			if back, err := Parse(text); err != nil || !back.Equal(g) {

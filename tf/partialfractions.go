@@ -1,10 +1,14 @@
 package tf
 
 import (
+	"fmt"
+	"math"
 	"math/big"
 
 	"github.com/qofs/qofs/internal/algebraic"
 	"github.com/qofs/qofs/internal/ball"
+	"github.com/qofs/qofs/internal/fault"
+	"github.com/qofs/qofs/internal/intpoly"
 	"github.com/qofs/qofs/internal/ratfun"
 	"github.com/qofs/qofs/internal/ratpoly"
 	"github.com/qofs/qofs/poly"
@@ -68,7 +72,9 @@ func (g gaussian) parts() (re, im *big.Rat, ok bool) {
 }
 
 // PartialFractions expands g into partial fractions in s. The dead time is no
-// part of it. The error is ErrLimit beyond the limits of Poles, or where the
+// part of it. The error is ErrLimit beyond the limits of Poles, of LowestTerms, of
+// poly.Poly.QuoRem for an improper g, where the work passes a bound (degree 430 with
+// 62-bit coefficients, degree 64 with 25,000 bits, degree 16 with 160,000), or where the
 // digits of a coefficient stay undecided.
 //
 // Laws: the polynomial and the rational fractions add up to g exactly; the
@@ -83,14 +89,25 @@ func (g Discrete) PartialFractions() (PartialFractions, error) {
 }
 
 func partialFractions(f ratfun.Func, variable string) (PartialFractions, error) {
-	f, _ = f.LowestTerms()
-	quo, rem, k := f.Num().PseudoQuoRem(f.Den())
-	lift := new(big.Int).Exp(f.Den().Leading(), big.NewInt(int64(k)), nil)
-	out := PartialFractions{variable: variable, polynomial: poly.Poly(ratpoly.New(quo, lift))}
-	if rem.IsZero() {
+	f, err := reduced(f, "PartialFractions")
+	if err != nil {
+		return PartialFractions{}, err
+	}
+	polynomial, remainder, err := asPoly(f.Num()).QuoRem(asPoly(f.Den()))
+	if err != nil {
+		return PartialFractions{}, fmt.Errorf("tf: polynomial part: %w", err)
+	}
+	out := PartialFractions{variable: variable, polynomial: polynomial}
+	if remainder.IsZero() {
 		return out, nil
 	}
-	proper, _ := ratfun.New(rem, f.Den().MulInt(lift))
+	proper, err := quotient(remainder, asPoly(f.Den()))
+	if err != nil {
+		return PartialFractions{}, err
+	}
+	if err := partialWork(proper.Den()); err != nil {
+		return PartialFractions{}, err
+	}
 	e, err := newExpansion(proper.Num(), proper.Den())
 	if err != nil {
 		return PartialFractions{}, err
@@ -100,7 +117,11 @@ func partialFractions(f ratfun.Func, variable string) (PartialFractions, error) 
 		return PartialFractions{}, err
 	}
 	for _, factor := range factors {
-		out.rational = append(out.rational, e.overRationals(factor)...)
+		rational, err := e.overRationals(factor)
+		if err != nil {
+			return PartialFractions{}, err
+		}
+		out.rational = append(out.rational, rational...)
 		terms, err := e.overPoles(factor)
 		if err != nil {
 			return PartialFractions{}, err
@@ -108,6 +129,19 @@ func partialFractions(f ratfun.Func, variable string) (PartialFractions, error) 
 		out.terms = append(out.terms, terms...)
 	}
 	return out, nil
+}
+
+// maxPartialWork bounds PartialFractions to some seconds: the square of the degree
+// times what a product of balls takes at the precision that they come to.
+const maxPartialWork = 1 << 25
+
+func partialWork(den intpoly.Poly) error {
+	n := float64(den.Degree())
+	words := (float64(den.Span()) + 2*n) / 64
+	if work := n * n * (100 + words*math.Sqrt(words)); work > maxPartialWork {
+		return fmt.Errorf("tf: partial fractions over a denominator of degree %d with coefficients of %d bits: %w", den.Degree(), den.Span(), fault.ErrLimit)
+	}
+	return nil
 }
 
 // Polynomial returns the polynomial part.
@@ -140,11 +174,14 @@ func (p PartialFractions) IsExact() bool {
 // overRationals returns R_k/q^k with num/den = Σ R_k/q^k + (a function without
 // q in the denominator). With den = q^m·c the sum has the numerator
 // num·c⁻¹ modulo q^m, and its digits to the base q are the R_k.
-func (e *expansion) overRationals(f factor) []RationalFraction {
+func (e *expansion) overRationals(f factor) ([]RationalFraction, error) {
 	power := f.q.Pow(f.multiplicity)
 	cofactor, _ := e.den.QuoExact(power)
 	ring := residues{power}
-	inverse, _ := ring.inverse(ratpoly.FromInteger(cofactor))
+	inverse, ok := ring.inverse(ratpoly.FromInteger(cofactor))
+	if !ok {
+		return nil, fmt.Errorf("tf: fractions of a factor of degree %d: %w", f.q.Degree(), fault.ErrLimit)
+	}
 	rest := ring.mul(ring.reduce(ratpoly.FromInteger(e.num)), inverse)
 	lead := new(big.Rat).SetInt(f.q.Leading())
 	monic := ratpoly.FromInteger(f.q).Scale(new(big.Rat).Inv(lead))
@@ -168,7 +205,7 @@ func (e *expansion) overRationals(f factor) []RationalFraction {
 	for i, j := 0, len(out)-1; i < j; i, j = i+1, j-1 {
 		out[i], out[j] = out[j], out[i]
 	}
-	return out
+	return out, nil
 }
 
 // overPoles returns the fractions at the roots of one factor.

@@ -75,7 +75,9 @@ func (e *expansion) component(f factor, x *algebraic.Number, k int, scale *big.R
 		if v.IsBeyondRange() {
 			return 0, fault.ErrRange
 		}
-		if i == 0 || !v.IsFinite() {
+		// Where the ball is still wide, more digits are cheaper than algebra.
+		b := boundaryIn(v)
+		if b == nil || i == 0 || !isNarrow(z, v) {
 			continue
 		}
 		if !known {
@@ -85,10 +87,6 @@ func (e *expansion) component(f factor, x *algebraic.Number, k int, scale *big.R
 				return 0, errUndecided
 			}
 			residue, known = c[k].Scale(scale), true
-		}
-		b := boundaryIn(v)
-		if b == nil {
-			continue
 		}
 		gap, err := e.separation(f, residue, k, scale, b, x.IsReal(), imaginary)
 		if err != nil {
@@ -100,6 +98,16 @@ func (e *expansion) component(f factor, x *algebraic.Number, k int, scale *big.R
 		}
 	}
 	return 0, errUndecided
+}
+
+// isNarrow reports whether the component v of z is known to 128 bits of the larger
+// one.
+func isNarrow(z ball.Complex, v ball.Real) bool {
+	if !z.Re.IsFinite() || !z.Im.IsFinite() {
+		return false
+	}
+	size := max(z.Re.Mid().MantExp(nil), z.Im.Mid().MantExp(nil))
+	return v.Radius().Sign() == 0 || v.Radius().MantExp(nil) < size-128
 }
 
 // boundaryIn returns the point of v that is 0, or has at most 54 bits, or nil.

@@ -16,7 +16,8 @@ type field[T any] interface {
 	mul(a, b T) T
 	// inverse fails where a is zero or not known to differ from it.
 	inverse(a T) (T, bool)
-	integer(n *big.Int) T
+	// taylor returns the first k Taylor coefficients of p about x.
+	taylor(p intpoly.Poly, x T, k int) []T
 }
 
 // expand returns the principal part of num/den at its pole of multiplicity m:
@@ -24,8 +25,8 @@ type field[T any] interface {
 // Taylor series about the pole, of which the first m coefficients of den are
 // known to vanish.
 func expand[T any](f field[T], num, den intpoly.Poly, pole T, m int) ([]T, bool) {
-	n := taylor(f, num, pole, m)
-	d := taylor(f, den, pole, 2*m)[m:]
+	n := f.taylor(num, pole, m)
+	d := f.taylor(den, pole, 2*m)[m:]
 	inv, ok := f.inverse(d[0])
 	if !ok {
 		return nil, false
@@ -41,13 +42,13 @@ func expand[T any](f field[T], num, den intpoly.Poly, pole T, m int) ([]T, bool)
 	return c, true
 }
 
-// taylor returns the first k Taylor coefficients of p about x, by repeated
+// synthetic returns the first k Taylor coefficients of p about x, by repeated
 // synthetic division (Horner 1819).
-func taylor[T any](f field[T], p intpoly.Poly, x T, k int) []T {
+func synthetic[T any](f field[T], integer func(*big.Int) T, p intpoly.Poly, x T, k int) []T {
 	n := p.Degree()
 	c := make([]T, max(n+1, k))
 	for i := range c {
-		c[i] = f.integer(p.Coefficient(i))
+		c[i] = integer(p.Coefficient(i))
 	}
 	for i := 0; i < min(k, n); i++ {
 		for j := n - 1; j >= i; j-- {
@@ -63,11 +64,11 @@ type balls struct{ prec uint }
 func (f balls) add(a, b ball.Complex) ball.Complex { return a.Add(b, f.prec) }
 func (f balls) sub(a, b ball.Complex) ball.Complex { return a.Sub(b, f.prec) }
 func (f balls) mul(a, b ball.Complex) ball.Complex { return a.Mul(b, f.prec) }
-func (f balls) integer(n *big.Int) ball.Complex {
-	return ball.NewComplex(ball.FromInt(n), ball.FromInt64(0))
+func (f balls) taylor(p intpoly.Poly, x ball.Complex, k int) []ball.Complex {
+	return synthetic(f, func(n *big.Int) ball.Complex { return ball.NewComplex(ball.FromInt(n), ball.FromInt64(0)) }, p, x, k)
 }
 func (f balls) inverse(a ball.Complex) (ball.Complex, bool) {
-	v := f.integer(big.NewInt(1)).Div(a, f.prec)
+	v := ball.NewComplex(ball.FromInt64(1), ball.FromInt64(0)).Div(a, f.prec)
 	return v, v.Re.IsFinite() && v.Im.IsFinite()
 }
 
@@ -78,8 +79,15 @@ type residues struct{ q intpoly.Poly }
 func (f residues) add(a, b ratpoly.Poly) ratpoly.Poly { return a.Add(b) }
 func (f residues) sub(a, b ratpoly.Poly) ratpoly.Poly { return a.Add(b.Neg()) }
 func (f residues) mul(a, b ratpoly.Poly) ratpoly.Poly { return f.reduce(a.Mul(b)) }
-func (f residues) integer(n *big.Int) ratpoly.Poly {
-	return ratpoly.FromInteger(intpoly.FromBigs(n))
+
+// taylor holds at x, the residue of the variable: the derivatives over k!.
+func (f residues) taylor(p intpoly.Poly, _ ratpoly.Poly, k int) []ratpoly.Poly {
+	c := make([]ratpoly.Poly, k)
+	for i := range c {
+		c[i] = f.reduce(ratpoly.FromInteger(p))
+		p = p.Derivative().QuoInt(big.NewInt(int64(i + 1)))
+	}
+	return c
 }
 
 // variable is the residue of x: the root itself.
@@ -93,37 +101,35 @@ func (f residues) reduce(a ratpoly.Poly) ratpoly.Poly {
 	return ratpoly.New(rem, den.Mul(den, a.Denominator()))
 }
 
-// inverse is the extended algorithm of Euclid on primitive remainders; it
-// fails where a shares a factor with q.
+// inverse comes from the cofactors of the resultant; it fails where a shares a
+// factor with q, and beyond the bound on their work.
 func (f residues) inverse(a ratpoly.Poly) (ratpoly.Poly, bool) {
 	a = f.reduce(a)
-	// Always r ≡ t·a (mod q) for both pairs.
-	r0, t0 := f.q, ratpoly.Poly{}
-	r1, t1 := a.Integer(), ratpoly.FromInteger(intpoly.FromBigs(a.Denominator()))
-	for r1.Degree() > 0 {
-		quo, rem, k := r0.PseudoQuoRem(r1)
-		if rem.IsZero() {
-			return ratpoly.Poly{}, false
-		}
-		lift := new(big.Int).Exp(r1.Leading(), big.NewInt(int64(k)), nil)
-		t := t0.Scale(new(big.Rat).SetInt(lift)).Add(ratpoly.FromInteger(quo).Mul(t1).Neg())
-		content, rem := rem.Primitive()
-		r0, t0 = r1, t1
-		r1, t1 = rem, t.Scale(new(big.Rat).SetFrac(big.NewInt(1), content))
-	}
-	if r1.IsZero() {
+	p, d := a.Integer(), a.Denominator()
+	switch {
+	case p.IsZero():
+		return ratpoly.Poly{}, false
+	case p.Degree() == 0:
+		return ratpoly.New(intpoly.FromBigs(d), p.Leading()), true
+	case p.CofactorWork(f.q) > intpoly.MaxCofactorWork:
 		return ratpoly.Poly{}, false
 	}
-	return f.reduce(t1.Scale(new(big.Rat).SetFrac(big.NewInt(1), r1.Leading()))), true
+	u, _, r, ok := p.Cofactors(f.q) // u·p ≡ r
+	if !ok {
+		return ratpoly.Poly{}, false
+	}
+	return ratpoly.New(u.MulInt(d), r), true
 }
 
 // rationals is the field ℚ.
 type rationals struct{}
 
-func (rationals) add(a, b *big.Rat) *big.Rat  { return new(big.Rat).Add(a, b) }
-func (rationals) sub(a, b *big.Rat) *big.Rat  { return new(big.Rat).Sub(a, b) }
-func (rationals) mul(a, b *big.Rat) *big.Rat  { return new(big.Rat).Mul(a, b) }
-func (rationals) integer(n *big.Int) *big.Rat { return new(big.Rat).SetInt(n) }
+func (rationals) add(a, b *big.Rat) *big.Rat { return new(big.Rat).Add(a, b) }
+func (rationals) sub(a, b *big.Rat) *big.Rat { return new(big.Rat).Sub(a, b) }
+func (rationals) mul(a, b *big.Rat) *big.Rat { return new(big.Rat).Mul(a, b) }
+func (f rationals) taylor(p intpoly.Poly, x *big.Rat, k int) []*big.Rat {
+	return synthetic(f, func(n *big.Int) *big.Rat { return new(big.Rat).SetInt(n) }, p, x, k)
+}
 func (rationals) inverse(a *big.Rat) (*big.Rat, bool) {
 	if a.Sign() == 0 {
 		return nil, false

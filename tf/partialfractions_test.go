@@ -30,7 +30,7 @@ func total(p PartialFractions) ratfun.Func {
 		for range f.Power {
 			den = den.Mul(f.Factor)
 		}
-		sum, _ = sum.Add(of(f.Numerator, den)).LowestTerms()
+		sum, _, _ = sum.Add(of(f.Numerator, den)).LowestTerms()
 	}
 	return sum
 }
@@ -177,7 +177,7 @@ func randomProper(r *rand.Rand, n int) ratfun.Func {
 	}
 	c[0] |= 1
 	f, _ := ratfun.New(ratpoly.Poly(poly.FromInts(c...)).Integer(), ratpoly.Poly(den).Integer())
-	f, _ = f.LowestTerms()
+	f, _, _ = f.LowestTerms()
 	return f
 }
 

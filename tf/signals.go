@@ -10,6 +10,7 @@ import (
 
 	"github.com/qofs/qofs/internal/decimal"
 	"github.com/qofs/qofs/internal/intpoly"
+	"github.com/qofs/qofs/internal/ratfun"
 	"github.com/qofs/qofs/units"
 )
 
@@ -21,7 +22,7 @@ const maxNameLength = 256
 //
 //	tf.Gain(units.MustParseQuantity("8 mA/m")).WithUnits(m, mA)
 func Gain(k units.Quantity) Continuous {
-	c := core{f: unity.Scale(k.Value())}
+	c := core{f: ratfun.Constant(k.Value())}
 	c.output.Unit = k.Unit()
 	return Continuous{c: c}
 }

@@ -77,7 +77,9 @@ func (g Discrete) core() core             { return g.c }
 func (Discrete) with(c core) Discrete     { return Discrete{c: c} }
 
 // New returns numerator/denominator with dimensionless, unnamed signals.
-// Nothing is cancelled. The error is ErrDivisionByZero for a zero denominator.
+// Nothing is cancelled. The errors are ErrDivisionByZero for a zero denominator,
+// and ErrLimit where the Err of a polynomial is not nil, or where a polynomial of
+// the result would take more than 2^21 words of 64 bits.
 func New(numerator, denominator poly.Poly) (Continuous, error) {
 	f, err := quotient(numerator, denominator)
 	return Continuous{c: core{f: f}}, err
@@ -85,7 +87,7 @@ func New(numerator, denominator poly.Poly) (Continuous, error) {
 
 // NewDiscrete returns numerator/denominator in z with dimensionless, unnamed
 // signals and the given sampling period, an exact time above 0. Nothing is
-// cancelled. The errors are ErrDivisionByZero for a zero denominator, a
+// cancelled. The errors are those of New, a
 // *units.MismatchError for a period that is no time, and ErrPeriod.
 func NewDiscrete(numerator, denominator poly.Poly, period units.Quantity) (Discrete, error) {
 	f, err := quotient(numerator, denominator)
@@ -106,7 +108,17 @@ func NewDiscrete(numerator, denominator poly.Poly, period units.Quantity) (Discr
 
 func quotient(numerator, denominator poly.Poly) (ratfun.Func, error) {
 	n, d := ratpoly.Poly(numerator), ratpoly.Poly(denominator)
-	f, ok := ratfun.New(n.Integer().MulInt(d.Denominator()), d.Integer().MulInt(n.Denominator()))
+	for _, err := range []error{n.Err(), d.Err()} {
+		if err != nil {
+			return ratfun.Func{}, err
+		}
+	}
+	k := new(big.Rat).SetFrac(d.Denominator(), n.Denominator())
+	s := size{max(n.Integer().Degree(), d.Integer().Degree()), max(n.Integer().Words(), d.Integer().Words()) + wordsOf(k)}
+	if err := s.check("New"); err != nil {
+		return ratfun.Func{}, err
+	}
+	f, ok := ratfun.NewScaled(k, n.Integer(), d.Integer())
 	if !ok {
 		return ratfun.Func{}, fault.ErrDivisionByZero
 	}

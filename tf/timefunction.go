@@ -42,14 +42,21 @@ type TimeFunction struct {
 //
 // A constant part of g gives an impulse; a part that grows with s would give
 // derivatives of one and is refused with ErrImpulseDerivative. The error is
-// ErrLimit for a denominator beyond the limits of Poles. Common factors of
+// ErrLimit for a denominator beyond the limits of Poles or LowestTerms, or of a
+// degree above 512. Common factors of
 // numerator and denominator cancel here: they cannot be seen from outside.
 func (g Continuous) InverseLaplace() (TimeFunction, error) {
 	return newTimeFunction(g.c.f, g.c.delay, impulseResponseSignal(g.c.input, g.c.output))
 }
 
+// maxTimePoles bounds the first value of a time function to some seconds.
+const maxTimePoles = 512
+
 func newTimeFunction(f ratfun.Func, delay *big.Rat, signal units.Signal) (TimeFunction, error) {
-	f, _ = f.LowestTerms()
+	f, err := reduced(f, "inverse transform")
+	if err != nil {
+		return TimeFunction{}, err
+	}
 	if f.Num().Degree() > f.Den().Degree() {
 		return TimeFunction{}, fmt.Errorf("tf: inverse transform of a function with numerator of degree %d over degree %d: %w (feedback or a lag of the derivative makes it proper)",
 			f.Num().Degree(), f.Den().Degree(), ErrImpulseDerivative)
@@ -61,27 +68,21 @@ func newTimeFunction(f ratfun.Func, delay *big.Rat, signal units.Signal) (TimeFu
 	num := f.Num()
 	if num.Degree() == f.Den().Degree() {
 		h.impulse = new(big.Rat).SetFrac(num.Leading(), f.Den().Leading())
-		f = f.Add(ratfunConstant(new(big.Rat).Neg(h.impulse)))
+		f = f.Add(ratfun.Constant(new(big.Rat).Neg(h.impulse)))
 	}
 	if f.IsZero() {
 		return h, nil
 	}
-	var err error
+	if n := f.Den().Degree(); n > maxTimePoles {
+		return TimeFunction{}, fmt.Errorf("tf: time function with %d poles, at most %d: %w", n, maxTimePoles, fault.ErrLimit)
+	}
 	h.e, err = newExpansion(f.Num(), f.Den())
 	return h, err
 }
 
-func ratfunConstant(c *big.Rat) ratfun.Func {
-	if c == nil {
-		return ratfun.Func{}
-	}
-	f, _ := ratfun.New(intpoly.FromBigs(c.Num()), intpoly.FromBigs(c.Denom()))
-	return f
-}
-
 // transform returns the exact Laplace transform without the dead time.
 func (f TimeFunction) transform() ratfun.Func {
-	g := ratfunConstant(f.impulse)
+	g := ratfun.Constant(f.impulse)
 	if f.e != nil {
 		h, _ := ratfun.New(f.e.num, f.e.den)
 		g = g.Add(h)

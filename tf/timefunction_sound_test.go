@@ -128,7 +128,7 @@ func randomCluster(r *rand.Rand) ratfun.Func {
 	}
 	c[0] |= 1
 	f, _ := quotient(poly.FromInts(c...), den)
-	f, _ = f.LowestTerms()
+	f, _, _ = f.LowestTerms()
 	return f
 }
 

@@ -203,7 +203,7 @@ func TestLaplaceTable(t *testing.T) {
 // Sine S, t^k e^(σt)(C cos ωt + S sin ωt) becomes the real part, for real s, of
 // (C − jS)·k!·(s−σ+jω)^(k+1) over ((s−σ)² + ω²)^(k+1).
 func transformOfTerms(t *testing.T, f TimeFunction) (ratfun.Func, bool) {
-	sum := ratfunConstant(f.impulse)
+	sum := ratfun.Constant(f.impulse)
 	for _, term := range Must(f.Terms()) {
 		decay, frequency, cosine, sine := term.Exact()
 		if decay == nil || frequency == nil || cosine == nil || sine == nil {
@@ -220,7 +220,7 @@ func transformOfTerms(t *testing.T, f TimeFunction) (ratfun.Func, bool) {
 		re = re.Scale(factorial)
 		a, b := ratpoly.Poly(re), ratpoly.Poly(den)
 		h, _ := ratfun.New(a.Integer().MulInt(b.Denominator()), b.Integer().MulInt(a.Denominator()))
-		sum, _ = sum.Add(h).LowestTerms()
+		sum, _, _ = sum.Add(h).LowestTerms()
 	}
 	return sum, true
 }

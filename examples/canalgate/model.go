@@ -93,8 +93,8 @@ func newModel(in *input, degree int) (*model, error) {
 	unity := b.keep("level")(gain(units.NewQuantity(big.NewRat(1, 1), units.Unit{}), level, level))
 	m.resisted.level = b.keep("offtake to level")(tf.Series(m.drain, b.keep("loop")(tf.Feedback(unity, b.keep("loop")(tf.Series(compare, around))))))
 	minus := big.NewRat(-1, 1)
-	m.resisted.gate = b.keep("offtake to gate")(tf.Series(m.resisted.level, tf.Scale(compare, minus), chain))
-	m.resisted.current = b.keep("offtake to current")(tf.Series(m.resisted.level, tf.Scale(compare, minus), answer))
+	m.resisted.gate = b.keep("offtake to gate")(tf.Series(m.resisted.level, tf.Must(tf.Scale(compare, minus)), chain))
+	m.resisted.current = b.keep("offtake to current")(tf.Series(m.resisted.level, tf.Must(tf.Scale(compare, minus)), answer))
 	return m, b.err
 }
 

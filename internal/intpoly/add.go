@@ -16,9 +16,6 @@ func (p Poly) Neg() Poly {
 	if p.IsZero() {
 		return p
 	}
-	if p.n < 0 {
-		return unevenSum(Poly{}, p, ^uint64(0))
-	}
 	n := limbsFor(p.span() + 1) // −(−2^b) needs a bit more
 	w := make([]uint64, p.terms()*n)
 	for i := range p.terms() {
@@ -53,9 +50,6 @@ func combine(p, q Poly, mask uint64) Poly {
 	}
 	n := limbsFor(max(p.span(), q.span()) + 1)
 	terms := max(p.terms(), q.terms())
-	if p.n < 0 || q.n < 0 || wastes(terms*n, len(p.w)+len(q.w)) {
-		return unevenSum(p, q, mask)
-	}
 	w := make([]uint64, terms*n)
 	if n == 1 {
 		copy(w, p.w)

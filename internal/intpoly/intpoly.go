@@ -7,9 +7,8 @@
 //
 // All coefficients of a polynomial lie in one slice and have the same number
 // of 64-bit limbs, the smallest that holds the largest of them in two's
-// complement. A polynomial of word-size coefficients is an array of int64. Only
-// where coefficients of very unequal length would waste memory each has a width of
-// its own.
+// complement. A polynomial of word-size coefficients is an array of int64. Who
+// takes in numbers bounds terms times limbs; see ratpoly.Fits.
 package intpoly
 
 import (
@@ -22,7 +21,7 @@ import (
 type Poly struct {
 	_ [0]func()
 	w []uint64 // limbs, least significant first; coefficient i is w[i·n : (i+1)·n]
-	n int      // limbs of a coefficient; 0 for the polynomial 0, below 0 as uneven.go tells
+	n int      // limbs of a coefficient; 0 for the polynomial 0
 }
 
 // trim returns the polynomial with the limbs w, n to a coefficient, without
@@ -76,18 +75,14 @@ func FromInt64s(ascending ...int64) Poly {
 
 // FromBigs returns the polynomial with the given ascending coefficients.
 func FromBigs(ascending ...*big.Int) Poly {
-	n, needed := 1, 0
+	n := 1
 	for len(ascending) > 0 && (ascending[len(ascending)-1] == nil || ascending[len(ascending)-1].Sign() == 0) {
 		ascending = ascending[:len(ascending)-1]
 	}
 	for _, v := range ascending {
 		if v != nil {
 			n = max(n, v.BitLen()/64+1)
-			needed += v.BitLen()/64 + 1
 		}
-	}
-	if wastes(n*len(ascending), needed+len(ascending)) {
-		return unevenOf(ascending)
 	}
 	w := make([]uint64, n*len(ascending))
 	for i, v := range ascending {
@@ -142,9 +137,6 @@ func negate(c []uint64) {
 
 // at returns the limbs of the coefficient i.
 func (p Poly) at(i int) []uint64 {
-	if p.n < 0 {
-		return p.unevenAt(i)
-	}
 	return p.w[i*p.n : (i+1)*p.n]
 }
 
@@ -152,9 +144,6 @@ func (p Poly) at(i int) []uint64 {
 func (p Poly) terms() int {
 	if p.n > 1 {
 		return len(p.w) / p.n
-	}
-	if p.n < 0 {
-		return int(p.w[0])
 	}
 	return len(p.w)
 }
@@ -172,7 +161,7 @@ func (p Poly) bigs() []*big.Int {
 func (p Poly) Degree() int { return p.terms() - 1 }
 
 // Words is how many 64-bit words each coefficient takes, 0 for the polynomial 0.
-func (p Poly) Words() int { return max(p.n, -p.n) }
+func (p Poly) Words() int { return p.n }
 
 // IsZero reports whether p is 0.
 func (p Poly) IsZero() bool { return len(p.w) == 0 }
@@ -256,16 +245,8 @@ func (p Poly) Span() int {
 	return p.span()
 }
 
-// span is Span.
+// span is Span for a polynomial that is not 0.
 func (p Poly) span() int {
-	if p.n < 0 {
-		return p.unevenSpan()
-	}
-	return p.evenSpan()
-}
-
-// evenSpan is span for coefficients of one width.
-func (p Poly) evenSpan() int {
 	var or uint64
 	for i := p.n - 1; i < len(p.w); i += p.n {
 		or |= p.w[i] ^ signOf(p.w[i])
@@ -278,9 +259,6 @@ func (p Poly) IsOne() bool { return len(p.w) == 1 && p.w[0] == 1 }
 
 // Equal reports whether p and q are the same polynomial.
 func (p Poly) Equal(q Poly) bool {
-	if p.n < 0 || q.n < 0 {
-		return p.Sub(q).IsZero()
-	}
 	return p.n == q.n && slices.Equal(p.w, q.w)
 }
 
@@ -288,9 +266,6 @@ func (p Poly) Equal(q Poly) bool {
 func (p Poly) MulPower(k int) Poly {
 	if p.IsZero() || k == 0 {
 		return p
-	}
-	if p.n < 0 || wastes((p.terms()+k)*p.n, len(p.w)+k) {
-		return FromBigs(append(make([]*big.Int, k), p.bigs()...)...)
 	}
 	w := make([]uint64, len(p.w)+k*p.n)
 	copy(w[k*p.n:], p.w)
@@ -313,21 +288,11 @@ func (p Poly) QuoPower(k int) Poly {
 	if k <= 0 || p.IsZero() {
 		return p
 	}
-	if p.n < 0 {
-		return FromBigs(p.bigs()[min(k, p.terms()):]...)
-	}
 	return Poly{w: p.w[min(k*p.n, len(p.w)):], n: p.n}
 }
 
 // EvenOdd returns E and O with p(x) = E(x²) + x·O(x²).
 func (p Poly) EvenOdd() (even, odd Poly) {
-	if p.n < 0 {
-		var c [2][]*big.Int
-		for i, v := range p.bigs() {
-			c[i%2] = append(c[i%2], v)
-		}
-		return FromBigs(c[0]...), FromBigs(c[1]...)
-	}
 	w := make([]uint64, len(p.w))
 	split := (p.terms() + 1) / 2 * p.n
 	for i := range p.terms() {
@@ -342,11 +307,6 @@ func (p Poly) EvenOdd() (even, odd Poly) {
 
 // Reverse returns x^k·p(1/x) for k = deg p.
 func (p Poly) Reverse() Poly {
-	if p.n < 0 {
-		c := p.bigs()
-		slices.Reverse(c)
-		return FromBigs(c...)
-	}
 	w := make([]uint64, len(p.w))
 	for i := range p.terms() {
 		copy(w[len(w)-(i+1)*p.n:], p.at(i))

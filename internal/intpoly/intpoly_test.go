@@ -141,61 +141,34 @@ func TestAgainstOracle(t *testing.T) {
 	}
 }
 
-// Polynomials with a width for each coefficient obey the same oracle, among
-// themselves and with others.
-func TestUnevenAgainstOracle(t *testing.T) {
-	r := rand.New(rand.NewPCG(21, 22))
-	for range 2000 {
-		a, b := newPair(coefficients(r, 1+r.IntN(9))), newPair(coefficients(r, 1+r.IntN(9)))
-		if a.p.IsZero() {
-			continue
+// Products are compared as products are: also where they are long enough for a
+// common factor to leave first.
+func TestEqualProducts(t *testing.T) {
+	r := rand.New(rand.NewPCG(41, 42))
+	for range 3000 {
+		p := func() Poly { return FromBigs(coefficients(r, r.IntN(5))...) }
+		a, b, c, d := p(), p(), p(), p()
+		if r.IntN(2) == 0 { // equal by construction
+			e, f, g, h := p(), p(), p(), p()
+			a, b, c, d = e.Mul(f), g.Mul(h), g.Mul(f), h.Mul(e)
 		}
-		a.p = unevenOf(a.q.c)
-		if !b.p.IsZero() && r.IntN(2) == 0 {
-			b.p = unevenOf(b.q.c)
-		}
-		checkPair(t, a, b, edge(r))
-		checkPair(t, b, a, edge(r))
-		if b.p.IsZero() {
-			continue
-		}
-		if g := a.p.Mul(b.p).GCD(b.p); !same(g, b.q.Mul(a.q).GCD(b.q)) {
-			t.Fatalf("gcd with the product of %v and %v", a.q.c, b.q.c)
-		}
-		product := unevenOf(a.q.Mul(b.q).c)
-		if q, ok := product.QuoExact(b.p); !ok || !same(q, a.q) {
-			t.Fatalf("%v times %v over the second", a.q.c, b.q.c)
-		}
-		if a.p.Resultant(b.p).Cmp(a.q.Resultant(b.q)) != 0 || !same(a.p.even(), a.q) {
-			t.Fatalf("resultant of %v and %v", a.q.c, b.q.c)
+		if got, want := EqualProducts(a, b, c, d), a.Mul(b).Equal(c.Mul(d)); got != want {
+			t.Fatalf("%v·%v = %v·%v: %v", a.bigs(), b.bigs(), c.bigs(), d.bigs(), got)
 		}
 	}
-}
-
-// One coefficient of half a megabyte among twenty thousand takes a megabyte.
-func TestUnevenMemory(t *testing.T) {
-	c := make([]*big.Int, 20001)
-	for i := range c {
-		c[i] = big.NewInt(1)
+	// Many short terms against few long ones.
+	many := make([]int64, 9001)
+	for i := range many {
+		many[i] = r.Int64N(2001) - 1000
 	}
-	c[7] = one(1 << 22)
-	p := FromBigs(c...)
-	if p.n >= 0 || len(p.w) > 120000 {
-		t.Fatalf("%d words", len(p.w))
+	short, long := FromInt64s(many...), FromBigs(one(60000), big.NewInt(3), one(59000))
+	x, y := FromInt64s(1, 2), FromInt64s(-5, 0, 7)
+	a, b, c, d := short.Mul(x), long.Mul(y), long.Mul(x), short.Mul(y)
+	if !EqualProducts(a, b, c, d) || !EqualProducts(b, a, c, d) || !EqualProducts(a, b, d, c) || !EqualProducts(c, d, b, a) {
+		t.Error("equal products are said to differ")
 	}
-	x := FromBigs(one(1 << 22)).MulPower(20000)
-	y := FromInt64s(0, 1).Mul(p).Add(x)
-	for name, q := range map[string]Poly{"negative": p.Neg(), "sum": p.Add(x), "derivative": p.Derivative(), "reverse": p.Reverse(),
-		"power": x, "product": FromInt64s(3, 0, 1).Mul(p), "chain": y, "difference": y.Sub(x).Sub(FromInt64s(1))} {
-		if q.n >= 0 || len(q.w) > 300000 {
-			t.Errorf("%s: %d words", name, len(q.w))
-		}
-	}
-	if !p.Sub(p).IsZero() || !p.Add(x).Sub(x).Equal(p) || p.Content().Cmp(big.NewInt(1)) != 0 || p.Degree() != 20000 || p.BitLen(7) != 1<<22+1 {
-		t.Error("arithmetic")
-	}
-	if g := p.GCD(p.Derivative()); !g.IsOne() {
-		t.Error("a multiple factor")
+	if EqualProducts(a, b, c, d.Add(FromInt64s(0, 1))) || EqualProducts(a, b, c.Neg(), d) {
+		t.Error("different products are said to be equal")
 	}
 }
 
@@ -415,7 +388,7 @@ func TestFloatSumsAtTheirBound(t *testing.T) {
 }
 
 func BenchmarkThresholds(b *testing.B) {
-	for _, width := range []uint{32, 50, 128, 256} {
+	for _, width := range []uint{32, 50, 100, 128, 192, 256, 320, 512} {
 		for _, terms := range []int{8, 16, 24, 32, 64, 128, 192, 256, 384, 1024} {
 			r := rand.New(rand.NewPCG(13, 14))
 			c, d := make([]*big.Int, terms), make([]*big.Int, terms)
@@ -425,9 +398,8 @@ func BenchmarkThresholds(b *testing.B) {
 			p, q := FromBigs(c...), FromBigs(d...)
 			n := limbsFor(p.span() + q.span() + 10)
 			b.Run(fmt.Sprintf("width=%d/terms=%d/limbs=%d/direct", width, terms, n*terms), func(b *testing.B) {
-				w := make([]uint64, (2*terms-1)*n)
 				for b.Loop() {
-					clear(w)
+					w := make([]uint64, (2*terms-1)*n)
 					if p.n == 1 {
 						addFloatSums(w, p.w, q.w, 1)
 					} else {

@@ -17,9 +17,6 @@ func Loop(n1, d1, n2, d2 Poly, sign int) (num, den Poly) {
 // negateFresh is Neg for a value that nobody else holds, in its own limbs where
 // they suffice.
 func (p Poly) negateFresh() Poly {
-	if p.n < 0 {
-		return p.Neg()
-	}
 	for i := range p.terms() {
 		if c := p.at(i); c[p.n-1] == 1<<63 && isZero(c[:p.n-1]) {
 			return p.Neg() // −2^(64 n − 1) has no negative of the same length

@@ -4,11 +4,11 @@ import "math/bits"
 
 // From how many limbs on, that is terms of the shorter factor times limbs of a
 // result coefficient, a product goes through math/big. BenchmarkThresholds
-// measures around these numbers; word-size factors and magnitudes of four limbs
+// measures around these numbers; word-size factors and magnitudes of few limbs
 // have faster ways of their own.
 const (
 	kroneckerWord = 640
-	kroneckerFour = 200
+	kroneckerRows = 300 // magnitudes of up to maxUnrolled limbs
 	kroneckerWide = 64
 	kroneckerLong = 50 // limbs of a result coefficient, however few terms there are
 )
@@ -40,24 +40,13 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 	if c.IsZero() || d.IsZero() {
 		c, d = Poly{}, Poly{}
 	}
-	if min(a.n, b.n, c.n, d.n) < 0 {
-		if sum, ok := sparseSum(a, b, c, d, sign); ok {
-			return sum
-		}
-		a, b, c, d = a.even(), b.even(), c.even(), d.even()
-	}
 	terms := max(a.terms()+b.terms(), c.terms()+d.terms()) - 1
 	// |Σ| ≤ terms·2^(span + span); one more bit for the second sum.
-	span := a.evenSpan() + b.evenSpan() + bits.Len(uint(min(a.terms(), b.terms())))
+	span := a.span() + b.span() + bits.Len(uint(min(a.terms(), b.terms())))
 	if !c.IsZero() {
-		span = max(span, c.evenSpan()+d.evenSpan()+bits.Len(uint(min(c.terms(), d.terms())))) + 1
+		span = max(span, c.span()+d.span()+bits.Len(uint(min(c.terms(), d.terms())))) + 1
 	}
 	n := limbsFor(span)
-	if terms*n > 1<<24 {
-		if sum, ok := sparseSum(a, b, c, d, sign); ok {
-			return sum
-		}
-	}
 	words := max(a.n, b.n, c.n, d.n) == 1 && n <= 2
 	limbs := n * max(min(a.terms(), b.terms()), min(c.terms(), d.terms()))
 	if isLong(limbs, n, words, a, b) {
@@ -82,12 +71,11 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 
 // isLong reports whether a product pays for packing.
 func isLong(limbs, n int, words bool, a, b Poly) bool {
-	four := func(p Poly) bool { s := p.span(); return s > 192 && s <= 256 }
 	switch {
 	case words:
 		return limbs >= kroneckerWord
-	case four(a) && four(b):
-		return limbs >= kroneckerFour
+	case a.span() <= 64*maxUnrolled && b.span() <= 64*maxUnrolled:
+		return limbs >= kroneckerRows
 	}
 	return limbs >= kroneckerWide && min(a.terms(), b.terms()) > 4 || n >= kroneckerLong
 }

@@ -42,10 +42,6 @@ func (p Poly) Residues(f *modp.Field) []uint64 {
 
 // imagesInto writes the residues of the coefficients up to one factor.
 func (p Poly) imagesInto(out []uint64, f *modp.Field) {
-	if p.n < 0 {
-		copy(out, p.Residues(f))
-		return
-	}
 	f.Images(out, p.w, p.n)
 }
 

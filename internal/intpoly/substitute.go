@@ -10,13 +10,6 @@ func (p Poly) Derivative() Poly {
 	if p.terms() < 2 {
 		return Poly{}
 	}
-	if p.n < 0 {
-		c := p.bigs()[1:]
-		for i, v := range c {
-			v.Mul(v, big.NewInt(int64(i+1)))
-		}
-		return FromBigs(c...)
-	}
 	n := limbsFor(p.span() + bits.Len(uint(p.Degree())))
 	w := make([]uint64, p.Degree()*n)
 	k := make([]uint64, 1)

@@ -3,11 +3,11 @@ package intpoly
 import "math/bits"
 
 // magnitudes holds the absolute values of the coefficients, each in n limbs,
-// and their signs.
+// and their signs as masks, 0 or all ones.
 type magnitudes struct {
-	w        []uint64
-	negative []bool
-	n        int
+	w    []uint64
+	sign []uint64
+	n    int
 }
 
 // room is what a caller's stack holds of magnitudes.
@@ -17,32 +17,16 @@ const (
 )
 
 type room struct {
-	w        [roomLimbs]uint64
-	negative [roomTerms]bool
+	w    [roomLimbs]uint64
+	sign [roomTerms]uint64
 }
 
-// magnitudesOf returns the magnitudes of p, in r where they fit.
-func magnitudesOf(p Poly, r *room) magnitudes {
-	n, terms := p.n, p.terms()
-	if p.span() <= 64*(n-1) && !p.hasMinimum() {
-		n-- // the top limbs are signs
+// magnitudeLimbs is how many limbs hold the magnitudes of p.
+func magnitudeLimbs(p Poly) int {
+	if p.span() <= 64*(p.n-1) && !p.hasMinimum() {
+		return p.n - 1 // the top limbs are signs
 	}
-	m := magnitudes{n: n}
-	if terms*n <= roomLimbs && terms <= roomTerms {
-		m.w, m.negative = r.w[:terms*n], r.negative[:terms]
-	} else {
-		m.w, m.negative = make([]uint64, terms*n), make([]bool, terms)
-	}
-	for i := range terms {
-		c, x := m.w[i*n:(i+1)*n], p.w[i*p.n:(i+1)*p.n]
-		sign := signOf(x[p.n-1])
-		m.negative[i] = sign != 0
-		carry := sign & 1
-		for k := range c {
-			c[k], carry = bits.Add64(x[k]^sign, 0, carry)
-		}
-	}
-	return m
+	return p.n
 }
 
 // hasMinimum reports whether a coefficient is −2^(64 (n − 1)), whose magnitude
@@ -57,133 +41,257 @@ func (p Poly) hasMinimum() bool {
 	return false
 }
 
+// magnitudesOf returns the magnitudes of p in n limbs each, in r where they fit;
+// in descending order for step = −1.
+func magnitudesOf(p Poly, n, step int, r *room) magnitudes {
+	terms := p.terms()
+	m := magnitudes{n: n}
+	if terms*n <= roomLimbs && terms <= roomTerms {
+		m.w, m.sign = r.w[:terms*n], r.sign[:terms]
+	} else {
+		m.w, m.sign = make([]uint64, terms*n), make([]uint64, terms)
+	}
+	k, to := min(n, p.n), 0
+	if step < 0 {
+		to = terms - 1
+	}
+	for i := 0; i < len(p.w); i += p.n {
+		c, x := m.w[to*n:(to+1)*n], p.w[i:i+p.n]
+		sign := signOf(x[len(x)-1])
+		m.sign[to] = sign
+		to += step
+		carry := sign & 1
+		for j, v := range x[:k] {
+			c[j], carry = bits.Add64(v^sign, 0, carry)
+		}
+		clear(c[k:])
+	}
+	return m
+}
+
 // wideSums computes a·b + sign·c·d into w, n limbs to a coefficient.
 func wideSums(w []uint64, n int, a, b, c, d Poly, sign int) {
-	var ra, rb room
-	ma, mb := magnitudesOf(a, &ra), magnitudesOf(b, &rb)
-	convolve(w, n, ma, mb, false)
+	addProducts(w, n, a, b, 0)
 	if !c.IsZero() {
-		mc, md := magnitudesOf(c, &ra), magnitudesOf(d, &rb)
-		convolve(w, n, mc, md, sign < 0)
+		addProducts(w, n, c, d, uint64(sign>>1))
 	}
 }
 
-// convolve adds the product of a and b to w, or subtracts it.
-func convolve(w []uint64, n int, a, b magnitudes, negative bool) {
-	if a.n == 4 && b.n == 4 {
-		convolve4(w, n, a, b, negative)
-		return
+// maxUnrolled is up to how many limbs rows are unrolled.
+const maxUnrolled = 4
+
+// addProducts adds a·b to w, or subtracts it where flip is all ones.
+func addProducts(w []uint64, n int, a, b Poly, flip uint64) {
+	var ra, rb room
+	la, lb := magnitudeLimbs(a), magnitudeLimbs(b)
+	if max(la, lb) <= maxUnrolled {
+		la = max(la, lb, 2)
+		lb = la
 	}
-	var store [2][24]uint64
-	size := a.n + b.n + 1 // one limb for the carries of a sum
-	var plus, minus []uint64
-	if size <= len(store[0]) {
-		plus, minus = store[0][:size], store[1][:size]
+	x, y := magnitudesOf(a, la, 1, &ra), magnitudesOf(b, lb, -1, &rb)
+	// One limb for the carries of a sum.
+	var store [2*maxUnrolled + 1]uint64
+	sum := store[:]
+	if la+lb+1 > len(sum) {
+		sum = make([]uint64, la+lb+1)
 	} else {
-		plus, minus = make([]uint64, size), make([]uint64, size)
+		sum = sum[:la+lb+1]
 	}
-	la, lb := len(a.negative), len(b.negative)
-	for k := 0; k < la+lb-1; k++ {
-		clear(plus)
-		clear(minus)
-		for i := max(0, k-lb+1); i <= min(k, la-1); i++ {
-			j := k - i
-			acc := plus
-			if a.negative[i] != b.negative[j] {
-				acc = minus
-			}
-			multiplyAdd(acc, a.w[i*a.n:(i+1)*a.n], b.w[j*b.n:(j+1)*b.n])
-		}
-		if negative {
-			settle(w[k*n:(k+1)*n], minus, plus)
-		} else {
-			settle(w[k*n:(k+1)*n], plus, minus)
-		}
+	var product []uint64
+	if la > maxUnrolled || lb > maxUnrolled {
+		product = make([]uint64, la+lb)
 	}
-}
-
-// convolve4 is convolve for magnitudes of four limbs.
-func convolve4(w []uint64, n int, a, b magnitudes, negative bool) {
-	la, lb := len(a.negative), len(b.negative)
-	for k := 0; k < la+lb-1; k++ {
-		var plus, minus [9]uint64
-		for i := max(0, k-lb+1); i <= min(k, la-1); i++ {
-			j := k - i
-			acc := &plus
-			if a.negative[i] != b.negative[j] {
-				acc = &minus
-			}
-			multiplyAdd4(acc, (*[4]uint64)(a.w[4*i:]), (*[4]uint64)(b.w[4*j:]))
+	for k := range len(x.sign) + len(y.sign) - 1 {
+		c := w[k*n : (k+1)*n]
+		clear(sum)
+		from, to := max(0, k-len(y.sign)+1), min(k, len(x.sign)-1)+1
+		at := len(y.sign) - 1 - k + from
+		xs, ys := x.sign[from:to], y.sign[at:]
+		xw, yw := x.w[from*la:to*la], y.w[at*lb:]
+		switch {
+		case product != nil:
+			addRow(sum, product, xw, yw, xs, ys, la, lb, flip)
+		case la == 2:
+			addRow2((*[5]uint64)(sum), xw, yw, xs, ys, flip)
+		case la == 3:
+			addRow3((*[7]uint64)(sum), xw, yw, xs, ys, flip)
+		default:
+			addRow4((*[9]uint64)(sum), xw, yw, xs, ys, flip)
 		}
-		if negative {
-			settle(w[k*n:(k+1)*n], minus[:], plus[:])
-		} else {
-			settle(w[k*n:(k+1)*n], plus[:], minus[:])
-		}
+		accumulate(c, cut(sum, n), 0)
 	}
 }
 
-// settle adds plus − minus to c.
-func settle(c, plus, minus []uint64) {
-	var carry, borrow uint64
-	for k := range c {
-		var x, y uint64
-		if k < len(plus) {
-			x, y = plus[k], minus[k]
+// addRow adds the products of the coefficients of x and y, m and n limbs each,
+// to sum.
+func addRow(sum, product, xw, yw, xs, ys []uint64, m, n int, flip uint64) {
+	for i, s := range xs {
+		clear(product)
+		multiply(product, xw[i*m:(i+1)*m], yw[i*n:(i+1)*n])
+		mask := s ^ ys[i] ^ flip
+		carry := mask & 1
+		for k, v := range product {
+			sum[k], carry = bits.Add64(sum[k], v^mask, carry)
 		}
-		c[k], carry = bits.Add64(c[k], x, carry)
-		c[k], borrow = bits.Sub64(c[k], y, borrow)
+		sum[m+n] += mask + carry
 	}
 }
 
-// multiplyAdd adds x·y to acc, which has len(x) + len(y) + 1 limbs.
-func multiplyAdd(acc, x, y []uint64) {
-	if len(x) == 4 && len(y) == 4 {
-		multiplyAdd4((*[9]uint64)(acc), (*[4]uint64)(x), (*[4]uint64)(y))
-		return
-	}
+// multiply adds x·y to product, which has the limbs of both.
+func multiply(product, x, y []uint64) {
 	if len(x) > len(y) {
 		x, y = y, x
 	}
 	for i, v := range x {
-		var carry uint64
-		row := acc[i:]
-		for j, u := range y {
-			hi, lo := bits.Mul64(v, u)
-			var c uint64
-			lo, c = bits.Add64(lo, carry, 0)
-			hi += c
-			row[j], c = bits.Add64(row[j], lo, 0)
-			carry = hi + c
-		}
-		for j := len(y); carry != 0; j++ {
-			row[j], carry = bits.Add64(row[j], carry, 0)
-		}
+		product[i+len(y)] = addProduct(product[i:i+len(y)], y, v)
 	}
 }
 
-// multiplyAdd4 is multiplyAdd for four limbs.
-func multiplyAdd4(acc *[9]uint64, x, y *[4]uint64) {
-	y0, y1, y2, y3 := y[0], y[1], y[2], y[3]
-	for i := range 4 {
-		v := x[i]
+// addRow2 is addRow for coefficients of two limbs.
+func addRow2(sum *[5]uint64, xw, yw, xs, ys []uint64, flip uint64) {
+	s0, s1, s2, s3, s4 := sum[0], sum[1], sum[2], sum[3], sum[4]
+	ys = ys[:len(xs)]
+	for i, s := range xs {
+		x, y := (*[2]uint64)(xw[2*i:]), (*[2]uint64)(yw[2*i:])
+		mask := s ^ ys[i] ^ flip
+		var c uint64
+		p1, p0 := bits.Mul64(x[0], y[0])
+		p3, p2 := bits.Mul64(x[1], y[1])
+		h, l := bits.Mul64(x[0], y[1])
+		p1, c = bits.Add64(p1, l, 0)
+		p2, c = bits.Add64(p2, h, c)
+		p3 += c
+		h, l = bits.Mul64(x[1], y[0])
+		p1, c = bits.Add64(p1, l, 0)
+		p2, c = bits.Add64(p2, h, c)
+		p3 += c
+		s0, c = bits.Add64(s0, p0^mask, mask&1)
+		s1, c = bits.Add64(s1, p1^mask, c)
+		s2, c = bits.Add64(s2, p2^mask, c)
+		s3, c = bits.Add64(s3, p3^mask, c)
+		s4, _ = bits.Add64(s4, mask, c)
+	}
+	*sum = [5]uint64{s0, s1, s2, s3, s4}
+}
+
+// addRow3 is addRow for coefficients of three limbs.
+func addRow3(sum *[7]uint64, xw, yw, xs, ys []uint64, flip uint64) {
+	ys = ys[:len(xs)]
+	for i, s := range xs {
+		x, y := (*[3]uint64)(xw[3*i:]), (*[3]uint64)(yw[3*i:])
+		mask := s ^ ys[i] ^ flip
+		y0, y1, y2 := y[0], y[1], y[2]
+		var c uint64
+		h0, p0 := bits.Mul64(x[0], y0)
+		h1, p1 := bits.Mul64(x[0], y1)
+		h2, p2 := bits.Mul64(x[0], y2)
+		p1, c = bits.Add64(p1, h0, 0)
+		p2, c = bits.Add64(p2, h1, c)
+		p3 := h2 + c
+
+		h0, l0 := bits.Mul64(x[1], y0)
+		h1, l1 := bits.Mul64(x[1], y1)
+		h2, l2 := bits.Mul64(x[1], y2)
+		l1, c = bits.Add64(l1, h0, 0)
+		l2, c = bits.Add64(l2, h1, c)
+		h2 += c
+		p1, c = bits.Add64(p1, l0, 0)
+		p2, c = bits.Add64(p2, l1, c)
+		p3, c = bits.Add64(p3, l2, c)
+		p4 := h2 + c
+
+		h0, l0 = bits.Mul64(x[2], y0)
+		h1, l1 = bits.Mul64(x[2], y1)
+		h2, l2 = bits.Mul64(x[2], y2)
+		l1, c = bits.Add64(l1, h0, 0)
+		l2, c = bits.Add64(l2, h1, c)
+		h2 += c
+		p2, c = bits.Add64(p2, l0, 0)
+		p3, c = bits.Add64(p3, l1, c)
+		p4, c = bits.Add64(p4, l2, c)
+		p5 := h2 + c
+
+		sum[0], c = bits.Add64(sum[0], p0^mask, mask&1)
+		sum[1], c = bits.Add64(sum[1], p1^mask, c)
+		sum[2], c = bits.Add64(sum[2], p2^mask, c)
+		sum[3], c = bits.Add64(sum[3], p3^mask, c)
+		sum[4], c = bits.Add64(sum[4], p4^mask, c)
+		sum[5], c = bits.Add64(sum[5], p5^mask, c)
+		sum[6], _ = bits.Add64(sum[6], mask, c)
+	}
+}
+
+// addRow4 is addRow for coefficients of four limbs.
+func addRow4(sum *[9]uint64, xw, yw, xs, ys []uint64, flip uint64) {
+	ys = ys[:len(xs)]
+	for i, s := range xs {
+		x, y := (*[4]uint64)(xw[4*i:]), (*[4]uint64)(yw[4*i:])
+		mask := s ^ ys[i] ^ flip
+		y0, y1, y2, y3 := y[0], y[1], y[2], y[3]
+		var c uint64
+		v := x[0]
+		h0, p0 := bits.Mul64(v, y0)
+		h1, p1 := bits.Mul64(v, y1)
+		h2, p2 := bits.Mul64(v, y2)
+		h3, p3 := bits.Mul64(v, y3)
+		p1, c = bits.Add64(p1, h0, 0)
+		p2, c = bits.Add64(p2, h1, c)
+		p3, c = bits.Add64(p3, h2, c)
+		p4 := h3 + c
+
+		v = x[1]
 		h0, l0 := bits.Mul64(v, y0)
 		h1, l1 := bits.Mul64(v, y1)
 		h2, l2 := bits.Mul64(v, y2)
 		h3, l3 := bits.Mul64(v, y3)
-		var c uint64
 		l1, c = bits.Add64(l1, h0, 0)
 		l2, c = bits.Add64(l2, h1, c)
 		l3, c = bits.Add64(l3, h2, c)
 		h3 += c
-		row := (*[5]uint64)(acc[i : i+5])
-		row[0], c = bits.Add64(row[0], l0, 0)
-		row[1], c = bits.Add64(row[1], l1, c)
-		row[2], c = bits.Add64(row[2], l2, c)
-		row[3], c = bits.Add64(row[3], l3, c)
-		row[4], c = bits.Add64(row[4], h3, c)
-		for j := i + 5; c != 0; j++ {
-			acc[j], c = bits.Add64(acc[j], 0, c)
-		}
+		p1, c = bits.Add64(p1, l0, 0)
+		p2, c = bits.Add64(p2, l1, c)
+		p3, c = bits.Add64(p3, l2, c)
+		p4, c = bits.Add64(p4, l3, c)
+		p5 := h3 + c
+
+		v = x[2]
+		h0, l0 = bits.Mul64(v, y0)
+		h1, l1 = bits.Mul64(v, y1)
+		h2, l2 = bits.Mul64(v, y2)
+		h3, l3 = bits.Mul64(v, y3)
+		l1, c = bits.Add64(l1, h0, 0)
+		l2, c = bits.Add64(l2, h1, c)
+		l3, c = bits.Add64(l3, h2, c)
+		h3 += c
+		p2, c = bits.Add64(p2, l0, 0)
+		p3, c = bits.Add64(p3, l1, c)
+		p4, c = bits.Add64(p4, l2, c)
+		p5, c = bits.Add64(p5, l3, c)
+		p6 := h3 + c
+
+		v = x[3]
+		h0, l0 = bits.Mul64(v, y0)
+		h1, l1 = bits.Mul64(v, y1)
+		h2, l2 = bits.Mul64(v, y2)
+		h3, l3 = bits.Mul64(v, y3)
+		l1, c = bits.Add64(l1, h0, 0)
+		l2, c = bits.Add64(l2, h1, c)
+		l3, c = bits.Add64(l3, h2, c)
+		h3 += c
+		p3, c = bits.Add64(p3, l0, 0)
+		p4, c = bits.Add64(p4, l1, c)
+		p5, c = bits.Add64(p5, l2, c)
+		p6, c = bits.Add64(p6, l3, c)
+		p7 := h3 + c
+
+		sum[0], c = bits.Add64(sum[0], p0^mask, mask&1)
+		sum[1], c = bits.Add64(sum[1], p1^mask, c)
+		sum[2], c = bits.Add64(sum[2], p2^mask, c)
+		sum[3], c = bits.Add64(sum[3], p3^mask, c)
+		sum[4], c = bits.Add64(sum[4], p4^mask, c)
+		sum[5], c = bits.Add64(sum[5], p5^mask, c)
+		sum[6], c = bits.Add64(sum[6], p6^mask, c)
+		sum[7], c = bits.Add64(sum[7], p7^mask, c)
+		sum[8], _ = bits.Add64(sum[8], mask, c)
 	}
 }

@@ -13,6 +13,7 @@ import (
 	"github.com/qofs/qofs/internal/intpoly"
 	"github.com/qofs/qofs/internal/lex"
 	"github.com/qofs/qofs/internal/ratfun"
+	"github.com/qofs/qofs/internal/ratpoly"
 )
 
 // Bounds on what a text may describe.
@@ -106,6 +107,12 @@ func (p *parser) expression() (ratfun.Func, error) {
 		}
 		if err := p.spend(at, sum.Den(), t.Num()); err != nil {
 			return sum, err
+		}
+		// One factor may bring the degree, the other one the length.
+		degree := max(sum.Num().Degree()+t.Den().Degree(), sum.Den().Degree()+t.Num().Degree())
+		bits := max(sum.Num().Span()+t.Den().Span(), sum.Den().Span()+t.Num().Span()) + 1
+		if !ratpoly.Fits(degree+1, bits, 0) {
+			return sum, p.tooLarge(at)
 		}
 		sum = sum.Add(t)
 	}
@@ -273,11 +280,15 @@ func (p *parser) spend(at lex.Token, a, b intpoly.Poly) error {
 	words := func(q intpoly.Poly) int { return (q.Degree() + 1) * (q.MaxBitLen()/64 + 1) }
 	// the product, and the greatest common divisor that brings its numbers down
 	p.work += words(a)*words(b) + (bits/64)*(bits/64)
-	if bits > maxBits || p.work > maxWork {
-		return lex.Fault(p.text, at.Offset, "a product too large to expand",
-			fmt.Sprintf("coefficients of at most %d bits and fewer factors", maxBits), fault.ErrLimit)
+	if bits > maxBits || p.work > maxWork || !ratpoly.Fits(a.Degree()+b.Degree()+1, bits, 0) {
+		return p.tooLarge(at)
 	}
 	return nil
+}
+
+func (p *parser) tooLarge(at lex.Token) error {
+	return lex.Fault(p.text, at.Offset, "a product too large to expand",
+		fmt.Sprintf("coefficients of at most %d bits and fewer factors", maxBits), fault.ErrLimit)
 }
 
 // Rational returns f as a number where it is one.

@@ -37,6 +37,37 @@ func New(num, den intpoly.Poly) (f Func, ok bool) {
 	return reduce(num, den, num.WordContent(), den.WordContent()), true
 }
 
+// NewScaled returns k·num/den as New does. The contents of num and den, which are
+// shorter than those of their products with k, tell what cancels.
+func NewScaled(k *big.Rat, num, den intpoly.Poly) (f Func, ok bool) {
+	if k.Num().IsInt64() && k.Denom().IsInt64() {
+		return New(num.MulInt(k.Num()), den.MulInt(k.Denom()))
+	}
+	if den.IsZero() {
+		return Func{}, false
+	}
+	// With num = cn·p and den = cd·q the constant is (k·cn)/cd over p/q.
+	cn, p := num.Primitive()
+	cd, q := den.Primitive()
+	if p.IsZero() {
+		return Func{den: q, denContent: 1}, true
+	}
+	c := new(big.Rat).SetFrac(cn, cd)
+	c.Mul(c, k)
+	f = Constant(c)
+	f.num, f.den = p.MulInt(c.Num()), q.MulInt(c.Denom())
+	return f, true
+}
+
+// Constant returns the number k, which is in lowest terms by itself; nil reads as 0.
+func Constant(k *big.Rat) Func {
+	if k == nil || k.Sign() == 0 {
+		return Func{}
+	}
+	num, den := intpoly.FromBigs(k.Num()), intpoly.FromBigs(k.Denom())
+	return Func{num: num, den: den, numContent: num.WordContent(), denContent: den.WordContent()}
+}
+
 // reduce removes the common integer factor of num and den, whose contents are
 // given where they are known, else 0. The leading coefficient of den is
 // positive.
@@ -173,19 +204,25 @@ func (f Func) Feedback(g Func, sign int) (Func, bool) {
 }
 
 // LowestTerms returns f with its common polynomial factor removed, and that
-// factor: primitive, with a positive leading coefficient.
-func (f Func) LowestTerms() (Func, intpoly.Poly) {
-	g := f.num.GCD(f.Den())
+// factor: primitive, with a positive leading coefficient. ok is false beyond
+// intpoly.MaxGCDWork.
+func (f Func) LowestTerms() (reduced Func, g intpoly.Poly, ok bool) {
+	if f.num.GCDWork(f.Den()) > intpoly.MaxGCDWork {
+		return Func{}, intpoly.Poly{}, false
+	}
+	g = f.num.GCD(f.Den())
 	if g.IsOne() {
-		return f, g
+		return f, g, true
 	}
 	num, _ := f.num.QuoExact(g)
 	den, _ := f.Den().QuoExact(g)
-	return reduce(num, den, f.numContent, f.denContent), g
+	return reduce(num, den, f.numContent, f.denContent), g, true
 }
 
 // Equal reports whether f and g have the same numerator and denominator.
 func (f Func) Equal(g Func) bool { return f.num.Equal(g.num) && f.Den().Equal(g.Den()) }
 
 // Equivalent reports whether f and g are the same function.
-func (f Func) Equivalent(g Func) bool { return f.num.Mul(g.Den()).Equal(g.num.Mul(f.Den())) }
+func (f Func) Equivalent(g Func) bool {
+	return intpoly.EqualProducts(f.num, g.Den(), g.num, f.Den())
+}

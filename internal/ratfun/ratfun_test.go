@@ -57,6 +57,28 @@ func TestOperationsByValue(t *testing.T) {
 }
 
 // checkOperations checks one random case.
+// A constant longer than a word cancels as one does that is multiplied in.
+func TestNewScaled(t *testing.T) {
+	r := rand.New(rand.NewPCG(51, 52))
+	for range 2000 {
+		f := randomFunc(r)
+		num, den := f.Num().MulInt(big.NewInt(r.Int64N(30)-15)), f.Den().MulInt(big.NewInt(r.Int64N(15)+1))
+		k := big.NewRat(r.Int64N(99)-49, 1+r.Int64N(99))
+		for range r.IntN(3) * 5 {
+			k.Mul(k, big.NewRat(1+r.Int64N(1<<20), 1+r.Int64N(1<<20)))
+		}
+		got, ok := NewScaled(k, num, den)
+		want, _ := New(num.MulInt(k.Num()), den.MulInt(k.Denom()))
+		if !ok || !got.Equal(want) {
+			t.Fatalf("%v of (%v)/(%v) is %v", k, num, den, got)
+		}
+		got.lawful(t, "scaled")
+	}
+	if _, ok := NewScaled(new(big.Rat).SetInt(new(big.Int).Lsh(big.NewInt(1), 99)), intpoly.FromInt64s(1), intpoly.Poly{}); ok {
+		t.Error("a denominator of 0")
+	}
+}
+
 func checkOperations(t *testing.T, r *rand.Rand) {
 	t.Helper()
 	one := big.NewRat(1, 1)
@@ -66,7 +88,7 @@ func checkOperations(t *testing.T, r *rand.Rand) {
 	inverse, invertible := f.Inverse()
 	loop, closed := f.Feedback(g, 1)
 	positive, closedPositive := f.Feedback(g, -1)
-	reduced, cancelled := f.LowestTerms()
+	reduced, cancelled, _ := f.LowestTerms()
 	for name, h := range map[string]Func{"product": product, "sum": sum, "scaled": scaled, "negative": negative, "inverse": inverse,
 		"loop": loop, "positive loop": positive, "reduced": reduced} {
 		h.lawful(t, name)
