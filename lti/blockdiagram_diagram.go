@@ -189,7 +189,7 @@ func (d *Diagram[G]) CharacteristicPolynomial() (poly.Poly, error) {
 // sign of its real part, which is exact.
 //
 // The errors are those of TransferFunction, poly.Poly.GCD and poly.Poly.Roots.
-func (d *Diagram[G]) HiddenModes(from, to string) ([]poly.Root, error) {
+func (d *Diagram[G]) HiddenModes(from, to string) (Modes[G], error) {
 	g, err := d.TransferFunction(from, to)
 	if err != nil {
 		return nil, err
@@ -199,7 +199,8 @@ func (d *Diagram[G]) HiddenModes(from, to string) ([]poly.Root, error) {
 	if err != nil {
 		return nil, err
 	}
-	return hidden.Roots()
+	roots, err := hidden.Roots()
+	return roots, err
 }
 
 // String lists signals, blocks and sums, a line each.

@@ -116,6 +116,6 @@ func ExampleDiagram_HiddenModes() {
 	fmt.Println("hidden", tf.Must(diagram.HiddenModes("disturbance", "temperature")))
 	// Output:
 	// modes  [-0.0010212765957446808 -0.00010638297872340425]
-	// hidden [-0.00010638297872340425]
-	// hidden []
+	// hidden s = -0.0001064 rad/s
+	// hidden none
 }

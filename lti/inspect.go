@@ -37,10 +37,11 @@ type NearCancellation struct {
 
 // Inspect examines a transfer function: its order, the modes that it hides,
 // exactly and with their stability, what each of the others does in time (Mode),
-// and the poles to which a zero comes closer than a stated fraction of the larger magnitude of the two, with the nearest
-// zero. That is decided on enclosures of both as narrow as it takes, so that it
-// is the same on every machine; two that are at the fraction to 4096 bits count
-// as not closer. A fraction of nil or 0 looks for none.
+// and the poles to which a zero comes closer than a stated fraction of the larger
+// magnitude of the two, with the nearest zero. That is decided on enclosures of
+// both as narrow as it takes, so that it is the same on every machine; two that
+// are at the fraction to 4096 bits count as not closer. A fraction of nil or 0
+// looks for none.
 //
 // The errors are those of poly.Poly.Roots for a function beyond its limits, and
 // units.ErrRange for a time constant beyond the largest float64.

@@ -5,10 +5,12 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"strings"
 
 	"github.com/qofs/qofs/internal/ball"
 	"github.com/qofs/qofs/internal/fault"
 	"github.com/qofs/qofs/poly"
+	"github.com/qofs/qofs/tf"
 )
 
 // Mode is a pole in s with what it does in time. The numbers are those of the
@@ -95,15 +97,20 @@ func nearestOf(p poly.Root, f func(z ball.Complex, prec uint) ball.Real) (float6
 	return v, nil
 }
 
+// times writes a root with its unit and its multiplicity.
+func times(r poly.Root, unit string) string {
+	s := place(r) + unit
+	if r.Multiplicity > 1 {
+		s += fmt.Sprintf(", %d times", r.Multiplicity)
+	}
+	return s
+}
+
 // String is the mode in words, with four digits: "-0.5 ± 2i rad/s: natural
 // frequency 2.062 rad/s, damping ratio 0.2425, decays with a time constant of
 // 2 s".
 func (m Mode) String() string {
-	s := place(m.Pole) + " rad/s"
-	if m.Pole.Multiplicity > 1 {
-		s += fmt.Sprintf(", %d times", m.Pole.Multiplicity)
-	}
-	s += ": "
+	s := times(m.Pole, " rad/s") + ": "
 	if !m.Pole.IsReal() {
 		s += fmt.Sprintf("natural frequency %.4g rad/s, ", m.NaturalFrequency)
 		if !m.Pole.IsImaginary() {
@@ -119,4 +126,26 @@ func (m Mode) String() string {
 		return s + "undamped"
 	}
 	return s + "integrates"
+}
+
+// Modes are modes of a diagram, as roots in s or in z by the kind of its blocks.
+type Modes[G tf.Block[G]] []poly.Root
+
+// String lists the modes with four digits, a conjugate pair as one and those in s
+// in rad/s: "s = -0.5 rad/s, 2 times; s = -1 ± 2i rad/s", "z = 0.9", or "none".
+func (m Modes[G]) String() string {
+	variable, unit := "s", " rad/s"
+	if _, discrete := any(*new(G)).(tf.Discrete); discrete {
+		variable, unit = "z", ""
+	}
+	var texts []string
+	for _, r := range m {
+		if imag(r.Value) >= 0 {
+			texts = append(texts, variable+" = "+times(r, unit))
+		}
+	}
+	if len(texts) == 0 {
+		return "none"
+	}
+	return strings.Join(texts, "; ")
 }
