@@ -71,10 +71,11 @@ func (e *UnknownNameError) Error() string {
 }
 
 // DeterminacyError tells that a set of equations does not determine the signal
-// that was asked for: it is singular, or has too many or too few equations.
+// that was asked for: it is singular, or has too many or too few equations. Build
+// returns it where that is so for every choice of signals.
 type DeterminacyError struct {
 	Equations int      // how many there are
-	Unknowns  []string // the signals that are neither the input nor held at 0
+	Unknowns  []string // the signals that are neither the input nor held at 0; from Build, those in the equations Dependent
 	Open      []string // those that are not determined, where that can be told
 	Dependent []int    // numbers of the equations, from 1, that repeat or contradict each other, where that can be told
 	Reason    string

@@ -322,6 +322,11 @@ func FuzzEquation(f *testing.F) {
 			}
 			return
 		}
+		for _, w := range s.Warnings() {
+			if w.Text == "" {
+				t.Error("a warning without words")
+			}
+		}
 		if _, err := s.TransferFunction("x", "y"); err != nil {
 			var d *lti.DeterminacyError
 			if !errors.As(err, &d) && !errors.Is(err, lti.ErrLimit) {
