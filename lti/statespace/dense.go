@@ -25,38 +25,41 @@ type Floats struct {
 }
 
 // Exact returns the same numbers as rational ones: every float64 is the binary
-// fraction that it is. The error is ErrNotFinite.
+// fraction that it is. The error is an *EntryError that wraps ErrNotFinite.
 func (f Floats) Exact() (Matrices, error) {
+	return f.matrices(nil, nil, nil, exact)
+}
+
+func exact(x float64) *big.Rat { return new(big.Rat).SetFloat64(x) }
+
+func (f Floats) matrices(states, inputs, outputs []units.Signal, read func(float64) *big.Rat) (Matrices, error) {
 	var m Matrices
-	for _, part := range []struct {
-		name string
-		from mat.Matrix
-		into *[][]*big.Rat
-	}{{"state matrix", f.State, &m.State}, {"input matrix", f.Input, &m.Input},
-		{"output matrix", f.Output, &m.Output}, {"feedthrough matrix", f.Feedthrough, &m.Feedthrough}} {
-		if part.from == nil {
+	from := [...]mat.Matrix{f.State, f.Input, f.Output, f.Feedthrough}
+	into := [...]*[][]*big.Rat{&m.State, &m.Input, &m.Output, &m.Feedthrough}
+	for k, p := range parts(states, inputs, outputs) {
+		if from[k] == nil {
 			continue
 		}
-		rows, columns := part.from.Dims()
+		rows, columns := from[k].Dims()
 		for i := range rows {
 			row := make([]*big.Rat, columns)
 			for j := range row {
-				v := part.from.At(i, j)
+				v := from[k].At(i, j)
 				if math.IsNaN(v) || math.IsInf(v, 0) {
-					return Matrices{}, fmt.Errorf("statespace: %s, row %d, column %d: %v: %w", part.name, i+1, j+1, v, ErrNotFinite)
+					return Matrices{}, p.fault(i, j, fmt.Errorf("found %v: %w", v, ErrNotFinite))
 				}
-				row[j] = new(big.Rat).SetFloat64(v)
+				row[j] = read(v)
 			}
-			*part.into = append(*part.into, row)
+			*into[k] = append(*into[k], row)
 		}
 	}
 	return m, nil
 }
 
 // FromFloats is New for gonum's matrices, whose entries are taken for the exact
-// binary fractions that they are. The errors are those of New and ErrNotFinite.
+// binary fractions that they are. The errors are those of New and of Floats.Exact.
 func FromFloats(states, inputs, outputs []units.Signal, f Floats) (Continuous, error) {
-	m, err := f.Exact()
+	m, err := f.matrices(states, inputs, outputs, exact)
 	if err != nil {
 		return Continuous{}, err
 	}
@@ -65,7 +68,7 @@ func FromFloats(states, inputs, outputs []units.Signal, f Floats) (Continuous, e
 
 // FromFloatsDiscrete is FromFloats for a model in discrete time.
 func FromFloatsDiscrete(states, inputs, outputs []units.Signal, f Floats, period units.Quantity) (Discrete, error) {
-	m, err := f.Exact()
+	m, err := f.matrices(states, inputs, outputs, exact)
 	if err != nil {
 		return Discrete{}, err
 	}
@@ -73,29 +76,27 @@ func FromFloatsDiscrete(states, inputs, outputs []units.Signal, f Floats, period
 }
 
 // Floats returns the coefficients for gonum, each entry rounded once to the
-// nearest float64. The error is ErrRange where one is too large.
+// nearest float64. The error is an *EntryError that wraps ErrRange where one is
+// too large.
 func (c model) Floats() (Floats, error) {
 	var f Floats
-	for _, part := range []struct {
-		name string
-		from matrix
-		into *mat.Matrix
-	}{{"state matrix", c.state, &f.State}, {"input matrix", c.input, &f.Input},
-		{"output matrix", c.output, &f.Output}, {"feedthrough matrix", c.feedthrough, &f.Feedthrough}} {
-		if len(part.from) == 0 || len(part.from[0]) == 0 {
+	from := [...]matrix{c.state, c.input, c.output, c.feedthrough}
+	into := [...]*mat.Matrix{&f.State, &f.Input, &f.Output, &f.Feedthrough}
+	for k, p := range parts(c.states, c.inputs, c.outputs) {
+		if len(p.rows) == 0 || len(p.columns) == 0 {
 			continue
 		}
-		d := mat.NewDense(len(part.from), len(part.from[0]), nil)
-		for i, row := range part.from {
+		d := mat.NewDense(len(p.rows), len(p.columns), nil)
+		for i, row := range from[k] {
 			for j, v := range row {
 				x, _ := v.Float64()
 				if math.IsInf(x, 0) {
-					return Floats{}, fmt.Errorf("statespace: %s, row %d, column %d: %w", part.name, i+1, j+1, ErrRange)
+					return Floats{}, p.fault(i, j, ErrRange)
 				}
 				d.Set(i, j, x)
 			}
 		}
-		*part.into = d
+		*into[k] = d
 	}
 	return f, nil
 }

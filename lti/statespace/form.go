@@ -146,7 +146,7 @@ type blocks struct {
 func (b *blocks) add(r *ratio, num, den poly.Poly, name string) error {
 	n, from := den.Degree(), len(b.states)
 	if from+n > MaxSignals {
-		return ErrLimit
+		return tooMany("state", from+n)
 	}
 	for k := range n {
 		unit, err := r.advance(r.in.Unit, k-n)
@@ -190,7 +190,7 @@ func (b *blocks) model(r *ratio) (model, error) {
 func (r *ratio) observable(name string) (model, error) {
 	n := r.den.Degree()
 	if n > MaxSignals {
-		return model{}, ErrLimit
+		return model{}, tooMany("state", n)
 	}
 	states := make([]units.Signal, n)
 	m := Matrices{State: zeros(n, n), Input: zeros(n, 1), Output: zeros(1, n), Feedthrough: [][]*big.Rat{{r.feedthrough}}}

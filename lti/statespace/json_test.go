@@ -2,11 +2,13 @@ package statespace
 
 import (
 	"encoding/json"
+	"errors"
 	"math/rand/v2"
 	"strings"
 	"testing"
 
 	"github.com/qofs/qofs/tf"
+	"github.com/qofs/qofs/units"
 )
 
 func TestJSON(t *testing.T) {
@@ -31,21 +33,68 @@ func TestJSON(t *testing.T) {
 	if want := "next x_1 = x_2 [V]\nnext x_2 = -0.81 x_1 + 1.8 x_2 + u [V]\ny' = 1/3 x_1 + x_2 [mm/s]\nevery 0.01 s"; back.String() != want {
 		t.Errorf("%q", back.String())
 	}
+}
+
+// Every fault has a type and its place.
+func TestJSONFaults(t *testing.T) {
+	const x = `{"states": [{"name": "level", "unit": "m"}], "inputs": [{"name": "inflow", "unit": "m^3/s"}], `
 	for text, want := range map[string]string{
-		`{"states": 3}`: "state-space model as JSON",
-		`{"x": []}`:     "unknown field",
-		`{"states": [{"name": "x", "unit": "m"}], "state matrix": [["s"]]}`:      "row 1, column 1",
-		`{"states": [{"name": "x", "unit": "m"}], "state matrix": [["1", "2"]]}`: "state matrix of 1 by 2",
-		`{"states": [{"name": "x", "unit": "furlong"}]}`:                         "furlong",
-		`{"period": "1 s"}`: "discrete",
+		`null`:                                 "found null, want a state-space model as JSON",
+		`[]`:                                   "found [, want a state-space model as JSON",
+		`{"states": 3}`:                        `at offset 12 of "{\"states\": 3}": found a JSON number, want a list such as`,
+		`{"states": [{"name": "x", "u": ""}]}`: `found unknown field "u", want a list such as`,
+		`{"state": [["1"]]}`:                   `found the field "state", want "states"`,
+		`{"states": [], "states": []}`:         `at offset 23 of "{\"states\": [], \"states\": []}": found the field "states" twice`,
+		`{"states": []} 1`:                     "found 1, want the end",
+		`{"states": [`:                         "found the end",
+		`{"states": ]}`:                        "invalid character",
+		`{"state matrix": 3}`:                  `want rows of numbers as texts, such as [["-0.5", "1/3"]]`,
+		`{"state matrix": [["x"]]}`:            `state matrix, row 1, column 1: at offset 0 of "x": found "x", want a number, such as -0.5, 1e-3 or 1/3`,
+		x + `"input matrix": [["s"]]}`:         `input matrix, row 1 (level), column 1 (inflow): at offset 0 of "s": found "s", want a number, such as`,
+		x + `"input matrix": [["1/0"]]}`:       `input matrix, row 1 (level), column 1 (inflow): at offset 2 of "1/0": found a zero denominator`,
+		x + `"input matrix": [["1", ""]]}`:     `input matrix, row 1 (level), column 2: at offset 0 of "": found the end, want a number`,
+		x + `"state matrix": [[0.5]]}`:         `state matrix, row 1 (level), column 1 (level): at offset 0 of "0.5": found 0.5, want a number as text, such as "0.5"`,
+		x + `"state matrix": [[null]]}`:        `found null, want a number as text`,
+		x + `"period": "1 s"}`:                 `found a period of "1 s", want none: it belongs to a model in discrete time`,
 	} {
 		var c Continuous
-		if err := json.Unmarshal([]byte(text), &c); err == nil || !strings.Contains(err.Error(), want) {
-			t.Errorf("%s: %v", text, err)
+		var syntax *SyntaxError
+		err := c.UnmarshalJSON([]byte(text))
+		if !errors.As(err, &syntax) || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: %T %v, want …%s", text, err, err, want)
+		}
+		var entry *EntryError
+		if inside := strings.Contains(want, "row 1"); inside && !errors.As(err, &entry) {
+			t.Errorf("%s: %T", text, err)
 		}
 	}
-	if err := json.Unmarshal([]byte(`{"period": "1 m"}`), &back); err == nil {
-		t.Error("a period in metres")
+	for text, want := range map[string]string{
+		x + `"period": "1 q"}`: `found a period of "1 q", want a time such as 0.01 s: at offset 2 of "1 q"`,
+		x + `"outputs": []}`:   `found no period, want a sampling period, such as "period": "0.01 s"`,
+	} {
+		var d Discrete
+		var syntax *SyntaxError
+		if err := json.Unmarshal([]byte(text), &d); !errors.As(err, &syntax) || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: %T %v, want …%s", text, err, err, want)
+		}
+	}
+	var c Continuous
+	var signal *SignalError
+	var syntax *SyntaxError
+	err := json.Unmarshal([]byte(`{"outputs": [{"name": "x", "unit": "furlong"}]}`), &c)
+	if !errors.As(err, &signal) || !errors.As(err, &syntax) || signal.Kind != "output" || signal.Signal.Name != "x" {
+		t.Errorf("%T %v", err, err)
+	}
+	var size *SizeError
+	if err := json.Unmarshal([]byte(x+`"state matrix": [["1", "2"]]}`), &c); !errors.As(err, &size) {
+		t.Errorf("%T %v", err, err)
+	}
+	var mismatch *units.MismatchError
+	if err := json.Unmarshal([]byte(`{"period": "1 m"}`), new(Discrete)); !errors.As(err, &mismatch) {
+		t.Errorf("a period in metres: %T %v", err, err)
+	}
+	if err := c.UnmarshalJSON(make([]byte, maxText+1)); !errors.Is(err, ErrLimit) {
+		t.Error(err)
 	}
 }
 

@@ -1,8 +1,11 @@
 package statespace
 
 import (
+	"fmt"
 	"math/big"
 	"slices"
+
+	"github.com/qofs/qofs/units"
 )
 
 // matrix is a rectangle of rational numbers without nil entries. Its rows are
@@ -21,14 +24,39 @@ func zeros(rows, columns int) matrix {
 	return m
 }
 
+// part is the place of a matrix in a model: its name and the signals of its rows
+// and columns.
+type part struct {
+	name          string
+	rows, columns []units.Signal
+}
+
+// parts returns the places of State, Input, Output and Feedthrough.
+func parts(states, inputs, outputs []units.Signal) [4]part {
+	return [4]part{{"state matrix", states, states}, {"input matrix", states, inputs},
+		{"output matrix", outputs, states}, {"feedthrough matrix", outputs, inputs}}
+}
+
+// fault returns the error for the entry with indices i and j.
+func (p part) fault(i, j int, err error) *EntryError {
+	name := func(signals []units.Signal, k int) string {
+		if k >= len(signals) {
+			return ""
+		}
+		return signals[k].Name
+	}
+	return &EntryError{p.name, i + 1, j + 1, name(p.rows, i), name(p.columns, j), err}
+}
+
 // newMatrix copies and checks a matrix.
-func newMatrix(name string, from [][]*big.Rat, rows, columns int) (matrix, error) {
+func newMatrix(p part, from [][]*big.Rat) (matrix, error) {
+	rows, columns := len(p.rows), len(p.columns)
 	m := zeros(rows, columns)
 	if from == nil {
 		return m, nil
 	}
 	if len(from) != rows {
-		e := &SizeError{Matrix: name, Rows: len(from), WantRows: rows, WantColumns: columns}
+		e := &SizeError{Matrix: p.name, Rows: len(from), WantRows: rows, WantColumns: columns}
 		if len(from) > 0 {
 			e.Columns = len(from[0])
 		}
@@ -36,14 +64,14 @@ func newMatrix(name string, from [][]*big.Rat, rows, columns int) (matrix, error
 	}
 	for i, row := range from {
 		if len(row) != columns {
-			return nil, &SizeError{Matrix: name, Rows: len(from), Columns: len(row), WantRows: rows, WantColumns: columns}
+			return nil, &SizeError{Matrix: p.name, Rows: len(from), Columns: len(row), WantRows: rows, WantColumns: columns}
 		}
 		for j, v := range row {
 			if v == nil {
 				continue
 			}
-			if v.Num().BitLen() > maxBits || v.Denom().BitLen() > maxBits {
-				return nil, ErrLimit
+			if bits := max(v.Num().BitLen(), v.Denom().BitLen()); bits > maxBits {
+				return nil, p.fault(i, j, fmt.Errorf("found a number of %d bits, want at most %d: %w", bits, maxBits, ErrLimit))
 			}
 			m[i][j].Set(v)
 		}

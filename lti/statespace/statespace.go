@@ -24,6 +24,7 @@
 package statespace
 
 import (
+	"fmt"
 	"math/big"
 	"slices"
 
@@ -75,7 +76,8 @@ type model struct {
 // may be a state and an output.
 //
 // The errors are *SignalError, *SizeError, and ErrLimit for more than MaxSignals
-// of a kind or an entry of more than 8192 bits.
+// of a kind; an entry of more than 8192 bits in numerator or denominator is an
+// *EntryError, which names its place and wraps ErrLimit.
 func New(states, inputs, outputs []units.Signal, m Matrices) (Continuous, error) {
 	c, err := newModel(states, inputs, outputs, m)
 	return Continuous{model: c}, err
@@ -119,28 +121,24 @@ func newModel(states, inputs, outputs []units.Signal, m Matrices) (model, error)
 			return model{}, err
 		}
 	}
-	for _, part := range []struct {
-		name          string
-		into          *matrix
-		from          [][]*big.Rat
-		rows, columns int
-	}{
-		{"state matrix", &c.state, m.State, len(states), len(states)},
-		{"input matrix", &c.input, m.Input, len(states), len(inputs)},
-		{"output matrix", &c.output, m.Output, len(outputs), len(states)},
-		{"feedthrough matrix", &c.feedthrough, m.Feedthrough, len(outputs), len(inputs)},
-	} {
+	into := [...]*matrix{&c.state, &c.input, &c.output, &c.feedthrough}
+	from := [...][][]*big.Rat{m.State, m.Input, m.Output, m.Feedthrough}
+	for k, p := range parts(states, inputs, outputs) {
 		var err error
-		if *part.into, err = newMatrix(part.name, part.from, part.rows, part.columns); err != nil {
+		if *into[k], err = newMatrix(p, from[k]); err != nil {
 			return model{}, err
 		}
 	}
 	return c, nil
 }
 
+func tooMany(kind string, n int) error {
+	return fmt.Errorf("found %s, want at most %d: %w", count(n, kind), MaxSignals, ErrLimit)
+}
+
 func checkSignals(kind string, signals []units.Signal) error {
 	if len(signals) > MaxSignals {
-		return ErrLimit
+		return tooMany(kind, len(signals))
 	}
 	seen := map[string]bool{}
 	for _, s := range signals {

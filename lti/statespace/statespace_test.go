@@ -6,6 +6,7 @@ import (
 	"math"
 	"math/big"
 	"math/rand/v2"
+	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
@@ -219,25 +220,31 @@ func TestRefusals(t *testing.T) {
 		text string
 	}{
 		"rows":      {second2(New(x, u, y, Matrices{State: rats([]int64{1, 2})})), &size, "state matrix of 1 by 2: the signals ask for 2 rows and 2 columns"},
-		"columns":   {second2(New(x, u, y, Matrices{Input: rats([]int64{1, 2}, []int64{1, 2})})), &size, "input matrix of 2 by 2: the signals ask for 2 rows and 1 columns"},
+		"columns":   {second2(New(x, u, y, Matrices{Input: rats([]int64{1, 2}, []int64{1, 2})})), &size, "input matrix of 2 by 2: the signals ask for 2 rows and 1 column"},
 		"ragged":    {second2(New(x, u, y, Matrices{State: rats([]int64{1, 2}, []int64{1})})), &size, "state matrix of 2 by 1: the signals ask for 2 rows and 2 columns"},
 		"name":      {second2(New(signals("m", ""), u, y, Matrices{})), &signal, `state "m": has no name`},
 		"twice":     {second2(New(signals("m", "x", "x"), u, y, Matrices{})), &signal, `state "x: m": stands twice in the list`},
 		"unknown":   {second2(tf.Must(New(x, u, y, Matrices{})).TransferFunction("torque", "x")), &unknown, `no input "torque": there are force`},
-		"no output": {second2(tf.Must(New(x, u, y, Matrices{})).TransferFunction("force", "w")), &unknown, `no output "w": there are x, x, v`},
+		"no output": {second2(tf.Must(New(x, u, y, Matrices{})).TransferFunction("force", "w")), &unknown, `no output "w": there are x, v`},
 	} {
 		if c.err == nil || !errors.As(c.err, c.as) || c.err.Error() != c.text {
 			t.Errorf("%s: %v", name, c.err)
 		}
 	}
+	none := tf.Must(New(x, nil, y, Matrices{}))
+	if _, err := none.TransferFunction("force", "x"); err == nil || err.Error() != `no input "force": the model has none` {
+		t.Error(err)
+	}
 	long := new(big.Rat).SetInt(new(big.Int).Lsh(big.NewInt(1), maxBits+1))
-	if _, err := New(x, u, y, Matrices{Output: [][]*big.Rat{{long, nil}}}); !errors.Is(err, ErrLimit) {
+	if _, err := New(x, u, y, Matrices{Output: [][]*big.Rat{{nil, long}}}); !errors.Is(err, ErrLimit) || err.Error() !=
+		"output matrix, row 1 (x), column 2 (v): found a number of 8194 bits, want at most 8192: work limit reached" {
 		t.Error(err)
 	}
-	if _, err := New(make([]units.Signal, MaxSignals+1), nil, nil, Matrices{}); !errors.Is(err, ErrLimit) {
+	if _, err := New(make([]units.Signal, MaxSignals+1), nil, nil, Matrices{}); !errors.Is(err, ErrLimit) || !strings.HasPrefix(err.Error(), "found 257 states, want at most 256") {
 		t.Error(err)
 	}
-	if _, err := FromFloats(x, u, y, Floats{Output: mat.NewDense(1, 2, []float64{1, math.NaN()})}); !errors.Is(err, ErrNotFinite) {
+	if _, err := FromFloats(x, u, y, Floats{Output: mat.NewDense(1, 2, []float64{1, math.NaN()})}); !errors.Is(err, ErrNotFinite) || err.Error() !=
+		"output matrix, row 1 (x), column 2 (v): found NaN: not a finite number" {
 		t.Error(err)
 	}
 	if _, err := NewDiscrete(x, u, y, Matrices{}, units.MustParseQuantity("0 s")); !errors.Is(err, ErrPeriod) {
@@ -247,8 +254,9 @@ func TestRefusals(t *testing.T) {
 	if _, err := NewDiscrete(x, u, y, Matrices{}, units.MustParseQuantity("3 m")); !errors.As(err, &mismatch) {
 		t.Error(err)
 	}
+	var entry *EntryError
 	huge := new(big.Rat).SetInt(new(big.Int).Lsh(big.NewInt(1), 2000))
-	if _, err := tf.Must(New(x, u, y, Matrices{Output: [][]*big.Rat{{huge, nil}}})).Floats(); !errors.Is(err, ErrRange) {
+	if _, err := tf.Must(New(x, u, y, Matrices{Output: [][]*big.Rat{{huge, nil}}})).Floats(); !errors.Is(err, ErrRange) || !errors.As(err, &entry) || entry.ColumnSignal != "x" {
 		t.Error(err)
 	}
 }

@@ -144,7 +144,9 @@ func find(kind string, signals []units.Signal, names []string) ([]int, error) {
 		if out[k] < 0 {
 			e := &UnknownSignalError{Kind: kind, Name: name}
 			for _, s := range signals {
-				e.Have = append(e.Have, s.Name)
+				if !slices.Contains(e.Have, s.Name) { // a state may be an output
+					e.Have = append(e.Have, s.Name)
+				}
 			}
 			return nil, e
 		}
