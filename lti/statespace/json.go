@@ -220,6 +220,14 @@ func (c *Continuous) UnmarshalJSON(text []byte) error {
 	return err
 }
 
+// MarshalText is MarshalJSON, for formats that hold text: the lists of signals
+// with their units have no shorter form that reads back, and String shows the
+// equations for people.
+func (c Continuous) MarshalText() ([]byte, error) { return c.MarshalJSON() }
+
+// UnmarshalText is UnmarshalJSON.
+func (c *Continuous) UnmarshalText(text []byte) error { return c.UnmarshalJSON(text) }
+
 // MarshalJSON writes signals, matrices and the period, as for Continuous.
 func (d Discrete) MarshalJSON() ([]byte, error) { return json.Marshal(d.document(d.Period().String())) }
 
@@ -249,3 +257,9 @@ func (d *Discrete) UnmarshalJSON(text []byte) error {
 	}
 	return err
 }
+
+// MarshalText is MarshalJSON, for formats that hold text.
+func (d Discrete) MarshalText() ([]byte, error) { return d.MarshalJSON() }
+
+// UnmarshalText is UnmarshalJSON.
+func (d *Discrete) UnmarshalText(text []byte) error { return d.UnmarshalJSON(text) }

@@ -1,6 +1,7 @@
 package statespace
 
 import (
+	"encoding"
 	"encoding/json"
 	"errors"
 	"math/rand/v2"
@@ -111,4 +112,28 @@ func FuzzJSON(f *testing.F) {
 			t.Fatalf("%q: %s", text, again)
 		}
 	})
+}
+
+// Models go through formats that know only text, and a text cut short leaves the
+// receiver as it was.
+func TestText(t *testing.T) {
+	c := random(rand.New(rand.NewPCG(13, 14)), 3, 2, 2)
+	d := tf.Must(NewDiscrete(c.States(), c.Inputs(), c.Outputs(), c.Matrices(), units.MustParseQuantity("10 ms")))
+	for _, m := range []struct {
+		from  encoding.TextMarshaler
+		into  encoding.TextUnmarshaler
+		equal func(encoding.TextUnmarshaler) bool
+	}{
+		{c, new(Continuous), func(back encoding.TextUnmarshaler) bool { return back.(*Continuous).Equal(c) }},
+		{d, new(Discrete), func(back encoding.TextUnmarshaler) bool { return back.(*Discrete).Equal(d) }},
+	} {
+		text, err := m.from.MarshalText()
+		if err != nil || m.into.UnmarshalText(text) != nil || !m.equal(m.into) {
+			t.Errorf("%T: %s, %v", m.from, text, err)
+		}
+		var syntax *SyntaxError
+		if err := m.into.UnmarshalText(text[:len(text)-1]); !errors.As(err, &syntax) || !m.equal(m.into) {
+			t.Errorf("%T: %v", m.from, err)
+		}
+	}
 }
