@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"strconv"
 
 	"gonum.org/v1/gonum/mat"
 
@@ -30,7 +31,19 @@ func (f Floats) Exact() (Matrices, error) {
 	return f.matrices(nil, nil, nil, exact)
 }
 
+// Decimals returns the numbers that a reader would take the matrices for: every
+// float64 is the shortest decimal that identifies it, so that 0.1 is 1/10. The
+// error is that of Exact.
+func (f Floats) Decimals() (Matrices, error) {
+	return f.matrices(nil, nil, nil, shortest)
+}
+
 func exact(x float64) *big.Rat { return new(big.Rat).SetFloat64(x) }
+
+func shortest(x float64) *big.Rat {
+	r, _ := new(big.Rat).SetString(strconv.FormatFloat(x, 'g', -1, 64))
+	return r
+}
 
 func (f Floats) matrices(states, inputs, outputs []units.Signal, read func(float64) *big.Rat) (Matrices, error) {
 	var m Matrices
@@ -69,6 +82,27 @@ func FromFloats(states, inputs, outputs []units.Signal, f Floats) (Continuous, e
 // FromFloatsDiscrete is FromFloats for a model in discrete time.
 func FromFloatsDiscrete(states, inputs, outputs []units.Signal, f Floats, period units.Quantity) (Discrete, error) {
 	m, err := f.matrices(states, inputs, outputs, exact)
+	if err != nil {
+		return Discrete{}, err
+	}
+	return NewDiscrete(states, inputs, outputs, m, period)
+}
+
+// FromDecimals is New for gonum's matrices of which every entry is taken for the
+// shortest decimal that identifies it: for numbers that were typed, measured or
+// printed, where FromFloats gives the bits of a computed result. The model prints as
+// the matrices do. The errors are those of FromFloats.
+func FromDecimals(states, inputs, outputs []units.Signal, f Floats) (Continuous, error) {
+	m, err := f.matrices(states, inputs, outputs, shortest)
+	if err != nil {
+		return Continuous{}, err
+	}
+	return New(states, inputs, outputs, m)
+}
+
+// FromDecimalsDiscrete is FromDecimals for a model in discrete time.
+func FromDecimalsDiscrete(states, inputs, outputs []units.Signal, f Floats, period units.Quantity) (Discrete, error) {
+	m, err := f.matrices(states, inputs, outputs, shortest)
 	if err != nil {
 		return Discrete{}, err
 	}

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math/big"
 
+	"gonum.org/v1/gonum/mat"
+
 	"github.com/qofs/qofs/lti/statespace"
 	"github.com/qofs/qofs/tf"
 	"github.com/qofs/qofs/units"
@@ -28,6 +30,24 @@ func ExampleNew() {
 	// level' = -0.0006696 level + 7.5e-7 opening [m/s]
 	// level = level [m]
 	// 21/(2.8e7 s + 18750) [opening: mm -> level: m]
+}
+
+// Matrices from measurements and tables are decimals that a float64 only comes
+// near to: FromDecimals takes them for what was written.
+func ExampleFromDecimals() {
+	zone := []units.Signal{{Name: "zone", Unit: units.MustParse("K")}}
+	power := []units.Signal{{Name: "power", Unit: units.MustParse("W")}}
+	kiln := tf.Must(statespace.FromDecimals(zone, power, zone, statespace.Floats{
+		State:  mat.NewDense(1, 1, []float64{-0.0012}),
+		Input:  mat.NewDense(1, 1, []float64{0.0003}),
+		Output: mat.NewDense(1, 1, []float64{1}),
+	}))
+	fmt.Println(kiln)
+	fmt.Println(tf.Must(kiln.TransferFunction("power", "zone")))
+	// Output:
+	// zone' = -0.0012 zone + 0.0003 power [K/s]
+	// zone = zone [K]
+	// 3/(10000 s + 12) [power: W -> zone: K]
 }
 
 // The heater of a kiln zone and a thermocouple that has the same lag as the load:
