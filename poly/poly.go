@@ -129,12 +129,16 @@ func (p Poly) Equal(q Poly) bool {
 
 // Add returns p + q.
 func (p Poly) Add(q Poly) Poly {
+	a, b := p.rational(), q.rational()
+	if ratpoly.Small(&a, &b) {
+		return Poly(a.Add(b))
+	}
 	// Over the product of the denominators each numerator grows by the other one's.
 	bits := max(p.span()+q.denominatorBits(), q.span()+p.denominatorBits()) + 1
 	if !formed(p, q, max(p.Degree(), q.Degree())+1, bits) {
 		return Poly(ratpoly.TooLong)
 	}
-	return Poly(p.rational().Add(q.rational()))
+	return Poly(a.Add(b))
 }
 
 // Sub returns p − q.
@@ -145,11 +149,15 @@ func (p Poly) Neg() Poly { return Poly(p.rational().Neg()) }
 
 // Mul returns p·q.
 func (p Poly) Mul(q Poly) Poly {
+	a, b := p.rational(), q.rational()
+	if ratpoly.Small(&a, &b) {
+		return Poly(a.Mul(b))
+	}
 	bits := p.span() + q.span() + bits.Len(uint(min(p.Degree(), q.Degree())+1))
 	if !formed(p, q, p.Degree()+q.Degree()+1, bits) {
 		return Poly(ratpoly.TooLong)
 	}
-	return Poly(p.rational().Mul(q.rational()))
+	return Poly(a.Mul(b))
 }
 
 // Scale returns k·p; nil reads as 0.

@@ -141,6 +141,52 @@ func TestAgainstOracle(t *testing.T) {
 	}
 }
 
+// A square takes ways of its own, for every width and length.
+func TestSquares(t *testing.T) {
+	r := rand.New(rand.NewPCG(61, 62))
+	for _, width := range []uint{20, 40, 50, 62, 100, 128, 190, 256, 300, 600} {
+		for _, terms := range []int{1, 2, 3, 7, 8, 20, 21, 70, 200} {
+			c := make([]*big.Int, terms)
+			for i := range c {
+				c[i] = new(big.Int).Rand(newLegacy(r), one(width))
+				if r.IntN(2) == 0 {
+					c[i].Neg(c[i])
+				}
+			}
+			p := newPair(c)
+			if !same(p.p.Mul(p.p), p.q.Mul(p.q)) {
+				t.Fatalf("%d terms of %d bits", terms, width)
+			}
+			copied := newPair(c)
+			if want := p.q.Mul(p.q); !same(SumOfProducts(p.p, p.p, copied.p, p.p, -1), want.Sub(want)) {
+				t.Fatalf("the square of %d terms of %d bits less itself", terms, width)
+			}
+		}
+	}
+}
+
+// Long shifts and divisions go other ways than short ones.
+func TestLongShiftsAndDivisions(t *testing.T) {
+	r := rand.New(rand.NewPCG(71, 72))
+	for _, terms := range []int{60, 64, 65, 66, 127, 130, 257} {
+		p := newPair(coefficients(r, terms))
+		for _, a := range []*big.Int{big.NewInt(0), big.NewInt(1), big.NewInt(-1), big.NewInt(-3), one(70)} {
+			if !same(p.p.TaylorShift(a), p.q.TaylorShift(a)) {
+				t.Fatalf("%d terms shifted by %v", terms, a)
+			}
+		}
+		q := newPair(coefficients(r, 1+r.IntN(terms)))
+		if q.p.IsZero() {
+			continue
+		}
+		quo, rem, k := p.p.PseudoQuoRem(q.p)
+		wantQuo, wantRem, wantK := p.q.PseudoQuoRem(q.q)
+		if !same(quo, wantQuo) || !same(rem, wantRem) || k != wantK {
+			t.Fatalf("%d terms over %d", terms, q.p.terms())
+		}
+	}
+}
+
 // Products are compared as products are: also where they are long enough for a
 // common factor to leave first.
 func TestEqualProducts(t *testing.T) {
@@ -401,7 +447,7 @@ func BenchmarkThresholds(b *testing.B) {
 				for b.Loop() {
 					w := make([]uint64, (2*terms-1)*n)
 					if p.n == 1 {
-						addFloatSums(w, p.w, q.w, 1)
+						addFloatSums(w, p, q, 1)
 					} else {
 						wideSums(w, n, p, q, Poly{}, Poly{}, 1)
 					}
@@ -412,7 +458,7 @@ func BenchmarkThresholds(b *testing.B) {
 					longSum(p, q, Poly{}, Poly{}, n, 1)
 				}
 			})
-			if terms < 128 {
+			if terms < 24 {
 				continue
 			}
 			b.Run(fmt.Sprintf("width=%d/terms=%d/limbs=%d/transform", width, terms, n*terms), func(b *testing.B) {

@@ -10,9 +10,9 @@ import (
 // x = 2^(64 n), and math/big multiplies these with its assembly kernels and
 // Karatsuba's method.
 func longSum(a, b, c, d Poly, n, sign int) Poly {
-	sum := product(pack(a, n), pack(b, n))
+	sum := packedProduct(a, b, n)
 	if !c.IsZero() {
-		second := product(pack(c, n), pack(d, n))
+		second := packedProduct(c, d, n)
 		if sign < 0 {
 			sum.Sub(sum, second)
 		} else {
@@ -20,6 +20,15 @@ func longSum(a, b, c, d Poly, n, sign int) Poly {
 		}
 	}
 	return unpack(sum, n, max(a.terms()+b.terms(), c.terms()+d.terms())-1)
+}
+
+// packedProduct returns the value of p·q at 2^(64 n).
+func packedProduct(p, q Poly, n int) *big.Int {
+	x := pack(p, n)
+	if p.shares(q) {
+		return product(x, x) // math/big squares
+	}
+	return product(x, pack(q, n))
 }
 
 // pack returns p(2^(64 n)).

@@ -8,7 +8,7 @@ import "math/bits"
 // have faster ways of their own.
 const (
 	kroneckerWord = 640
-	kroneckerRows = 300 // magnitudes of up to maxUnrolled limbs
+	kroneckerRows = 140 // for each limb of magnitudes of up to maxUnrolled
 	kroneckerWide = 64
 	kroneckerLong = 50 // limbs of a result coefficient, however few terms there are
 )
@@ -17,8 +17,8 @@ const (
 // product goes through transforms modulo primes, and up to how many primes: with
 // more of them it is quicker to pack.
 const (
-	transformTerms = 120
-	transformLimbs = 1100
+	transformTerms = 64
+	transformLimbs = 640
 	transformMost  = 100
 )
 
@@ -57,9 +57,9 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 	}
 	w := make([]uint64, terms*n)
 	if words && n == 2 && span <= maxFloatSpan && limbs >= 2*minFloatTerms {
-		addFloatSums(w, a.w, b.w, 1)
+		addFloatSums(w, a, b, 1)
 		if !c.IsZero() {
-			addFloatSums(w, c.w, d.w, sign)
+			addFloatSums(w, c, d, sign)
 		}
 	} else if words {
 		wordSums(w, n, a.w, b.w, c.w, d.w, sign)
@@ -69,13 +69,19 @@ func SumOfProducts(a, b, c, d Poly, sign int) Poly {
 	return trim(w, n)
 }
 
+// shares reports whether p and q are the same value: their product is then a
+// square, which takes half the work.
+func (p Poly) shares(q Poly) bool {
+	return len(p.w) == len(q.w) && len(p.w) > 0 && &p.w[0] == &q.w[0]
+}
+
 // isLong reports whether a product pays for packing.
 func isLong(limbs, n int, words bool, a, b Poly) bool {
 	switch {
 	case words:
 		return limbs >= kroneckerWord
 	case a.span() <= 64*maxUnrolled && b.span() <= 64*maxUnrolled:
-		return limbs >= kroneckerRows
+		return limbs >= kroneckerRows*((max(a.span(), b.span())+63)/64)
 	}
 	return limbs >= kroneckerWide && min(a.terms(), b.terms()) > 4 || n >= kroneckerLong
 }

@@ -19,9 +19,10 @@ const (
 	floatRoom = 48
 )
 
-// addFloatSums adds a·b, or subtracts it for sign < 0, to the two-limb
+// addFloatSums adds p·q, or subtracts it for sign < 0, to the two-limb
 // coefficients w.
-func addFloatSums(w []uint64, a, b []uint64, sign int) {
+func addFloatSums(w []uint64, p, q Poly, sign int) {
+	a, b, square := p.w, q.w, p.shares(q)
 	var storeA, storeB [floatRoom]float64
 	var storeR [floatRoom]uint64
 	fa, fb, rb := storeA[:0], storeB[:0], storeR[:0]
@@ -39,7 +40,20 @@ func addFloatSums(w []uint64, a, b []uint64, sign int) {
 		at := len(b) - 1 - k + from
 		x, fx := a[from:to], fa[from:to]
 		y, fy := rb[at:at+len(x)], fb[at:at+len(x)]
-		lo, high := floatDot(x, y, fx, fy)
+		var lo, high uint64
+		if !square {
+			lo, high = floatDot(x, y, fx, fy)
+		} else {
+			half := len(x) / 2 // the products of different coefficients come twice
+			lo, high = floatDot(x[:half], y[:half], fx[:half], fy[:half])
+			lo, high = lo<<1, high<<1|lo>>63
+			if k%2 == 0 {
+				h, l := bits.Mul64(magnitude(x[half]), magnitude(x[half]))
+				var carry uint64
+				lo, carry = bits.Add64(lo, l, 0)
+				high += h + carry
+			}
+		}
 		c := w[2*k : 2*k+2]
 		var carry uint64
 		if sign < 0 {

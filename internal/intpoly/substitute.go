@@ -38,21 +38,67 @@ func (p Poly) ScaleArgument(num, den *big.Int) Poly {
 	return FromBigs(c...)
 }
 
-// TaylorShift returns p(x + a), by repeated synthetic division.
+// shiftTerms is up to how many terms TaylorShift works by synthetic division.
+const shiftTerms = 64
+
+// TaylorShift returns p(x + a): short ones by repeated synthetic division (Horner
+// 1819), long ones as p₀(x + a) + (x + a)^m·p₁(x + a) with fast products.
 func (p Poly) TaylorShift(a *big.Int) Poly {
+	if a == nil || a.Sign() == 0 {
+		return p
+	}
+	powers := []Poly{FromBigs(a, big.NewInt(1))} // (x + a)^(2^i)
+	for 1<<len(powers) < p.terms() {
+		last := powers[len(powers)-1]
+		powers = append(powers, last.Mul(last))
+	}
+	return p.shift(a, powers)
+}
+
+func (p Poly) shift(a *big.Int, powers []Poly) Poly {
+	if p.terms() <= shiftTerms {
+		return p.shiftShort(a)
+	}
+	i := bits.Len(uint(p.terms()-1)) - 1
+	m := 1 << i
+	return p.slice(0, m).shift(a, powers).Add(powers[i].Mul(p.slice(m, p.terms()).shift(a, powers)))
+}
+
+func (p Poly) shiftShort(a *big.Int) Poly {
+	if a.IsInt64() && (a.Int64() == 1 || a.Int64() == -1) {
+		return p.shiftUnit(uint64(a.Int64() >> 1))
+	}
 	c := p.bigs()
-	unit := a.IsInt64() && a.Int64() == 1
 	var t big.Int
 	for i := range c {
 		for j := len(c) - 2; j >= i; j-- {
-			if unit {
-				c[j].Add(c[j], c[j+1])
-			} else {
-				c[j].Add(c[j], t.Mul(a, c[j+1]))
-			}
+			c[j].Add(c[j], t.Mul(a, c[j+1]))
 		}
 	}
 	return FromBigs(c...)
+}
+
+// shiftUnit returns p(x + 1), or p(x − 1) where mask is all ones: by sums alone,
+// which stay below 2^degree times the largest coefficient.
+func (p Poly) shiftUnit(mask uint64) Poly {
+	if p.IsZero() {
+		return p
+	}
+	terms, n := p.terms(), limbsFor(p.span()+p.Degree())
+	w := make([]uint64, terms*n)
+	for i := range terms {
+		extend(w[i*n:(i+1)*n], p.at(i))
+	}
+	for i := range terms {
+		for j := terms - 2; j >= i; j-- {
+			c, above := w[j*n:(j+1)*n], w[(j+1)*n:(j+2)*n]
+			carry := mask & 1
+			for k, v := range above {
+				c[k], carry = bits.Add64(c[k], v^mask, carry)
+			}
+		}
+	}
+	return trim(w, n)
 }
 
 // AtInt returns p(x).

@@ -1,13 +1,14 @@
 package intpoly
 
 import (
+	"math"
 	"math/bits"
 
 	"github.com/qofs/qofs/internal/modp"
 )
 
 // transformPrimes is how many primes coefficients between −2^span and 2^span
-// need.
+// need: their product is then more than 2^(span+1).
 func transformPrimes(span int) int { return (span+1)/61 + 1 }
 
 // transformSum returns a·b + sign·c·d, with −2^span ≤ coefficients < 2^span, by
@@ -16,28 +17,37 @@ func transformPrimes(span int) int { return (span+1)/61 + 1 }
 func transformSum(a, b, c, d Poly, span, sign int) Poly {
 	terms := max(a.terms()+b.terms(), c.terms()+d.terms()) - 1
 	order := transformOrder(terms, max(a.terms(), b.terms(), c.terms(), d.terms()))
-	product, room := make([]uint64, terms), make([]uint64, 2*order)
-	var second []uint64
-	if !c.IsZero() {
-		second = make([]uint64, terms)
+	transforms := make([]*modp.Transform, transformPrimes(span))
+	for k := range transforms {
+		transforms[k] = modp.NewTransform(k, order)
 	}
-	primes := transformPrimes(span)
-	all := NewImages(primes)
-	for k := range primes {
-		t := modp.NewTransform(k, order)
-		productImage(t, product, room, a, b)
+	r := newRemainders(transforms, limbsFor(span))
+	room := make([]uint64, 3*order+max(0, terms-order))
+	sum := room[2*order:]
+	digits := make([]uint64, terms*len(transforms))
+	for k, t := range transforms {
+		clear(sum)
+		addValues(t, sum, room[:2*order], a, b, 1)
 		if !c.IsZero() {
-			productImage(t, second, room, c, d)
-			for i, x := range second {
-				if sign < 0 {
-					x = t.Neg(x)
-				}
-				product[i] = t.Add(product[i], x)
-			}
+			addValues(t, sum, room[:2*order], c, d, sign)
 		}
-		all.Add(&t.Field, product)
+		t.Backward(sum[:order])
+		t.ScaleBy(sum[:order], r.factors[k])
+		// The terms beyond the order, which have wrapped around, are known.
+		for i := order; i < len(sum); i++ {
+			sum[i] = t.Mul(sum[i], r.factors[k])
+			sum[i-order] = t.Sub(sum[i-order], sum[i])
+		}
+		for i, x := range sum[:terms] {
+			digits[i*len(transforms)+k] = x
+		}
 	}
-	return all.symmetric()
+	n := r.limbs
+	w := make([]uint64, terms*n)
+	for i := range terms {
+		r.join(w[i*n:(i+1)*n], digits[i*len(transforms):(i+1)*len(transforms)])
+	}
+	return trim(w, n)
 }
 
 // transformOrder is the order of the transform for a product: a power of two,
@@ -50,50 +60,121 @@ func transformOrder(terms, longest int) int {
 	return order
 }
 
-// productImage writes the plain residues of a·b to out; room has twice the order
-// of t.
-func productImage(t *modp.Transform, out, room []uint64, a, b Poly) {
+// addValues adds the values of sign·a·b to those in sum, times 2^(−64), and behind
+// them the plain coefficients beyond the order of the transform. The room has twice
+// that order.
+func addValues(t *modp.Transform, sum, room []uint64, a, b Poly, sign int) {
 	order := len(room) / 2
 	x, y := room[:order], room[order:]
 	imageInto(&t.Field, x, a)
-	imageInto(&t.Field, y, b)
-	n := a.terms() + b.terms() - 1
-	clear(out)
-	// The terms beyond the order, which would wrap around: known beforehand, they
-	// are taken off again.
-	for k := order; k < n; k++ {
+	square := a.shares(b)
+	if square {
+		y = x
+	} else {
+		imageInto(&t.Field, y, b)
+	}
+	add := t.Add
+	if sign < 0 {
+		add = t.Sub
+	}
+	for k := order; k < a.terms()+b.terms()-1; k++ {
 		var s uint64
 		for i := max(0, k-b.terms()+1); i < min(k+1, a.terms()); i++ {
 			s = t.Add(s, t.Mul(x[i], y[k-i]))
 		}
-		out[k] = t.Stored(s)
+		sum[k] = add(sum[k], t.Stored(s))
 	}
 	t.Forward(x)
-	if &a.w[0] == &b.w[0] && len(a.w) == len(b.w) {
-		y = x // a square
-	} else {
+	if !square {
 		t.Forward(y)
 	}
-	for i := range x {
-		x[i] = t.Mul(t.Below(x[i]), t.Below(y[i]))
+	for i, v := range x {
+		x[i] = t.Mul(t.Below(v), t.Below(y[i]))
 	}
-	t.Backward(x)
-	t.Scale(x)
-	copy(out[:min(n, order)], x)
-	for k := order; k < n; k++ {
-		out[k-order] = t.Sub(out[k-order], out[k])
+	if sign > 0 {
+		for i, v := range x {
+			sum[i] = t.Add(sum[i], v)
+		}
+		return
+	}
+	for i, v := range x {
+		sum[i] = t.Sub(sum[i], v)
 	}
 }
 
 // imageInto writes the plain residues of the coefficients, and zeros behind.
 func imageInto(f *modp.Field, out []uint64, p Poly) {
 	n := p.terms()
-	f.Images(out[:n], p.w, p.n)
-	if p.n > 1 {
-		grow := f.Grow(f.Stored(1), p.n)
-		for i := range n {
-			out[i] = f.Mul(out[i], grow)
-		}
-	}
+	f.PlainImages(out[:n], p.w, p.n)
 	clear(out[n:])
+}
+
+// remainders puts numbers together that are known modulo each of some primes p_k.
+// With M their product, x = Σ d_k·M/p_k − q·M for the digits
+// d_k = x·(M/p_k)⁻¹ modulo p_k and the integer q next to Σ d_k/p_k.
+type remainders struct {
+	limbs    int
+	cofactor []uint64  // the limbs of M/p_k, the lowest ones, one after the other
+	product  []uint64  // of M
+	factors  []uint64  // (M/p_k)⁻¹ modulo p_k, stored
+	share    []float64 // 1/p_k
+}
+
+// newRemainders is for numbers of so many limbs, of less than a quarter of M.
+func newRemainders(transforms []*modp.Transform, limbs int) *remainders {
+	n := len(transforms)
+	full := make([]uint64, n+1)
+	full[0] = 1
+	for k, t := range transforms {
+		timesWord(full[:k+2], t.P)
+	}
+	r := &remainders{limbs: limbs, cofactor: make([]uint64, n*limbs), product: make([]uint64, limbs),
+		factors: make([]uint64, n), share: make([]float64, n)}
+	copy(r.product, full)
+	quotient := make([]uint64, n+1)
+	for k, t := range transforms {
+		var rem uint64
+		for i := n; i >= 0; i-- {
+			quotient[i], rem = bits.Div64(rem, full[i], t.P)
+		}
+		copy(r.cofactor[k*limbs:(k+1)*limbs], quotient)
+		r.factors[k] = t.Inverse(t.StoredResidue(quotient)) // the top limb is 0
+		r.share[k] = 1 / float64(t.P)
+	}
+	return r
+}
+
+// timesWord multiplies x, which has room for it, by a word.
+func timesWord(x []uint64, v uint64) {
+	var carry uint64
+	for k, u := range x {
+		hi, lo := bits.Mul64(u, v)
+		var c uint64
+		x[k], c = bits.Add64(lo, carry, 0)
+		carry = hi + c
+	}
+}
+
+// join writes the number with the given digits to z, which holds 0.
+func (r *remainders) join(z, digits []uint64) {
+	n := len(z)
+	var multiple float64
+	for k, d := range digits {
+		multiple += float64(d) * r.share[k]
+		addProduct(z, r.cofactor[k*n:(k+1)*n], d)
+	}
+	subtractMultiple(z, r.product, uint64(math.Round(multiple)))
+}
+
+// subtractMultiple subtracts x·d from z, of the same length, modulo 2^(64 n).
+func subtractMultiple(z, x []uint64, d uint64) {
+	var carry uint64
+	for k, u := range x {
+		hi, lo := bits.Mul64(u, d)
+		var c uint64
+		lo, c = bits.Add64(lo, carry, 0)
+		hi += c
+		z[k], c = bits.Sub64(z[k], lo, 0)
+		carry = hi + c
+	}
 }

@@ -101,24 +101,48 @@ func addProducts(w []uint64, n int, a, b Poly, flip uint64) {
 	if la > maxUnrolled || lb > maxUnrolled {
 		product = make([]uint64, la+lb)
 	}
+	square := a.shares(b)
 	for k := range len(x.sign) + len(y.sign) - 1 {
 		c := w[k*n : (k+1)*n]
 		clear(sum)
 		from, to := max(0, k-len(y.sign)+1), min(k, len(x.sign)-1)+1
 		at := len(y.sign) - 1 - k + from
-		xs, ys := x.sign[from:to], y.sign[at:]
-		xw, yw := x.w[from*la:to*la], y.w[at*lb:]
-		switch {
-		case product != nil:
-			addRow(sum, product, xw, yw, xs, ys, la, lb, flip)
-		case la == 2:
-			addRow2((*[5]uint64)(sum), xw, yw, xs, ys, flip)
-		case la == 3:
-			addRow3((*[7]uint64)(sum), xw, yw, xs, ys, flip)
-		default:
-			addRow4((*[9]uint64)(sum), xw, yw, xs, ys, flip)
+		if !square {
+			addRows(sum, product, &x, &y, from, to, at, flip)
+		} else {
+			half := (to - from) / 2 // the products of different coefficients come twice
+			addRows(sum, product, &x, &y, from, from+half, at, flip)
+			double(sum)
+			if k%2 == 0 {
+				addRows(sum, product, &x, &y, from+half, from+half+1, at+half, flip)
+			}
 		}
 		accumulate(c, cut(sum, n), 0)
+	}
+}
+
+// double doubles a number in two's complement that has room for it.
+func double(x []uint64) {
+	var low uint64
+	for k, v := range x {
+		x[k], low = v<<1|low, v>>63
+	}
+}
+
+// addRows adds to sum the products of the coefficients from … to − 1 of x and those
+// of y from at on.
+func addRows(sum, product []uint64, x, y *magnitudes, from, to, at int, flip uint64) {
+	xs, ys := x.sign[from:to], y.sign[at:]
+	xw, yw := x.w[from*x.n:to*x.n], y.w[at*y.n:]
+	switch {
+	case product != nil:
+		addRow(sum, product, xw, yw, xs, ys, x.n, y.n, flip)
+	case x.n == 2:
+		addRow2((*[5]uint64)(sum), xw, yw, xs, ys, flip)
+	case x.n == 3:
+		addRow3((*[7]uint64)(sum), xw, yw, xs, ys, flip)
+	default:
+		addRow4((*[9]uint64)(sum), xw, yw, xs, ys, flip)
 	}
 }
 

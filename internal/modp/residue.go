@@ -38,6 +38,50 @@ func (f *Field) manyImages(out, w []uint64, n int, scale uint64) {
 	}
 }
 
+// PlainImages writes the residues of numbers in two's complement, n limbs each.
+func (f *Field) PlainImages(out, w []uint64, n int) {
+	if n == 1 {
+		f.Images(out, w, 1)
+		return
+	}
+	// The products of the limbs by weights, the stored powers of 2^64, are below
+	// 2^64·P: four of them fit 128 bits, and so do two more beside 2^64·2P.
+	var store [16]uint64
+	weights := store[:]
+	if n+1 > len(weights) {
+		weights = make([]uint64, n+1)
+	}
+	weights = weights[:n+1]
+	f.Weights(weights)
+	negative := f.Plain(weights[n]) // 2^(64 n), which a sign bit takes off
+	weights = weights[:n]
+	p2 := 2 * f.P
+	for i := range out {
+		c := w[i*n : i*n+n]
+		var hi, lo, carry uint64
+		for k, x := range c {
+			h, l := bits.Mul64(x, weights[k])
+			if k&1 == 0 && k >= 4 && hi >= p2 {
+				hi -= p2
+			}
+			lo, carry = bits.Add64(lo, l, 0)
+			hi += h + carry
+		}
+		if hi >= p2 {
+			hi -= p2
+		}
+		h, _ := bits.Mul64(lo*f.inverse, f.P)
+		if lo != 0 {
+			h++
+		}
+		r := f.Below(hi + h)
+		if int64(c[n-1]) < 0 {
+			r = f.Sub(r, negative)
+		}
+		out[i] = r
+	}
+}
+
 // Weights writes what Remainder needs for numbers of up to len(out) limbs.
 func (f *Field) Weights(out []uint64) {
 	square := f.Stored(f.one) // 2^128

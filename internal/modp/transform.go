@@ -1,6 +1,9 @@
 package modp
 
-import "math/bits"
+import (
+	"math/bits"
+	"sync"
+)
 
 // friendly are the k for which (2^30 − k)·2^32 + 1 is prime, the smallest first:
 // modulo these there are roots of unity of all orders 2^j up to 2^32.
@@ -14,6 +17,7 @@ const MaxTransforms = len(friendly)
 type Transform struct {
 	Field
 	root, back []shoup // powers of a root, and their inverses, in bit-reversed order
+	inverse    uint64  // stored 1/n
 	scale      shoup   // 2^64/n
 }
 
@@ -32,12 +36,43 @@ func (s shoup) times(x, p uint64) uint64 {
 	return x*s.w - q*p
 }
 
+// common is up to which order the powers are kept once they are known: in
+// bit-reversed order those of a lower order come first.
+const common = 512
+
+// kept holds for each prime what powers returns for the order common; see roots.
+var kept [MaxTransforms]func() [2][]shoup
+
+func init() {
+	for index := range kept {
+		kept[index] = sync.OnceValue(func() [2][]shoup {
+			f := newField(friendlyPrime(index))
+			return f.rootPowers(common)
+		})
+	}
+}
+
+func friendlyPrime(index int) uint64 { return (1<<30-uint64(friendly[index]))<<32 + 1 }
+
 // NewTransform returns the transform of order n, a power of two up to 2^32,
 // modulo the prime of an index below MaxTransforms.
 func NewTransform(index, n int) *Transform {
-	p := (1<<30-uint64(friendly[index]))<<32 + 1
-	t := &Transform{Field: newField(p)}
-	f := &t.Field
+	t := &Transform{Field: newField(friendlyPrime(index))}
+	var powers [2][]shoup
+	if n <= common {
+		powers = kept[index]()
+	} else {
+		powers = t.rootPowers(n)
+	}
+	t.root, t.back = powers[0], powers[1]
+	t.inverse = t.Stored(t.P - (t.P-1)/uint64(n)) // n·(P − 1)/n = −1
+	t.scale = t.shoup(t.Stored(t.Plain(t.inverse)))
+	return t
+}
+
+// rootPowers returns the powers of a root of unity of order n and of its inverse.
+func (f *Field) rootPowers(n int) [2][]shoup {
+	p := f.P
 	one := f.Stored(1)
 	root := f.Stored(2)
 	for x := uint64(2); f.powerWord(root, (p-1)/2) == one; x++ { // not yet a non-residue
@@ -47,9 +82,7 @@ func NewTransform(index, n int) *Transform {
 	for order := uint64(1) << 32; order > uint64(max(n, 2)); order /= 2 {
 		root = f.Mul(root, root)
 	}
-	t.root, t.back = f.powers(root, n), f.powers(f.Inverse(root), n)
-	t.scale = f.shoup(f.Inverse(f.Stored(uint64(n))))
-	return t
+	return [2][]shoup{f.powers(root, n), f.powers(f.Inverse(root), n)}
 }
 
 // powers returns the powers root^(bit-reversed i) for i < n/2.
@@ -143,8 +176,15 @@ func (f *Field) Below(x uint64) uint64 {
 
 // Scale turns the result of Backward into the coefficients, below P, of a
 // product whose values Mul has multiplied.
-func (t *Transform) Scale(a []uint64) {
+func (t *Transform) Scale(a []uint64) { t.scaleBy(a, t.scale) }
+
+// ScaleBy is Scale with a further factor, a stored number.
+func (t *Transform) ScaleBy(a []uint64, factor uint64) {
+	t.scaleBy(a, t.shoup(t.Stored(t.Plain(t.Mul(t.inverse, factor)))))
+}
+
+func (t *Transform) scaleBy(a []uint64, s shoup) {
 	for i, x := range a {
-		a[i] = t.Below(t.scale.times(x, t.P))
+		a[i] = t.Below(s.times(x, t.P))
 	}
 }
