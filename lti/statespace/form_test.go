@@ -213,8 +213,22 @@ func TestFullMatrices(t *testing.T) {
 	if err != nil || len(minimal.States()) != 9 || hidden.Uncontrollable.Degree() != 3 {
 		t.Errorf("%d states, hidden %v, %v", len(minimal.States()), hidden.Uncontrollable, err)
 	}
-	if _, err := full(100, 40).ControllabilityRank(); !errors.Is(err, ErrLimit) {
-		t.Errorf("100 states, 40 of them not reached: %v", err)
+	if k := tf.Must(full(100, 40).ControllabilityRank()); k != 60 {
+		t.Errorf("rank %d of 100 states, 40 of them not reached", k)
+	}
+	// 128 inputs that move 256 states at random, with no feedback among them: the
+	// fractions of the reached space have a thousand digits.
+	r := rand.New(rand.NewPCG(19, 20))
+	wide := random(r, 256, 128, 0)
+	m := Matrices{Input: wide.Matrices().Input}
+	for _, row := range m.Input {
+		for _, v := range row {
+			v.SetInt64(r.Int64N(2e9) - 1e9)
+		}
+	}
+	wide = tf.Must(New(wide.states, wide.inputs, nil, m))
+	if _, err := wide.ControllabilityRank(); !errors.Is(err, ErrLimit) {
+		t.Errorf("256 states: %v", err)
 	}
 }
 

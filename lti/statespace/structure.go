@@ -8,110 +8,28 @@ import (
 	"github.com/qofs/qofs/units"
 )
 
-// maxProducts bounds the search for a subspace, in products of words.
-const maxProducts = 1 << 30
-
-// subspace is spanned by rows in reduced echelon form: in the column pivots[k]
-// row k has 1 and the others have 0. The rows are in no particular order.
+// subspace is spanned by rows in reduced echelon form: row k begins with a 1 in the
+// column pivots[k], where the others have 0. It is closed under a matrix: rows ·
+// matrix = action · rows.
 type subspace struct {
 	rows   matrix
 	pivots []int
-	spent  int // products of words, roughly
-}
-
-// add takes in a row and returns what was new in it, nil if nothing was.
-func (s *subspace) add(row []*big.Rat) ([]*big.Rat, error) {
-	r := make([]*big.Rat, len(row))
-	for j, v := range row {
-		r[j] = new(big.Rat).Set(v)
-	}
-	for k, p := range s.pivots {
-		if err := s.subtract(r, s.rows[k], new(big.Rat).Set(r[p])); err != nil {
-			return nil, err
-		}
-	}
-	pivot := slices.IndexFunc(r, func(v *big.Rat) bool { return v.Sign() != 0 })
-	if pivot < 0 {
-		return nil, nil
-	}
-	inverse := new(big.Rat).Inv(r[pivot])
-	for _, v := range r {
-		v.Mul(v, inverse)
-	}
-	for _, other := range s.rows {
-		if err := s.subtract(other, r, new(big.Rat).Set(other[pivot])); err != nil {
-			return nil, err
-		}
-	}
-	s.rows, s.pivots = append(s.rows, r), append(s.pivots, pivot)
-	return r, nil
-}
-
-// subtract takes k·t off r and counts the work: a step with fractions of w words
-// takes some products and greatest common divisors of w² each.
-func (s *subspace) subtract(r, t []*big.Rat, k *big.Rat) error {
-	if k.Sign() == 0 {
-		return nil
-	}
-	for j, v := range t {
-		if v.Sign() == 0 {
-			continue
-		}
-		w := (k.Num().BitLen() + k.Denom().BitLen() + v.Num().BitLen() + v.Denom().BitLen() + r[j].Num().BitLen() + r[j].Denom().BitLen()) / 64
-		if s.spent += 16 + 8*w*w; s.spent > maxProducts {
-			return ErrLimit
-		}
-		r[j].Sub(r[j], new(big.Rat).Mul(k, v))
-	}
-	return nil
-}
-
-// sort puts the rows into the order of their pivots.
-func (s *subspace) sort() {
-	order := make([]int, len(s.pivots))
-	for k := range order {
-		order[k] = k
-	}
-	slices.SortFunc(order, func(k, l int) int { return s.pivots[k] - s.pivots[l] })
-	s.rows = s.rows.rows(order)
-	slices.Sort(s.pivots)
-}
-
-// closure returns the smallest subspace that holds the generators and, with each
-// row r, r·m.
-func closure(generators, m matrix) (*subspace, error) {
-	if fullRank(generators, m) {
-		return wholeSpace(len(m)), nil
-	}
-	s := &subspace{}
-	queue := slices.Clone(generators)
-	for len(queue) > 0 {
-		row := queue[0]
-		queue = queue[1:]
-		fresh, err := s.add(row)
-		if err != nil {
-			return nil, err
-		}
-		if fresh != nil && len(s.rows) < len(m) {
-			queue = append(queue, matrix{fresh}.times(m, len(m))[0])
-		}
-	}
-	s.sort()
-	return s, nil
+	action matrix
 }
 
 func (c model) controllable() (*subspace, error) {
-	return closure(c.input.transpose(len(c.inputs)), c.state.transpose(len(c.states)))
+	return new(work).closure(c.input.transpose(len(c.inputs)), c.state.transpose(len(c.states)))
 }
 
-func (c model) observable() (*subspace, error) { return closure(c.output, c.state) }
+func (c model) observable() (*subspace, error) { return new(work).closure(c.output, c.state) }
 
 // ControllabilityRank returns the dimension of the space of states that the
 // inputs can reach from 0 (Kalman 1960): the number of states where the model is
-// controllable. The rank is exact: full rank is proved modulo a prime, and less
-// than that is found with fractions. The error is ErrLimit where that takes more
-// than 2^30 products of words: with some 25 states and full matrices of nine
-// digits.
+// controllable. The rank is exact: a full one is proved modulo a prime, and less
+// than that by a subspace that is found modulo primes and checked with its
+// fractions. The error is ErrLimit where that takes more than 2^30 products of
+// words: full matrices of nine digits stay far below it up to MaxSignals states, unless
+// the subspace that is reached has fractions of hundreds of digits.
 func (c model) ControllabilityRank() (int, error) {
 	s, err := c.controllable()
 	if err != nil {
@@ -159,10 +77,11 @@ func (c model) minimal() (reduced model, hidden HiddenModes, err error) {
 	if err != nil {
 		return model{}, hidden, err
 	}
-	reduced = part
-	if len(seen.rows) < len(part.states) {
-		reduced = part.project(seen)
+	hidden.Unobservable = poly.FromInts(1)
+	if len(seen.rows) == len(part.states) {
+		return part, hidden, nil
 	}
+	reduced = part.project(seen)
 	all, err := part.CharacteristicPolynomial()
 	if err != nil {
 		return model{}, hidden, err
@@ -182,7 +101,7 @@ func (c model) split(s *subspace) (part, rest model) {
 	v := s.rows.transpose(len(c.states)) // x = v·z
 	others := others(len(c.states), s.pivots)
 	part = model{states: at(c.states, s.pivots), inputs: c.inputs, outputs: c.outputs,
-		state: c.state.rows(s.pivots).times(v, len(s.pivots)), input: c.input.rows(s.pivots),
+		state: s.action.transpose(len(s.pivots)), input: c.input.rows(s.pivots),
 		output: c.output.times(v, len(s.pivots)), feedthrough: c.feedthrough}
 	// w = x[others] − v[others]·x[pivots] follows its own equation.
 	rest = model{states: at(c.states, others), input: zeros(len(others), 0),
@@ -195,7 +114,7 @@ func (c model) split(s *subspace) (part, rest model) {
 func (c model) project(s *subspace) model {
 	w := s.rows
 	out := model{inputs: c.inputs, outputs: c.outputs, feedthrough: c.feedthrough,
-		state: w.times(c.state, len(c.states)).columns(s.pivots), input: w.times(c.input, len(c.inputs)), output: c.output.columns(s.pivots)}
+		state: s.action, input: w.times(c.input, len(c.inputs)), output: c.output.columns(s.pivots)}
 	taken := map[string]bool{}
 	for _, p := range s.pivots {
 		taken[c.states[p].Name] = true
