@@ -108,6 +108,14 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 	return Poly(ratpoly.New(a.MulInt(q.rational().Denominator()), den)), Poly(ratpoly.New(r, den)), nil
 }
 
+// monic divides a primitive polynomial, or 0, by its leading coefficient.
+func monic(p intpoly.Poly) Poly {
+	if p.IsZero() {
+		return Poly{}
+	}
+	return Poly(ratpoly.Monic(p))
+}
+
 // GCD returns the monic greatest common divisor of p and q; the polynomial 0
 // when both are 0. The error is ErrLimit for operands whose modular images could
 // take more than 2^34 multiplications of words: beyond degree 16 with 480,000
@@ -119,11 +127,7 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 	if p.integer().GCDWork(q.integer()) > intpoly.MaxGCDWork {
 		return Poly{}, ErrLimit
 	}
-	g := fromInteger(p.integer().GCD(q.integer()))
-	if g.Degree() == 0 { // 1, as most are
-		return g, nil
-	}
-	return g.Monic(), nil
+	return monic(p.integer().GCD(q.integer())), nil
 }
 
 // ExtendedGCD returns the monic greatest common divisor g and polynomials u, v
@@ -159,7 +163,7 @@ func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 		s, t, r, _ = a.Cofactors(b)
 	}
 	r.Mul(r, h.Leading())
-	return fromInteger(h).Monic(), Poly(ratpoly.New(s.MulInt(p.rational().Denominator()), r)),
+	return monic(h), Poly(ratpoly.New(s.MulInt(p.rational().Denominator()), r)),
 		Poly(ratpoly.New(t.MulInt(q.rational().Denominator()), r)), nil
 }
 
@@ -202,7 +206,7 @@ func (p Poly) SquareFree() ([]Factor, error) {
 	found := p.integer().SquareFree()
 	out := make([]Factor, len(found))
 	for i, f := range found {
-		out[i] = Factor{Poly: fromInteger(f.Poly).Monic(), Multiplicity: f.Multiplicity}
+		out[i] = Factor{Poly: monic(f.Poly), Multiplicity: f.Multiplicity}
 	}
 	return out, nil
 }

@@ -73,17 +73,23 @@ func (f *Field) Sub(x, y uint64) uint64 {
 // Neg returns −x.
 func (f *Field) Neg(x uint64) uint64 { return f.Sub(0, x) }
 
-// Inverse returns the stored inverse of a stored number that is not 0, by
-// Fermat's little theorem.
+// Inverse returns the stored inverse of a stored number that is not 0, by Euclid's
+// algorithm.
 func (f *Field) Inverse(x uint64) uint64 {
-	r := f.one
-	for i := 61; i >= 0; i-- {
-		r = f.Mul(r, r)
-		if (f.P-2)>>uint(i)&1 == 1 {
-			r = f.Mul(r, x)
-		}
+	// Always t·x is b, or −b where negative holds, modulo P.
+	a, b := f.P, x
+	s, t := uint64(0), uint64(1)
+	negative := false
+	for b > 1 {
+		q := a / b
+		a, b = b, a-q*b
+		s, t = t, s+q*t
+		negative = !negative
 	}
-	return r
+	if negative {
+		t = f.P - t
+	}
+	return f.Stored(f.Stored(t))
 }
 
 // Stored returns the stored form of a plain number below P.

@@ -124,6 +124,16 @@ func FromRats(ascending ...*big.Rat) Poly {
 	return p
 }
 
+// Monic returns p divided by its leading coefficient, for a primitive p with a
+// positive one.
+func Monic(p intpoly.Poly) Poly {
+	lead := p.Leading()
+	if lead.IsInt64() && lead.Int64() == 1 {
+		return Poly{num: p}
+	}
+	return Poly{num: p, den: lead}
+}
+
 // FromInteger returns p as a rational polynomial.
 func FromInteger(p intpoly.Poly) Poly { return Poly{num: p} }
 
