@@ -30,7 +30,7 @@ func (p Poly) Pow(n int) (Poly, error) {
 		return Poly{}, ErrLimit
 	}
 	e := big.NewInt(int64(n))
-	return Poly(ratpoly.New(p.integer().Pow(n), new(big.Int).Exp(p.rational().Denominator(), e, nil))), nil
+	return checked(ratpoly.New(p.integer().Pow(n), new(big.Int).Exp(p.rational().Denominator(), e, nil)))
 }
 
 // Compose returns p(q(x)). The error is ErrLimit where the result could pass
@@ -51,6 +51,12 @@ func (p Poly) Compose(q Poly) (Poly, error) {
 		powers = append(powers, powers[k-1].Mul(powers[k-1]))
 	}
 	out := p.compose(powers, 0, m+1)
+	return out, out.Err()
+}
+
+// checked returns p and its Err.
+func checked(p ratpoly.Poly) (Poly, error) {
+	out := Poly(p.Checked())
 	return out, out.Err()
 }
 
@@ -83,7 +89,7 @@ func (p Poly) compose(powers []Poly, from, to int) Poly {
 // QuoRem returns the quotient and the remainder of p over q: p = quo·q + rem
 // with a degree of rem below that of q. The errors are ErrDivisionByZero for
 // q = 0, and ErrLimit where the remainder could pass MaxBits per coefficient
-// (bits of q times the difference k of the degrees) or where deg p·k² times the
+// (bits of q times the difference k of the degrees), or be longer than a Poly may be, or where deg p·k² times the
 // bits of q passes 2^37: beyond degree 2500
 // over 1250 with 32-bit coefficients.
 func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
@@ -105,7 +111,13 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 	a, r, k := p.integer().PseudoQuoRem(q.integer())
 	den := new(big.Int).Exp(q.integer().Leading(), big.NewInt(int64(k)), nil)
 	den.Mul(den, p.rational().Denominator())
-	return Poly(ratpoly.New(a.MulInt(q.rational().Denominator()), den)), Poly(ratpoly.New(r, den)), nil
+	if quo, err = checked(ratpoly.New(a.MulInt(q.rational().Denominator()), den)); err != nil {
+		return Poly{}, Poly{}, err
+	}
+	if rem, err = checked(ratpoly.New(r, den)); err != nil {
+		return Poly{}, Poly{}, err
+	}
+	return quo, rem, nil
 }
 
 // monic divides a primitive polynomial, or 0, by its leading coefficient.
@@ -134,8 +146,8 @@ func (p Poly) GCD(q Poly) (Poly, error) {
 // with u·p + v·q = g, deg u < deg q/g and deg v < deg p/g where these are
 // positive; a constant multiple of one of them where the other is the gcd. The
 // error is ErrLimit for operands whose cofactors, which are as long as the
-// resultant, would take more than 11·2^28 multiplications of words: beyond degree
-// 350 with 32-bit coefficients.
+// resultant, would take more than 11·2^28 multiplications of words or would be
+// longer than a Poly may be: beyond degree 350 with 32-bit coefficients.
 func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 	if err := errorOf(p, q); err != nil {
 		return Poly{}, Poly{}, Poly{}, err
@@ -163,8 +175,13 @@ func (p Poly) ExtendedGCD(q Poly) (g, u, v Poly, err error) {
 		s, t, r, _ = a.Cofactors(b)
 	}
 	r.Mul(r, h.Leading())
-	return monic(h), Poly(ratpoly.New(s.MulInt(p.rational().Denominator()), r)),
-		Poly(ratpoly.New(t.MulInt(q.rational().Denominator()), r)), nil
+	if u, err = checked(ratpoly.New(s.MulInt(p.rational().Denominator()), r)); err != nil {
+		return Poly{}, Poly{}, Poly{}, err
+	}
+	if v, err = checked(ratpoly.New(t.MulInt(q.rational().Denominator()), r)); err != nil {
+		return Poly{}, Poly{}, Poly{}, err
+	}
+	return monic(h), u, v, nil
 }
 
 // Resultant returns the resultant of p and q, which is 0 when they have a

@@ -72,3 +72,13 @@ func TestEquivalentOfUnequalShapes(t *testing.T) {
 		t.Error("1 is not real on the axis")
 	}
 }
+
+// A fraction of polynomials that are too long is written as such.
+func TestTextOfTooLong(t *testing.T) {
+	long := manyTerms(100001).Mul(poly.FromRats(longRat(1<<18), longRat(1<<18)))
+	for _, f := range []RationalFraction{{Numerator: long, Factor: poly.FromInts(1, 1), Power: 1}, {Numerator: poly.FromInts(1), Factor: long, Power: 2}} {
+		if text := f.Text("s"); !strings.Contains(text, "(too long)") {
+			t.Errorf("%.60q", text)
+		}
+	}
+}

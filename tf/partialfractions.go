@@ -195,8 +195,12 @@ func (e *expansion) overRationals(f factor) ([]RationalFraction, error) {
 		// q^k = lead^k·monic^k
 		scale.SetFrac(big.NewInt(1), new(big.Int).Exp(f.q.Leading(), big.NewInt(int64(k)), nil))
 		if !digit.IsZero() {
+			numerator := poly.Poly(ratpoly.New(digit, den).Scale(scale).Checked())
+			if err := numerator.Err(); err != nil {
+				return nil, fmt.Errorf("tf: fractions of a factor of degree %d: %w", f.q.Degree(), err)
+			}
 			out = append(out, RationalFraction{
-				Numerator: poly.Poly(ratpoly.New(digit, den).Scale(scale)),
+				Numerator: numerator,
 				Factor:    poly.Poly(monic),
 				Power:     k,
 			})

@@ -75,21 +75,28 @@ func (s *signedSum) String() string {
 // common denominator of the numerator moves below.
 func (f RationalFraction) Text(variable string) string {
 	factor, numerator := f.Factor, f.Numerator
+	if factor.Err() != nil || numerator.Err() != nil {
+		return grouped(numerator.Text(variable)) + "/" + grouped(factor.Text(variable))
+	}
+	// The text may be longer than a polynomial of its own could be.
+	scale := func(p poly.Poly, k *big.Int) poly.Poly {
+		return poly.Poly(ratpoly.Poly(p).Scale(new(big.Rat).SetInt(k)))
+	}
 	if !isFinite(coefficientsOf(factor)) {
-		lead := new(big.Rat).SetInt(ratpoly.Poly(factor).Denominator())
-		factor = factor.Scale(lead)
+		lead := ratpoly.Poly(factor).Denominator()
+		factor = scale(factor, lead)
 		for range f.Power {
-			numerator = numerator.Scale(lead)
+			numerator = scale(numerator, lead)
 		}
 	}
 	divisor := big.NewInt(1)
 	if !isFinite(coefficientsOf(numerator)) {
 		divisor = ratpoly.Poly(numerator).Denominator()
-		numerator = numerator.Scale(new(big.Rat).SetInt(divisor))
+		numerator = scale(numerator, divisor)
 	}
 	sign := ""
-	if numerator.Coefficient(numerator.Degree()).Sign() < 0 {
-		sign, numerator = "-", numerator.Scale(big.NewRat(-1, 1))
+	if ratpoly.Poly(numerator).Integer().Sign(numerator.Degree()) < 0 {
+		sign, numerator = "-", numerator.Neg()
 	}
 	return sign + grouped(numerator.Text(variable)) + "/" + below(factor, f.Power, divisor, variable)
 }

@@ -41,6 +41,14 @@ func Fits(terms, bits, denominator int) bool {
 	return bits <= MaxBits && denominator <= MaxBits && float64(terms)*float64(bits/64+1) <= MaxWords
 }
 
+// Checked returns p, or TooLong where it is.
+func (p Poly) Checked() Poly {
+	if p.tooLong || !Fits(p.num.Degree()+1, p.num.Span(), p.DenominatorBits()) {
+		return TooLong
+	}
+	return p
+}
+
 // Small reports whether p and q are so small polynomials with integer
 // coefficients that their sum and their product fit: nearly all are.
 func Small(p, q *Poly) bool {

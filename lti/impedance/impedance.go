@@ -42,12 +42,15 @@ var (
 	ErrDivisionByZero = fault.ErrDivisionByZero
 )
 
-// MaxElements bounds the elements of a network. Its order plus one, times the
-// bits of all its values in coherent units, must not pass 2^27 either, which
+// MaxElements bounds the elements of a network. The bits of all its values in
+// coherent units must not pass 2^18 either, nor 2^26 when multiplied by its order plus one, which
 // bounds the memory that a result takes.
 const MaxElements = 2048
 
-const maxWork = 1 << 27
+const (
+	maxBits = 1 << 18
+	maxWork = 1 << 26
+)
 
 // Domain is a domain of physics. The zero value is none: that of a one-port
 // with the impedance 0.
@@ -148,9 +151,9 @@ func (s size) check() error {
 	if s.elements > MaxElements {
 		return fmt.Errorf("impedance: %d elements, want at most %d: %w", s.elements, MaxElements, ErrLimit)
 	}
-	if int64(s.order+1)*int64(s.bits) > maxWork {
-		return fmt.Errorf("impedance: a network of order %d with values of %d bits in all, want (order + 1)*bits of at most %d: %w",
-			s.order, s.bits, maxWork, ErrLimit)
+	if s.bits > maxBits || int64(s.order+1)*int64(s.bits) > maxWork {
+		return fmt.Errorf("impedance: a network of order %d with values of %d bits in all, want at most %d bits and (order + 1)*bits of at most %d: %w",
+			s.order, s.bits, maxBits, maxWork, ErrLimit)
 	}
 	return nil
 }

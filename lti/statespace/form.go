@@ -26,9 +26,14 @@ func newRatio(num, den poly.Poly, in, out units.Signal, perStep units.Unit) (*ra
 	lead := den.Coefficient(n)
 	lead.Inv(lead)
 	num, den = num.Scale(lead), den.Scale(lead)
+	for _, p := range []poly.Poly{num, den} {
+		if err := p.Err(); err != nil {
+			return nil, err
+		}
+	}
 	r := &ratio{den: den, feedthrough: num.Coefficient(n), in: in, out: out, perStep: perStep}
 	r.num = num.Sub(den.Scale(r.feedthrough))
-	return r, nil
+	return r, r.num.Err()
 }
 
 func continuousRatio(g tf.Continuous) (*ratio, error) {
@@ -144,6 +149,9 @@ type blocks struct {
 
 // add appends the companion form of num/den, den monic.
 func (b *blocks) add(r *ratio, num, den poly.Poly, name string) error {
+	if err := num.Err(); err != nil {
+		return err
+	}
 	n, from := den.Degree(), len(b.states)
 	if from+n > MaxSignals {
 		return tooMany("state", from+n)
