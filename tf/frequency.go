@@ -35,7 +35,7 @@ type frequencyFunction struct {
 
 	isReal, isImaginary bool // of the rational part, for all ω
 
-	delayShape func() delayShape           // see GroupDelay; computed once
+	delayShape func() (*delayShape, error) // see GroupDelay; computed once
 	angles     func() (*rootAngles, error) // see Phase; computed once
 }
 
@@ -58,7 +58,7 @@ func (g Continuous) FrequencyFunction() FrequencyFunction {
 	e2, o2 := g.c.f.Den().EvenOdd()
 	f.isReal = intpoly.EqualProducts(o, e2, e, o2)
 	f.isImaginary = intpoly.EqualProducts(e, e2, o.MulPower(1), o2)
-	f.delayShape = sync.OnceValue(f.newDelayShape)
+	f.delayShape = sync.OnceValues(f.newDelayShape)
 	f.angles = sync.OnceValues(f.newRootAngles)
 	return FrequencyFunction{p: f}
 }

@@ -139,9 +139,12 @@ type delayShape struct{ num, numSlope, den, denSlope intpoly.Poly }
 // across the imaginary axis is among the roots of that factor, so that its
 // value on the axis is real or imaginary, and its phase is constant but for
 // jumps.
-func (f *frequencyFunction) newDelayShape() delayShape {
+func (f *frequencyFunction) newDelayShape() (*delayShape, error) {
 	if f.c.f.IsZero() {
-		return delayShape{num: intpoly.FromInt64s(1), den: intpoly.FromInt64s(1)}
+		return &delayShape{num: intpoly.FromInt64s(1), den: intpoly.FromInt64s(1)}, nil
+	}
+	if f.c.f.Num().GCDWork(f.c.f.Num()) > intpoly.MaxGCDWork || f.c.f.Den().GCDWork(f.c.f.Den()) > intpoly.MaxGCDWork {
+		return nil, fmt.Errorf("tf: GroupDelay: a greatest common divisor: %w", fault.ErrLimit)
 	}
 	reduce := func(p intpoly.Poly) intpoly.Poly {
 		symmetric := p.GCD(p.ScaleArgument(big.NewInt(-1), big.NewInt(1)))
@@ -153,20 +156,24 @@ func (f *frequencyFunction) newDelayShape() delayShape {
 		return q
 	}
 	num, den := reduce(f.c.f.Num()), reduce(f.c.f.Den())
-	return delayShape{num, num.Derivative(), den, den.Derivative()}
+	return &delayShape{num, num.Derivative(), den, den.Derivative()}, nil
 }
 
 // GroupDelay returns −dφ/dω for the phase φ of g(jω), in seconds, dead time
 // included: the true value, which is rational, correctly rounded. Jumps of the
 // phase at zeros and poles on the axis do not count, so that it has a value at
 // each of them too; for g = 0 it is the dead time. The errors are ErrNotFinite
-// for an infinite or NaN ω, ErrRange, and ErrLimit as for Continuous.At.
+// for an infinite or NaN ω, ErrRange, and ErrLimit as for Continuous.At
+// and LowestTerms.
 func (f FrequencyFunction) GroupDelay(omega float64) (float64, error) {
 	if math.IsNaN(omega - omega) {
 		return 0, fmt.Errorf("tf: GroupDelay at the frequency %v: %w", omega, fault.ErrNotFinite)
 	}
 	d := f.data()
-	shape := d.delayShape()
+	shape, err := d.delayShape()
+	if err != nil {
+		return 0, err
+	}
 	s := dyadicPoint(0, omega)
 	if n := max(shape.num.Degree(), shape.den.Degree()); n*max(s.im.BitLen(), int(s.shift)) > maxPointBits {
 		return 0, fmt.Errorf("tf: GroupDelay at the frequency %v: %w", omega, fault.ErrLimit)

@@ -37,32 +37,38 @@ func limbsOf(v *big.Int) []uint64 {
 }
 
 // multiplyLimbs returns a·b, unsigned, where a is not the longer one. b is cut into
-// pieces for which the transform of a is used again.
+// pieces for which the transform of a is used again. One prime goes after the
+// other, so that the roots of unity of one only are in memory.
 func multiplyLimbs(a, b []uint64) []uint64 {
 	out := make([]uint64, len(a)+len(b)+3)
 	order := 1 << bits.Len(uint(min(len(a)+len(b), 4*len(a))-1))
 	piece := order - len(a) + 1
-	var t [3]*modp.Transform
-	var once, part [3][]uint64
-	for k := range t {
-		t[k] = modp.NewTransform(k, order)
-		once[k], part[k] = make([]uint64, order), make([]uint64, order)
-		load4(t[k], once[k], a)
-		t[k].Forward(once[k])
-	}
-	join := newThree(&t[0].Field, &t[1].Field, &t[2].Field)
-	for from := 0; from < len(b); from += piece {
-		c := b[from:min(from+piece, len(b))]
-		for k := range t {
-			load4(t[k], part[k], c)
-			t[k].Forward(part[k])
-			for i, v := range part[k] {
-				part[k][i] = t[k].Mul(t[k].Below(v), t[k].Below(once[k][i]))
+	pieces := (len(b) + piece - 1) / piece
+	var fields [3]*modp.Field
+	var residues [3][]uint64
+	once := make([]uint64, order)
+	for k := range residues {
+		t := modp.NewTransform(k, order)
+		fields[k], residues[k] = &modp.Field{}, make([]uint64, pieces*order)
+		*fields[k] = t.Field
+		load4(t, once, a)
+		t.Forward(once)
+		for i := range pieces {
+			part := residues[k][i*order : (i+1)*order]
+			load4(t, part, b[i*piece:min((i+1)*piece, len(b))])
+			t.Forward(part)
+			for i, v := range part {
+				part[i] = t.Mul(t.Below(v), t.Below(once[i]))
 			}
-			t[k].Backward(part[k])
-			t[k].Scale(part[k])
+			t.Backward(part)
+			t.Scale(part)
 		}
-		join.addTo(out[from:], part[0], part[1], part[2], len(a)+len(c)-1)
+	}
+	join := newThree(fields[0], fields[1], fields[2])
+	for i := range pieces {
+		n := len(a) + min(piece, len(b)-i*piece) - 1
+		from := i * order
+		join.addTo(out[i*piece:], residues[0][from:], residues[1][from:], residues[2][from:], n)
 	}
 	return out[:len(a)+len(b)]
 }
