@@ -122,8 +122,8 @@ func (p Poly) QuoRem(q Poly) (quo, rem Poly, err error) {
 
 // monic divides a primitive polynomial, or 0, by its leading coefficient.
 func monic(p intpoly.Poly) Poly {
-	if p.IsZero() {
-		return Poly{}
+	if p.Degree() < 1 { // 0, or 1 as most are
+		return fromInteger(p)
 	}
 	return Poly(ratpoly.Monic(p))
 }
