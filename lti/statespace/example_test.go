@@ -32,6 +32,24 @@ func ExampleNew() {
 	// 21/(2.8e7 s + 18750) [opening: mm -> level: m]
 }
 
+// The gate and the pool of a canal in one model: each state is the derivative of
+// the one before it, and the derivative of the last one is in the unit of the
+// input, so that the states are in that unit times powers of the second.
+func ExampleControllableForm() {
+	g := tf.MustParse("(0.002 s + 0.001)/(1500 s^2 + 151 s + 0.1) [command: mm -> level: m]")
+	canal := tf.Must(statespace.ControllableForm(g, "canal"))
+	for _, state := range canal.States() {
+		fmt.Println(state)
+	}
+	fmt.Printf("%.4g\n", canal)
+	// Output:
+	// canal_1: mm*s^2
+	// canal_2: mm*s
+	// canal_1' = canal_2 [mm*s]
+	// canal_2' = -0.00006667 canal_1 - 0.1007 canal_2 + command [mm]
+	// level = 6.667e-7 canal_1 + 1.333e-6 canal_2 [m]
+}
+
 // Matrices from measurements and tables are decimals that a float64 only comes
 // near to: FromDecimals takes them for what was written.
 func ExampleFromDecimals() {

@@ -50,7 +50,8 @@ func discreteRatio(g tf.Discrete) (*ratio, error) {
 // ControllableForm returns a model of g whose state matrix is the companion matrix
 // of the denominator, with the coefficients in its last row. With x the response of
 // 1/denominator, made monic, to the input, the states name_1, name_2 … are x and
-// its derivatives. Every input moves every state: the model is controllable,
+// its derivatives; in the unit of the input times s^n, s^(n−1) … s for the degree n of
+// the denominator. Every input moves every state: the model is controllable,
 // whatever the numerator. Both signals of g need a name.
 //
 // The model is exact and keeps common factors of numerator and denominator. The
