@@ -70,7 +70,7 @@ type content struct {
 	m                       Matrices
 }
 
-// decode reads the JSON alone; offsets has the place behind the name of each field.
+// decode reads the JSON alone; offsets has the place of the value of each field.
 func decode(text []byte) (d document, offsets map[string]int, err error) {
 	if len(text) > maxText {
 		return d, nil, lex.Fault(string(text), maxText, fmt.Sprintf("a text of %d bytes", len(text)), fmt.Sprintf("at most %d", maxText), ErrLimit)
@@ -100,15 +100,19 @@ func decode(text []byte) (d document, offsets map[string]int, err error) {
 		case twice:
 			return d, nil, fault(fmt.Sprintf("the field %q twice", field), "it once")
 		}
-		offsets[field] = int(decoder.InputOffset())
 		value := json.RawMessage{}
 		if err := decoder.Decode(&value); err != nil {
 			return d, nil, fault(found(nil, err), want)
 		}
+		offsets[field] = int(decoder.InputOffset()) - len(value)
 		strict := json.NewDecoder(bytes.NewReader(value))
 		strict.DisallowUnknownFields()
 		if err := strict.Decode(into[field]); err != nil {
-			return d, nil, fault(found(nil, err), shape(field))
+			offset := offsets[field]
+			if kind := (*json.UnmarshalTypeError)(nil); errors.As(err, &kind) {
+				offset += max(int(kind.Offset)-1, 0) // the decoder is behind what it met
+			}
+			return d, nil, lex.Fault(string(text), offset, found(nil, err), shape(field), nil)
 		}
 	}
 	if t, err := decoder.Token(); err != nil {
