@@ -128,6 +128,50 @@ func TestClosureModuloUnluckyPrimes(t *testing.T) {
 	}
 }
 
+// FuzzClosure takes a byte for the size and one for each entry: a small number, or
+// one of the first two primes or its inverse.
+func FuzzClosure(f *testing.F) {
+	f.Add([]byte{2, 1, 0, 3, 4, 0, 5})
+	f.Add([]byte{3, 127, 1, 126, 0, 1, 0, 2, 0, 128, 1, 129, 9})
+	f.Add([]byte{4, 0, 1, 1, 0, 255, 0, 0, 7, 0, 255, 0, 7, 0, 0, 8, 9, 0, 0, 9, 8})
+	var primes modp.Primes
+	first, second := primes.Next(), primes.Next()
+	f.Fuzz(func(t *testing.T, data []byte) {
+		if len(data) == 0 {
+			return
+		}
+		n := 1 + int(data[0])%5
+		data = data[1:]
+		row := func() []*big.Rat {
+			out := zeros(1, n)[0]
+			for _, v := range out[:min(n, len(data))] {
+				switch b := int8(data[0]); b {
+				case 127:
+					v.SetUint64(first.P)
+				case 126:
+					v.SetUint64(second.P)
+				case -128:
+					v.SetUint64(first.P).Inv(v)
+				case -127:
+					v.SetUint64(second.P).Inv(v)
+				default:
+					v.SetInt64(int64(b))
+				}
+				data = data[1:]
+			}
+			return out
+		}
+		generators, m := matrix{row()}, make(matrix, n)
+		for i := range m {
+			m[i] = row()
+		}
+		if len(data) > 0 {
+			generators = append(generators, row())
+		}
+		agrees(t, generators, m)
+	})
+}
+
 // The proof refuses an echelon form with one wrong number, and one that lacks a
 // row.
 func TestProofRefuses(t *testing.T) {
