@@ -110,6 +110,7 @@ func (c *Images) widen() {
 
 // addProduct adds x·d to z, of the same length, and returns the carry.
 func addProduct(z, x []uint64, d uint64) uint64 {
+	z = z[:len(x)]
 	var carry uint64
 	for k, u := range x {
 		hi, lo := bits.Mul64(u, d)

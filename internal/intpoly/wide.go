@@ -97,9 +97,9 @@ func addProducts(w []uint64, n int, a, b Poly, flip uint64) {
 	} else {
 		sum = sum[:la+lb+1]
 	}
-	var product []uint64
+	var apart []uint64 // for addRow
 	if la > maxUnrolled || lb > maxUnrolled {
-		product = make([]uint64, la+lb)
+		apart = make([]uint64, 2*(la+lb+1))
 	}
 	square := a.shares(b)
 	for k := range len(x.sign) + len(y.sign) - 1 {
@@ -108,13 +108,13 @@ func addProducts(w []uint64, n int, a, b Poly, flip uint64) {
 		from, to := max(0, k-len(y.sign)+1), min(k, len(x.sign)-1)+1
 		at := len(y.sign) - 1 - k + from
 		if !square {
-			addRows(sum, product, &x, &y, from, to, at, flip)
+			addRows(sum, apart, &x, &y, from, to, at, flip)
 		} else {
 			half := (to - from) / 2 // the products of different coefficients come twice
-			addRows(sum, product, &x, &y, from, from+half, at, flip)
+			addRows(sum, apart, &x, &y, from, from+half, at, flip)
 			double(sum)
 			if k%2 == 0 {
-				addRows(sum, product, &x, &y, from+half, from+half+1, at+half, flip)
+				addRows(sum, apart, &x, &y, from+half, from+half+1, at+half, flip)
 			}
 		}
 		accumulate(c, cut(sum, n), 0)
@@ -131,12 +131,12 @@ func double(x []uint64) {
 
 // addRows adds to sum the products of the coefficients from … to − 1 of x and those
 // of y from at on.
-func addRows(sum, product []uint64, x, y *magnitudes, from, to, at int, flip uint64) {
+func addRows(sum, apart []uint64, x, y *magnitudes, from, to, at int, flip uint64) {
 	xs, ys := x.sign[from:to], y.sign[at:]
 	xw, yw := x.w[from*x.n:to*x.n], y.w[at*y.n:]
 	switch {
-	case product != nil:
-		addRow(sum, product, xw, yw, xs, ys, x.n, y.n, flip)
+	case apart != nil:
+		addRow(sum, apart, xw, yw, xs, ys, x.n, y.n, flip)
 	case x.n == 2:
 		addRow2((*[5]uint64)(sum), xw, yw, xs, ys, flip)
 	case x.n == 3:
@@ -147,27 +147,35 @@ func addRows(sum, product []uint64, x, y *magnitudes, from, to, at int, flip uin
 }
 
 // addRow adds the products of the coefficients of x and y, m and n limbs each,
-// to sum.
-func addRow(sum, product, xw, yw, xs, ys []uint64, m, n int, flip uint64) {
+// to sum. Those with a plus and those with a minus are added up for themselves, in
+// room, which holds zeros before and after.
+func addRow(sum, room, xw, yw, xs, ys []uint64, m, n int, flip uint64) {
+	size := m + n + 1
+	ys = ys[:len(xs)]
 	for i, s := range xs {
-		clear(product)
-		multiply(product, xw[i*m:(i+1)*m], yw[i*n:(i+1)*n])
-		mask := s ^ ys[i] ^ flip
-		carry := mask & 1
-		for k, v := range product {
-			sum[k], carry = bits.Add64(sum[k], v^mask, carry)
-		}
-		sum[m+n] += mask + carry
+		sign := int((s ^ ys[i] ^ flip) & 1)
+		multiplyAdd(room[sign*size:(sign+1)*size], xw[i*m:(i+1)*m], yw[i*n:(i+1)*n])
 	}
+	plus, minus := room[:size], room[size:2*size]
+	sum = sum[:size]
+	var carry, borrow uint64
+	for k, v := range sum {
+		v, carry = bits.Add64(v, plus[k], carry)
+		sum[k], borrow = bits.Sub64(v, minus[k], borrow)
+	}
+	clear(room)
 }
 
-// multiply adds x·y to product, which has the limbs of both.
-func multiply(product, x, y []uint64) {
+// multiplyAdd adds x·y to acc, which has a limb more than both.
+func multiplyAdd(acc, x, y []uint64) {
 	if len(x) > len(y) {
 		x, y = y, x
 	}
 	for i, v := range x {
-		product[i+len(y)] = addProduct(product[i:i+len(y)], y, v)
+		carry := addProduct(acc[i:], y, v)
+		for k := i + len(y); carry != 0; k++ {
+			acc[k], carry = bits.Add64(acc[k], carry, 0)
+		}
 	}
 }
 

@@ -195,9 +195,59 @@ func TestEuclid(t *testing.T) {
 	}
 }
 
+// Residues of numbers in two's complement, at the edges of every limb.
+func checkPlainImages(t *testing.T, r *rand.Rand) {
+	t.Helper()
+	var primes Primes
+	f := primes.Next()
+	for range r.IntN(5) {
+		f = primes.Next()
+	}
+	p := new(big.Int).SetUint64(f.P)
+	n, count := 1+r.IntN(20), 1+r.IntN(12)
+	w := make([]uint64, n*count)
+	for i := range w {
+		switch r.IntN(4) {
+		case 0:
+			w[i] = ^uint64(0)
+		case 1: // 0
+		default:
+			w[i] = r.Uint64()
+		}
+	}
+	out := make([]uint64, count)
+	f.PlainImages(out, w, n)
+	for i, got := range out {
+		want, c := new(big.Int), w[i*n:(i+1)*n]
+		for k := n - 1; k >= 0; k-- {
+			want.Add(want.Lsh(want, 64), new(big.Int).SetUint64(c[k]))
+		}
+		if int64(c[n-1]) < 0 {
+			want.Sub(want, new(big.Int).Lsh(big.NewInt(1), uint(64*n)))
+		}
+		if want.Mod(want, p).Uint64() != got {
+			t.Fatalf("%x modulo %d is %d, want %v", c, f.P, got, want)
+		}
+	}
+	x := 1 + r.Uint64N(f.P-1)
+	if one := f.Mul(x, f.Inverse(x)); f.Plain(one) != 1 {
+		t.Fatalf("the inverse of %d modulo %d", x, f.P)
+	}
+}
+
+func TestPlainImages(t *testing.T) {
+	r := rand.New(rand.NewPCG(15, 16))
+	for range 3000 {
+		checkPlainImages(t, r)
+	}
+}
+
 func FuzzField(f *testing.F) {
 	f.Add(uint64(1))
-	f.Fuzz(func(t *testing.T, seed uint64) { checkField(t, rand.New(rand.NewPCG(seed, 1))) })
+	f.Fuzz(func(t *testing.T, seed uint64) {
+		checkField(t, rand.New(rand.NewPCG(seed, 1)))
+		checkPlainImages(t, rand.New(rand.NewPCG(seed, 2)))
+	})
 }
 
 // The cyclic product of two polynomials by the transform is that by its
